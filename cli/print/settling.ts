@@ -1,0 +1,47 @@
+import type { ConvergedCase } from "../../src/ledger/converged.js";
+import { printFindings } from "./findings.js";
+import { fixed } from "./format.js";
+import { countNote } from "./ledger.js";
+import type { Printer } from "./printer.js";
+import { table } from "./table.js";
+
+export function printSettlings(print: Printer, cases: ConvergedCase[]): void {
+  for (const each of cases) {
+    const colour = each.verdict === "settled" || each.verdict === "oscillating" ? print.colours.green : print.colours.yellow;
+    print.heading(`${each.path}: ${colour(each.verdict)}`);
+    if (each.recorded) print.line(print.colours.yellow(`  recorded results: ${each.recorded}`));
+    const titles = ["mean", "half-width", "start-up", "rows", "effective", "period", "still needed"];
+    print.line(
+      table(
+        [
+          { title: "quantity" },
+          { title: "part" },
+          { title: "verdict" },
+          ...titles.map((title) => ({ title, align: "right" as const })),
+        ],
+        each.quantities.map((q) => [
+          q.name,
+          q.part ?? "whole",
+          q.verdict,
+          fixed(q.mean, 5),
+          fixed(q.halfWidth, 5),
+          String(q.startUp),
+          String(q.rows),
+          fixed(q.effectiveSamples, 1),
+          q.period === null ? "-" : fixed(q.period, 1),
+          q.stillNeeded === null ? "-" : String(q.stillNeeded),
+        ]),
+        print.colours.bold,
+      ),
+    );
+    for (const segment of each.segments.filter((s) => s.used < s.rows || each.segments.length > 1))
+      print.line(
+        print.colours.dim(
+          `  ${segment.file}: rows ${segment.used} of ${segment.rows} used, ${segment.from} to ${segment.to}: ${segment.reason}`,
+        ),
+      );
+    printFindings(print, each.findings);
+  }
+  print.line();
+  print.line(countNote);
+}
