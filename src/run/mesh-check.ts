@@ -1,0 +1,100 @@
+import { readFile } from "node:fs/promises";
+import { join } from "node:path";
+import type { RunCard } from "../case/run-card.js";
+import { tailOf } from "./case-files.js";
+
+export interface MeshPatch {
+  name: string;
+  faces: number;
+}
+
+/** What was found in a finished mesh: `trouble` makes it useless, remarks are worth knowing. */
+export interface MeshVerdict {
+  cells: number;
+  trouble: string | null;
+  remarks: string[];
+}
+
+const always = ["inlet", "outlet", "ground"];
+/** Cells made over cells predicted, beyond which something is likely to be wrong with the body or the plan. */
+const tooMany = 1.4;
+const tooFew = 0.6;
+
+/** The patches of constant/polyMesh/boundary (text also in a binary mesh) with their face counts, in file order. */
+export function readPatches(text: string): MeshPatch[] {
+  const bare = text.replace(/\/\*[\s\S]*?\*\/|\/\/[^\n]*/g, " ");
+  const patches: MeshPatch[] = [];
+  for (const match of bare.matchAll(/(?:"([^"\n]*)"|([^\s{};"]+))\s*\{([^{}]*)\}/g)) {
+    const faces = /(?:^|[\s;])nFaces\s+(\d+)\s*;/.exec(match[3]!)?.[1];
+    if (faces !== undefined) patches.push({ name: match[1] ?? match[2]!, faces: Number(faces) });
+  }
+  return patches;
+}
+
+/**
+ * Judges a mesh by what stands in it, because the mesher reports none of these as errors: a keep-point inside the body, millimetres
+ * taken as metres and a part that was lost all end with "Mesh OK.".
+ */
+export function judgeMesh(patches: MeshPatch[], cells: number, card: Pick<RunCard, "parts" | "mesh" | "body">): MeshVerdict {
+  const faces = new Map(patches.map((patch) => [patch.name, patch.faces]));
+  const missing = (names: string[]) => names.filter((name) => !faces.get(name));
+  const lost = missing(card.parts.map((part) => part.patch));
+  const bounds = missing(always);
+  const remarks: string[] = [];
+  const predicted = card.mesh.predictedCells;
+  if (predicted > 0 && cells > 0 && (cells > tooMany * predicted || cells < tooFew * predicted)) {
+    const many = cells > predicted;
+    remarks.push(
+      `The mesh has ${cells} cells where ${Math.round(predicted)} were predicted: ${many ? "the inside of the body may be meshed too (a hole in a part), or thin parts take more cells" : "refinement may have stopped early"}.`,
+    );
+  }
+  return { cells, trouble: troubleOf(bounds, lost, card), remarks };
+}
+
+function troubleOf(bounds: string[], lost: string[], card: Pick<RunCard, "parts" | "mesh" | "body">): string | null {
+  const count = card.parts.length;
+  if (bounds.length > 0 && lost.length < count) {
+    return `the mesh has no faces on ${bounds.join(", ")}: it is the inside of the body, because the keep-point (locationInMesh) lies inside a part; check \`body.unit\`, travel and up, then prepare again`;
+  }
+  if (bounds.length > 0) return `the mesh has no faces on ${bounds.join(", ")} and on no part of the body; prepare the case again`;
+  if (lost.length === 0) return null;
+  if (lost.length === count) {
+    const size = card.body.bounds.max.map((high, axis) => (high - card.body.bounds.min[axis]!).toPrecision(3)).join(" x ");
+    return `no part of the body is in the mesh: the body is outside the domain or too small for its cells (body ${size} m, cells of ${card.mesh.baseCell} m before refinement); a wrong unit does this, check \`body.unit\` in the study`;
+  }
+  const names = card.parts.filter((part) => lost.includes(part.patch)).map((part) => part.name);
+  const shown = names.length > 5 ? `${names.slice(0, 5).join(", ")} and ${names.length - 5} more` : names.join(", ");
+  return `no faces in the mesh for ${names.length === 1 ? "part" : `${names.length} parts`} ${shown}: smaller than the cells there, hidden inside another part, or outside the domain; use a finer mesh or leave ${names.length === 1 ? "it" : "them"} out`;
+}
+
+/** Reads the finished mesh of a case and its logs, and judges it. */
+export async function checkMeshOf(casePath: string, card: Pick<RunCard, "parts" | "mesh" | "body">): Promise<MeshVerdict> {
+  const mesh = join(casePath, "constant", "polyMesh");
+  const boundary = await readFile(join(mesh, "boundary"), "utf8").catch(() => null);
+  if (boundary === null) return { cells: 0, trouble: "constant/polyMesh/boundary was not written", remarks: [] };
+  const cells = await cellsOf(join(mesh, "owner"));
+  const verdict = judgeMesh(readPatches(boundary), cells, card);
+  const mesher = await readFile(join(casePath, "log.snappyHexMesh"), "latin1").catch(() => "");
+  const limit = /No cells marked for refinement since reached limit (\d+)/.exec(mesher)?.[1];
+  if (limit)
+    verdict.remarks.push(
+      `Refinement stopped at the limit of ${limit} cells: the mesh is coarser than planned (log.snappyHexMesh). Raise maxGlobalCells.`,
+    );
+  const failed = failedChecks(await tailOf(join(casePath, "log.checkMesh"), 65_536).catch(() => ""));
+  if (failed > 0)
+    verdict.remarks.push(
+      `checkMesh: ${failed} ${failed === 1 ? "check" : "checks"} of the mesh failed (log.checkMesh, lines with ***). The run goes on; look at the places before trusting small differences.`,
+    );
+  return verdict;
+}
+
+/** The last verdict of a checkMesh log: number of failed checks. */
+function failedChecks(log: string): number {
+  return Number([...log.matchAll(/Failed (\d+) mesh checks/g)].at(-1)?.[1] ?? 0);
+}
+
+/** Number of cells from the note in the header of polyMesh/owner; 0 when it is not there. */
+async function cellsOf(owner: string): Promise<number> {
+  const text = await readFile(owner, "latin1").catch(() => "");
+  return Number(/nCells:\s*(\d+)/.exec(text.slice(0, 4096))?.[1] ?? 0);
+}
