@@ -25,7 +25,7 @@ export function shortestFloat32(value: number): string {
 const powersOfTen = Float64Array.from({ length: 23 }, (_, power) => Number(`1e${power}`));
 
 function roundedToDecimals(value: number, places: number): number {
-  const scale = powersOfTen[places] as number;
+  const scale = powersOfTen[places];
   return Math.round(value * scale) / scale;
 }
 
@@ -62,7 +62,7 @@ export class FloatText {
   bytes(encoded: Uint8Array): void {
     this.#reserve(encoded.length);
     // A loop: for a dozen bytes, TypedArray.set costs more than the copy.
-    for (let k = 0; k < encoded.length; k++) this.#bytes[this.#length++] = encoded[k] as number;
+    for (let k = 0; k < encoded.length; k++) this.#bytes[this.#length++] = encoded[k];
   }
 
   byte(code: number): void {
@@ -81,8 +81,8 @@ export class FloatText {
       this.#remembered[from] = text.length;
       for (let k = 0; k < text.length; k++) this.#remembered[from + 1 + k] = text.charCodeAt(k);
     }
-    const end = from + (this.#remembered[from] as number);
-    while (from < end) this.#bytes[this.#length++] = this.#remembered[++from] as number;
+    const end = from + this.#remembered[from];
+    while (from < end) this.#bytes[this.#length++] = this.#remembered[++from];
   }
 
   /** A number between -1 and 1, rounded to six decimals, without trailing zeros. */

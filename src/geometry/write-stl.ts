@@ -32,8 +32,8 @@ export function binaryStl(set: TriangleSet): Uint8Array {
   let at = HEADER_BYTES + 4;
   for (let triangle = 0; triangle < triangles; triangle++) {
     normalOf(positions, 9 * triangle, normal);
-    for (let axis = 0; axis < 3; axis++) view.setFloat32(at + 4 * axis, normal[axis] as number, true);
-    for (let k = 0; k < 9; k++) view.setFloat32(at + 12 + 4 * k, positions[9 * triangle + k] as number, true);
+    for (let axis = 0; axis < 3; axis++) view.setFloat32(at + 4 * axis, normal[axis], true);
+    for (let k = 0; k < 9; k++) view.setFloat32(at + 12 + 4 * k, positions[9 * triangle + k], true);
     at += RECORD_BYTES;
   }
   return bytes;
@@ -59,20 +59,20 @@ export function asciiStl(set: TriangleSet, nameOf: (part: Part) => string = (par
   set.parts.forEach((part, index) => {
     const name = oneLine(nameOf(part));
     out.text(`solid ${name}\n`);
-    for (let k = start[index] as number; k < (start[index + 1] as number); k++) {
-      const at = 9 * (order[k] as number);
+    for (let k = start[index]; k < start[index + 1]; k++) {
+      const at = 9 * order[k];
       normalOf(positions, at, normal);
       out.bytes(FACET);
       for (let axis = 0; axis < 3; axis++) {
         out.byte(BLANK);
-        out.sixDecimals(normal[axis] as number);
+        out.sixDecimals(normal[axis]);
       }
       out.bytes(LOOP);
       for (let j = at; j < at + 9; j += 3) {
         out.bytes(VERTEX);
         for (let axis = j; axis < j + 3; axis++) {
           out.byte(BLANK);
-          out.float32(positions[axis] as number, bits[axis] as number);
+          out.float32(positions[axis], bits[axis]);
         }
       }
       out.bytes(END);
@@ -87,15 +87,15 @@ const oneLine = (name: string): string => name.replace(/[\u0000-\u001f\u007f-\u0
 
 /** Unit normal of the triangle whose nine coordinates begin at `at`; zeros without area. */
 function normalOf(positions: Float32Array, at: number, normal: Float64Array): void {
-  const ax = positions[at] as number;
-  const ay = positions[at + 1] as number;
-  const az = positions[at + 2] as number;
-  const ux = (positions[at + 3] as number) - ax;
-  const uy = (positions[at + 4] as number) - ay;
-  const uz = (positions[at + 5] as number) - az;
-  const vx = (positions[at + 6] as number) - ax;
-  const vy = (positions[at + 7] as number) - ay;
-  const vz = (positions[at + 8] as number) - az;
+  const ax = positions[at];
+  const ay = positions[at + 1];
+  const az = positions[at + 2];
+  const ux = positions[at + 3] - ax;
+  const uy = positions[at + 4] - ay;
+  const uz = positions[at + 5] - az;
+  const vx = positions[at + 6] - ax;
+  const vy = positions[at + 7] - ay;
+  const vz = positions[at + 8] - az;
   const nx = uy * vz - uz * vy;
   const ny = uz * vx - ux * vz;
   const nz = ux * vy - uy * vx;
@@ -109,14 +109,12 @@ function normalOf(positions: Float32Array, at: number, normal: Float64Array): vo
 /** Triangle numbers sorted by part (in file order within a part), and where each part starts; `start` has one more entry than parts. */
 function trianglesByPart(set: TriangleSet): { order: Uint32Array; start: Uint32Array } {
   const start = new Uint32Array(set.parts.length + 1);
-  for (const part of set.partOf) start[part + 1] = (start[part + 1] as number) + 1;
-  for (let part = 0; part < set.parts.length; part++) start[part + 1] = (start[part + 1] as number) + (start[part] as number);
+  for (const part of set.partOf) start[part + 1]++;
+  for (let part = 0; part < set.parts.length; part++) start[part + 1] += start[part];
   const next = start.slice();
   const order = new Uint32Array(set.partOf.length);
   set.partOf.forEach((part, triangle) => {
-    const place = next[part] as number;
-    order[place] = triangle;
-    next[part] = place + 1;
+    order[next[part]++] = triangle;
   });
   return { order, start };
 }
@@ -125,10 +123,10 @@ function requireFinite(set: TriangleSet): void {
   const { positions } = set;
   let bad = 0;
   // Infinity - Infinity and NaN - NaN are NaN, any finite difference with itself is 0.
-  while (bad < positions.length && (positions[bad] as number) - (positions[bad] as number) === 0) bad++;
+  while (bad < positions.length && positions[bad] - positions[bad] === 0) bad++;
   if (bad === positions.length) return;
   const triangle = Math.floor(bad / 9);
-  const part = set.parts[set.partOf[triangle] as number];
+  const part = set.parts[set.partOf[triangle]];
   throw inputProblem({
     code: "coordinate-not-finite",
     message: `Triangle ${triangle + 1} has a corner at ${positions[bad]}; every coordinate must be a finite number.`,

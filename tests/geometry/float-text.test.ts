@@ -57,7 +57,7 @@ describe("FloatText", () => {
     const result = written((out) => {
       for (let round = 0; round < 2; round++) {
         for (let k = 0; k < values.length; k++) {
-          out.float32(values[k] as number, bits[k] as number);
+          out.float32(values[k], bits[k]);
           out.byte(10);
         }
       }
@@ -70,7 +70,7 @@ describe("FloatText", () => {
     const values = Float32Array.from([0, -0, 0]);
     const bits = new Int32Array(values.buffer);
     const result = written((out) => {
-      for (let k = 0; k < values.length; k++) out.float32(values[k] as number, bits[k] as number);
+      for (let k = 0; k < values.length; k++) out.float32(values[k], bits[k]);
     });
     expect(result).toBe("0-00");
   });

@@ -86,7 +86,7 @@ describe("asciiStl", () => {
       do {
         state = (Math.imul(state, 1664525) + 1013904223) >>> 0;
         bits[k] = state;
-      } while (!Number.isFinite(positions[k] as number));
+      } while (!Number.isFinite(positions[k]));
     }
     const set = setOf([], [], ["all"]);
     const blocks = blocksOf(text(asciiStl({ ...set, positions, partOf: new Uint16Array(triangles) })));
