@@ -17,13 +17,17 @@ export interface Segment {
 
 /** The record of one function object over iterations or time, spliced from all its files. */
 export interface History {
-  /** Name of the function object (folder below postProcessing). */
+  /** Name of the function object (folder below postProcessing); `region/object` for a mesh region with a name. */
   object: string;
+  /** Name of the table's files without folder, restart suffix and ending: `coefficient`, `force`, `CdBin`. */
+  table: string;
   layout: TableLayout;
   dialect: string;
   header: Record<string, number | string | Vector3>;
-  /** columns[0] is `Time`, increasing; NaN marks a missing cell. */
+  /** columns[0] is `Time`, increasing (in tables with a row per patch a time repeats); NaN marks a missing cell. */
   columns: Column[];
+  /** Text cells, such as patch names: one array per text column, one entry per row. */
+  words: { name: string; values: string[] }[];
   rows: number;
   segments: Segment[];
   findings: Finding[];
