@@ -22,6 +22,7 @@ const explanations: { text: RegExp; meaning: string }[] = [
   { text: /error while loading shared libraries/, meaning: "the installation of the solver is not complete" },
   { text: /expected 'vertex' or 'endloop'/, meaning: "a surface file cannot be read as text STL" },
   { text: /exited on signal 9|\bKilled\b/, meaning: "ended from outside; the machine may have run out of memory" },
+  { text: /^Invalid option: /m, meaning: "this version of the solver's programs does not know an option that is used here" },
   { text: /No space left on device/i, meaning: "the disk is full" },
 ];
 

@@ -16,14 +16,15 @@ const serial = (program: string, ...args: string[]): Step => ({ name: program, p
 
 /**
  * The mesh is always made by one process: a mesh made in parallel depends on the number of processes, and two variants would differ by
- * more than their bodies. The fields in 0/ are not renumbered, so that they stay as they were written (they are uniform there).
+ * more than their bodies. Renumbering takes place in constant/: the (uniform) fields in 0/ would be written anew
+ * otherwise, and no longer be what was prepared.
  */
 export function meshSteps(has: { features: boolean }): Step[] {
   return [
     serial("blockMesh"),
     ...(has.features ? [serial("surfaceFeatureExtract")] : []),
     serial("snappyHexMesh", "-overwrite"),
-    serial("renumberMesh", "-overwrite", "-noFields"),
+    serial("renumberMesh", "-overwrite", "-constant"),
     serial("checkMesh"),
   ];
 }

@@ -1,0 +1,124 @@
+import { statfs } from "node:fs/promises";
+import { join } from "node:path";
+import type { RunCard } from "../case/run-card.js";
+import type { SolverEnvironment } from "../openfoam/environment.js";
+import { hashOf } from "./control-dict.js";
+import type { CaseState, RunEvent } from "./events.js";
+import { explainFailure } from "./failure.js";
+import type { Hashes } from "./inputs.js";
+import { type ProgramResult, runProgram } from "./program.js";
+import { type RunState, type StepRecord, writeRunState } from "./run-state.js";
+import { commandOf, type Step } from "./steps.js";
+
+export interface RunSettings {
+  mostIterations: number | undefined;
+  pollMilliseconds: number;
+  testEvery: number;
+  minimumWindow: number;
+  graceMilliseconds: number;
+}
+
+/** One case while it is run: what it is, where it stands, and how its programs are started. */
+export class CaseRun {
+  private readonly began = performance.now();
+  private readonly secondsBefore: number;
+
+  constructor(
+    readonly path: string,
+    readonly card: RunCard,
+    readonly solver: SolverEnvironment,
+    readonly ranks: number,
+    readonly state: RunState,
+    readonly settings: RunSettings,
+    readonly signal: AbortSignal,
+    readonly emit: (event: RunEvent) => void,
+  ) {
+    this.secondsBefore = state.seconds;
+  }
+
+  /** Wall seconds of this run alone. */
+  get seconds(): number {
+    return (performance.now() - this.began) / 1000;
+  }
+
+  get most(): number {
+    return this.settings.mostIterations ?? this.card.mostIterations;
+  }
+
+  remark(message: string): void {
+    this.emit({ event: "remark", case: this.path, message });
+  }
+
+  async save(state?: CaseState, reason?: string): Promise<void> {
+    if (state !== undefined) this.state.state = state;
+    if (reason !== undefined) this.state.reason = reason;
+    this.state.seconds = this.secondsBefore + this.seconds;
+    await writeRunState(this.path, this.state);
+  }
+
+  recordOf(step: string): StepRecord | undefined {
+    return this.state.steps.find(({ name }) => name === step);
+  }
+
+  skip(step: Step): void {
+    this.emit({ event: "step-end", case: this.path, step: step.name, seconds: 0, skipped: true });
+  }
+
+  /** Runs one step; its record is in the state file before it starts and after it ended. `signal` in place of the run's own, if given. */
+  async step(step: Step, inputs: Hashes, options: { marker?: string; signal?: AbortSignal } = {}): Promise<ProgramResult> {
+    this.emit({ event: "step-start", case: this.path, step: step.name });
+    const record: StepRecord = {
+      name: step.name,
+      state: "running",
+      log: step.log,
+      inputs: hashOf(JSON.stringify(inputs)),
+      seconds: 0,
+      exitCode: null,
+      signal: null,
+      peakMemory: null,
+      ended: null,
+    };
+    this.state.steps = [...this.state.steps.filter(({ name }) => name !== step.name), record];
+    await this.save();
+    const result = await runProgram({
+      ...commandOf(step, this.solver.path, this.solver.mpirun),
+      cwd: this.path,
+      env: this.solver.env,
+      log: join(this.path, step.log),
+      signal: options.signal ?? this.signal,
+      graceMilliseconds: this.settings.graceMilliseconds,
+      ...(options.marker === undefined ? {} : { marker: options.marker }),
+      onStart: (pid) => {
+        this.state.running = { program: step.program, pid };
+        void this.save().catch(() => undefined);
+      },
+    });
+    this.state.running = null;
+    const good = result.exitCode === 0 && !result.aborted;
+    Object.assign(record, {
+      state: good ? "done" : result.aborted ? "interrupted" : "failed",
+      seconds: result.seconds,
+      exitCode: result.exitCode,
+      signal: result.signal,
+      peakMemory: result.peakMemory,
+      ended: new Date().toISOString(),
+    });
+    await this.save();
+    this.emit({ event: "step-end", case: this.path, step: step.name, seconds: result.seconds, skipped: false });
+    return result;
+  }
+
+  /** Why a step failed, in words. */
+  async failure(step: Step, result: ProgramResult): Promise<string> {
+    const said = await explainFailure(step.name, result, step.log, join(this.path, step.log));
+    const disk = await statfs(this.path).catch(() => null);
+    const full = disk !== null && disk.bavail * disk.bsize < 1_000_000 && !said.includes("the disk is full");
+    return full ? `${said}; the disk is full` : said;
+  }
+}
+
+/** What a phase of a case came to: go on with the next, or an end with its state and reason. */
+export type Phase = { end: false } | { end: true; state: CaseState; reason: string };
+
+export const goOn: Phase = { end: false };
+export const endWith = (state: CaseState, reason: string): Phase => ({ end: true, state, reason });

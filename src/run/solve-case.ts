@@ -1,0 +1,214 @@
+import { rename } from "node:fs/promises";
+import { join } from "node:path";
+import { exists, processorFolders, tailOf } from "./case-files.js";
+import { type CaseRun, endWith, goOn, type Phase } from "./case-run.js";
+import { askToEnd, prepareForRun, putBack, readControlDict } from "./control-dict.js";
+import { lastSolved, trapped } from "./failure.js";
+import { HistoryFollower } from "./history-follower.js";
+import { changedInputs, type Hashes, solutionInputs } from "./inputs.js";
+import { listed, setAside } from "./mesh-case.js";
+import type { ProgramResult } from "./program.js";
+import { joinFields, placeFields } from "./start-point.js";
+import { type Step, solveSteps } from "./steps.js";
+import { testTargets, type Watched, Watcher, type Watching } from "./watcher.js";
+
+/** Solves a meshed case from where it stands, until its targets hold, its limit is reached or something ends it. */
+export async function solveCase(run: CaseRun): Promise<Phase> {
+  const steps = solveSteps(run.ranks);
+  const inputs = await solutionInputs(run.path);
+  const done = await standing(run, inputs);
+  if (done.end) {
+    for (const step of steps) run.skip(step);
+    return done;
+  }
+  const { phase, from } = await placeFields(run);
+  if (phase.end) return phase;
+  const follower = new HistoryFollower(run.path);
+  await follower.poll();
+  follower.dropAfter(from);
+  const solver = steps.find((step) => step.program === "simpleFoam")!;
+  run.state.solution = { inputs, most: run.most, targets: targetsOf(run) };
+  const solved = await runSolver(run, solver, inputs, follower, from);
+  run.state.iterations = follower.iteration;
+  if (solved.end && solved.state !== "settled" && solved.state !== "stopped-at-limit") return solved;
+  if (run.ranks > 1) {
+    const joined = await joinFields(run);
+    if (joined.end) return joined;
+  }
+  return solved;
+}
+
+const targetsOf = (run: CaseRun) => ({ drag: run.card.stop.drag, lift: run.card.stop.lift, confidence: run.card.stop.confidence });
+
+const watchingOf = (run: CaseRun): Watching => ({
+  targets: targetsOf(run),
+  minimumWindow: run.settings.minimumWindow,
+  testEvery: run.settings.testEvery,
+});
+
+/** Is there nothing left to solve? A changed set-up begins again; stricter targets or a higher limit go on. */
+async function standing(run: CaseRun, inputs: Hashes): Promise<Phase> {
+  const { solution, state, reason } = run.state;
+  if (!solution) return goOn;
+  const changed = changedInputs(solution.inputs, inputs);
+  if (changed.length > 0) {
+    run.remark(`The case is solved from the beginning: ${listed(changed)} changed.`);
+    await setAside(run);
+    run.state.solution = null;
+    run.state.iterations = 0;
+    run.state.settled = false;
+    return goOn;
+  }
+  if (state === "diverged") {
+    run.remark(
+      "Nothing has changed since this case diverged; it is not run again. Change its mesh or its schemes, or delete run-state.json.",
+    );
+    return endWith("diverged", reason);
+  }
+  if (state !== "settled" && state !== "stopped-at-limit") return goOn;
+  if ((await processorFolders(run.path)).length > 0) return goOn;
+  const { drag, lift, confidence } = targetsOf(run);
+  const asStrict = drag >= solution.targets.drag && lift >= solution.targets.lift && confidence <= solution.targets.confidence;
+  if (state === "settled") return asStrict ? endWith("settled", reason) : goOn;
+  return run.most <= solution.most && asStrict ? endWith("stopped-at-limit", reason) : goOn;
+}
+
+async function runSolver(run: CaseRun, step: Step, inputs: Hashes, follower: HistoryFollower, from: number): Promise<Phase> {
+  const watching = watchingOf(run);
+  if (from >= run.most) return atEnd(run, follower, watching, `the limit of ${run.most} iterations is reached`);
+  const prepared = await readControlDict(run.path);
+  run.state.controlDict = await prepareForRun(run.path, prepared, run.most);
+  await run.save("solving", "");
+  await rotateLog(run.path, step.log);
+  try {
+    const { result, watched } = await watchSolver(run, step, inputs, follower, new Watcher(watching), from);
+    return await judge(run, step, follower, watching, result, watched);
+  } finally {
+    await restoreControlDict(run);
+  }
+}
+
+/** Puts system/controlDict back as it was prepared, also after a run that was killed. */
+export async function restoreControlDict(run: CaseRun): Promise<void> {
+  if (run.state.controlDict === null) return;
+  const own = await putBack(run.path, run.state.controlDict);
+  if (!own) run.remark("system/controlDict was changed while the case ran; it is left as it is now.");
+  run.state.controlDict = null;
+  await run.save();
+}
+
+async function watchSolver(
+  run: CaseRun,
+  step: Step,
+  inputs: Hashes,
+  follower: HistoryFollower,
+  watcher: Watcher,
+  from: number,
+): Promise<{ result: ProgramResult; watched: Watched }> {
+  const stop = new AbortController();
+  const signal = AbortSignal.any([run.signal, stop.signal]);
+  const began = performance.now();
+  let ended = false;
+  let wake: () => void = () => undefined;
+  const program = run.step(step, inputs, { signal }).finally(() => {
+    ended = true;
+    wake();
+  });
+  const seen: { now: Watched } = { now: { kind: "going", halfWidth: null, stillNeeded: null } };
+  let told = -1;
+  const look = async () => {
+    await follower.poll();
+    if (seen.now.kind === "going") seen.now = watcher.look(follower.time, follower.cd, follower.cl);
+    if (follower.iteration > from && follower.iteration !== told) {
+      told = follower.iteration;
+      emitIteration(run, follower, seen.now, from, (performance.now() - began) / 1000);
+    }
+  };
+  let asked = false;
+  while (!ended) {
+    await new Promise<void>((resolve) => {
+      wake = resolve;
+      setTimeout(resolve, run.settings.pollMilliseconds);
+    });
+    if (ended) break;
+    await look();
+    if (seen.now.kind === "diverged" || seen.now.kind === "no-force") stop.abort();
+    if (seen.now.kind === "settled" && !asked) {
+      asked = true;
+      run.state.controlDict!.editedHash = await askToEnd(run.path);
+      await run.save();
+    }
+  }
+  const result = await program;
+  await look();
+  return { result, watched: seen.now };
+}
+
+function emitIteration(run: CaseRun, follower: HistoryFollower, watched: Watched, from: number, seconds: number): void {
+  const iteration = follower.iteration;
+  const perIteration = seconds / (iteration - from);
+  const toLimit = run.most - iteration;
+  const needed = watched.kind === "going" ? watched.stillNeeded : 0;
+  run.emit({
+    event: "iteration",
+    case: run.path,
+    iteration,
+    most: run.most,
+    cd: follower.cd.at(-1) ?? null,
+    halfWidth: watched.kind === "going" || watched.kind === "settled" ? watched.halfWidth : null,
+    secondsLeft: perIteration * Math.min(toLimit, needed ?? toLimit),
+  });
+}
+
+async function judge(
+  run: CaseRun,
+  step: Step,
+  follower: HistoryFollower,
+  watching: Watching,
+  result: ProgramResult,
+  watched: Watched,
+): Promise<Phase> {
+  const log = await tailOf(join(run.path, step.log), 65_536).catch(() => "");
+  const last = lastSolved(log);
+  const where = `${last ? `; last solved ${last.field}, initial residual ${last.residual}` : ""}; log: ${step.log}`;
+  if (watched.kind === "diverged") return endWith("diverged", `${watched.reason}${where}`);
+  if (watched.kind === "no-force") return endWith("failed", `${watched.reason}; log: ${step.log}`);
+  if (result.aborted || run.signal.aborted) return endWith("interrupted", `interrupted at iteration ${follower.iteration}`);
+  if (result.signal === "SIGFPE" || (result.exitCode !== 0 && trapped(log))) {
+    return endWith("diverged", `floating point trap after iteration ${follower.iteration}${where}`);
+  }
+  if (result.exitCode !== 0) return endWith("failed", await run.failure(step, result));
+  if (!/^End\s*$/m.test(log))
+    return endWith("failed", `${step.name} stopped without saying why (its log has no line End); log: ${step.log}`);
+  if (follower.rows === 0) {
+    const said = /Cannot find any patch or group names matching \S+|Unknown function type \S+|Could not load \S+/.exec(log)?.[0];
+    return endWith(
+      "failed",
+      `${step.name} ended but wrote no history of coefficients${said ? ` (${said})` : ""}; log: ${step.log}`,
+    );
+  }
+  const own = /SIMPLE solution converged in (\d+) iterations/.exec(log)?.[1];
+  const reason = own
+    ? `the solver's residual control ended it at iteration ${own}`
+    : `the limit of ${run.most} iterations is reached`;
+  return watched.kind === "settled" ? settledWith(run, watched.reason) : atEnd(run, follower, watching, reason);
+}
+
+/** A run that came to its limit: settled all the same if its history says so. */
+function atEnd(run: CaseRun, follower: HistoryFollower, watching: Watching, reason: string): Phase {
+  const test = testTargets(follower.cd, follower.cl, watching);
+  return test.met ? settledWith(run, test.reason) : endWith("stopped-at-limit", `${reason}: ${test.reason}`);
+}
+
+function settledWith(run: CaseRun, reason: string): Phase {
+  run.state.settled = true;
+  return endWith("settled", reason);
+}
+
+/** Keeps the log of an earlier start as log.simpleFoam.1, .2 and so on, the highest number being the latest of them. */
+async function rotateLog(casePath: string, log: string): Promise<void> {
+  if (!(await exists(join(casePath, log)))) return;
+  let number = 1;
+  while (await exists(join(casePath, `${log}.${number}`))) number += 1;
+  await rename(join(casePath, log), join(casePath, `${log}.${number}`));
+}
