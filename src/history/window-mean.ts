@@ -1,0 +1,100 @@
+import { autocovariances, initialSequence, mean, overlappingBatches, variance } from "./correlation.js";
+import { dominantPeriod, type Period, periodMeans, trendOf, withoutTrend } from "./period.js";
+import { studentQuantile } from "./student.js";
+
+/** Independent samples (or whole periods) that an interval must rest on. */
+export const fewestSamples = 10;
+/** Change over the window that matters when no half-width is asked for, as a share of the mean. */
+const smallShare = 1e-3;
+/** Significance that a trend must have: one history in a hundred without drift is called drifting. */
+const trendConfidence = 0.99;
+
+/** Mean and interval over one window. */
+export interface WindowMean {
+  firstRow: number;
+  rows: number;
+  mean: number;
+  standardDeviation: number;
+  halfWidth: number;
+  effectiveSamples: number;
+  period: Period | null;
+  /** change of the trend line over the window */
+  change: number;
+  /** the change exceeds both what noise makes and what matters */
+  drifts: boolean;
+  /** largest minus smallest value */
+  range: number;
+}
+
+/** Size of a change of the mean that matters. */
+export const mattering = (target: number | null, centre: number): number => target ?? smallShare * Math.abs(centre);
+
+/**
+ * Mean of the rows from `firstRow` on with its interval.
+ *
+ * Where the rows repeat, the window is cut at its start to whole periods, and from ten periods on their means are the samples: the swing inside a
+ * period says nothing about the mean. The long-run variance is the larger of Geyer's initial monotone sequence and overlapping batch means;
+ * effective samples n_eff = n s2 / (long-run variance), at most n (so negative correlation never narrows the interval); half-width
+ * t(n_eff - 1) sqrt(long-run variance / n). A trend is tested by least squares, its error from the long-run variance of the residuals
+ * (12 S / n^3). A significant trend too small to matter adds half its change to the half-width.
+ *
+ * @param target half-width wanted; null: none
+ */
+export function windowMean(values: Float64Array, firstRow: number, target: number | null, confidence: number): WindowMean {
+  const tail = values.subarray(firstRow);
+  const period = dominantPeriod(tail);
+  let window = tail;
+  let samples = tail;
+  if (period !== null) {
+    const count = Math.floor(tail.length / period.rows);
+    const whole = Math.min(tail.length, Math.round(count * period.rows));
+    window = tail.subarray(tail.length - whole);
+    if (count >= fewestSamples) samples = periodMeans(tail, period.rows);
+  }
+  const spread = variance(samples);
+  const longRun = longRunVariance(samples);
+  const count = samples.length;
+  const effectiveSamples = longRun > 0 ? Math.min(count, (count * spread) / longRun) : count;
+  const trend = trendOf(samples);
+  const change = trend.slope * (count - 1);
+  const residuals = withoutTrend(samples);
+  const noise = longRunVariance(residuals);
+  const freedom = Math.max(1, (noise > 0 ? Math.min(count, (count * variance(residuals)) / noise) : count) - 2);
+  const limit = studentQuantile(0.5 + trendConfidence / 2, freedom) * Math.sqrt((12 * noise) / count ** 3);
+  const significant = Math.abs(trend.slope) > limit && Math.abs(change) > 1e-12 * Math.abs(trend.centre);
+  const drifts = significant && Math.abs(change) > mattering(target, trend.centre) / 2;
+  let halfWidth = 0;
+  if (longRun > 0) {
+    const quantile = effectiveSamples > 1 ? studentQuantile(0.5 + confidence / 2, effectiveSamples - 1) : Number.POSITIVE_INFINITY;
+    halfWidth = quantile * Math.sqrt(longRun / Math.max(1, count - 1));
+  }
+  if (significant && !drifts) halfWidth += Math.abs(change) / 2;
+  return {
+    firstRow: firstRow + tail.length - window.length,
+    rows: window.length,
+    mean: mean(samples),
+    standardDeviation: Math.sqrt(variance(window)),
+    halfWidth,
+    effectiveSamples,
+    period,
+    change,
+    drifts,
+    range: rangeOf(window),
+  };
+}
+
+function longRunVariance(values: Float64Array): number {
+  const covariances = autocovariances(values);
+  const size = Math.floor(Math.sqrt(values.length));
+  return Math.max(initialSequence(covariances).value, overlappingBatches(values, size), covariances[0]!);
+}
+
+function rangeOf(values: Float64Array): number {
+  let least = Number.POSITIVE_INFINITY;
+  let most = Number.NEGATIVE_INFINITY;
+  for (const value of values) {
+    if (value < least) least = value;
+    if (value > most) most = value;
+  }
+  return most - least;
+}
