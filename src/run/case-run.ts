@@ -22,18 +22,28 @@ export interface RunSettings {
 export class CaseRun {
   private readonly began = performance.now();
   private readonly secondsBefore: number;
+  /** A run that finds everything done adds nothing to the case's time. */
+  private worked = false;
 
-  constructor(
-    readonly path: string,
-    readonly card: RunCard,
-    readonly solver: SolverEnvironment,
-    readonly ranks: number,
-    readonly state: RunState,
-    readonly settings: RunSettings,
-    readonly signal: AbortSignal,
-    readonly emit: (event: RunEvent) => void,
-  ) {
-    this.secondsBefore = state.seconds;
+  readonly path: string;
+  readonly card: RunCard;
+  readonly solver: SolverEnvironment;
+  readonly ranks: number;
+  readonly state: RunState;
+  readonly settings: RunSettings;
+  readonly signal: AbortSignal;
+  readonly emit: (event: RunEvent) => void;
+
+  constructor(given: Pick<CaseRun, "path" | "card" | "solver" | "ranks" | "state" | "settings" | "signal" | "emit">) {
+    this.path = given.path;
+    this.card = given.card;
+    this.solver = given.solver;
+    this.ranks = given.ranks;
+    this.state = given.state;
+    this.settings = given.settings;
+    this.signal = given.signal;
+    this.emit = given.emit;
+    this.secondsBefore = given.state.seconds;
   }
 
   /** Wall seconds of this run alone. */
@@ -52,7 +62,7 @@ export class CaseRun {
   async save(state?: CaseState, reason?: string): Promise<void> {
     if (state !== undefined) this.state.state = state;
     if (reason !== undefined) this.state.reason = reason;
-    this.state.seconds = this.secondsBefore + this.seconds;
+    this.state.seconds = this.secondsBefore + (this.worked ? this.seconds : 0);
     await writeRunState(this.path, this.state);
   }
 
@@ -67,6 +77,7 @@ export class CaseRun {
   /** Runs one step; its record is in the state file before it starts and after it ended. `signal` in place of the run's own, if given. */
   async step(step: Step, inputs: Hashes, options: { marker?: string; signal?: AbortSignal } = {}): Promise<ProgramResult> {
     this.emit({ event: "step-start", case: this.path, step: step.name });
+    this.worked = true;
     const record: StepRecord = {
       name: step.name,
       state: "running",

@@ -5,7 +5,7 @@ import writeFileAtomic from "write-file-atomic";
 import { inputProblem } from "../errors.js";
 
 /** Entries of system/controlDict that a run sets for itself; they do not change what is computed. */
-export const runEntries = ["startFrom", "stopAt", "endTime", "writeInterval"] as const;
+export const runEntries = ["startFrom", "stopAt", "endTime", "writeInterval", "runTimeModifiable"] as const;
 
 /** What a run has put into system/controlDict, kept in the state until the file is as it was prepared. */
 export interface ControlEdit {
@@ -108,7 +108,12 @@ export async function readControlDict(casePath: string): Promise<string> {
 /** Writes the file for the start of a solver: on from the last written time, up to `most` iterations. */
 export async function prepareForRun(casePath: string, prepared: string, most: number): Promise<ControlEdit> {
   const interval = Number(entryOf(prepared, "writeInterval"));
-  const values: Record<string, string> = { startFrom: "latestTime", stopAt: "endTime", endTime: String(most) };
+  const values: Record<string, string> = {
+    startFrom: "latestTime",
+    stopAt: "endTime",
+    endTime: String(most),
+    runTimeModifiable: "yes",
+  };
   if (Number.isInteger(interval) && interval > 0 && /^(timeStep)?$/.test(entryOf(prepared, "writeControl") ?? "")) {
     values.writeInterval = String(writeIntervalFor(most, interval));
   }

@@ -73,13 +73,23 @@ export async function runProgram(call: ProgramCall): Promise<ProgramResult> {
   }
 }
 
-/** Is a process with this id alive? True also for one that belongs to somebody else. */
+/** Does a process with this id run? True also for one that belongs to somebody else; false for one that has ended and was not fetched. */
 export function isAlive(pid: number): boolean {
   try {
     process.kill(pid, 0);
-    return true;
   } catch (error) {
     return (error as NodeJS.ErrnoException).code === "EPERM";
+  }
+  return statWords(pid)?.[0] !== "Z";
+}
+
+/** State, parent and what follows them in /proc/<pid>/stat. The name before them may hold blanks and brackets. */
+function statWords(pid: number): string[] | null {
+  try {
+    const text = readFileSync(`/proc/${pid}/stat`, "latin1");
+    return text.slice(text.lastIndexOf(")") + 2).split(" ");
+  } catch {
+    return null;
   }
 }
 
@@ -176,14 +186,8 @@ function descendantsOf(pid: number): number[] {
   }
   for (const entry of entries) {
     if (!/^\d+$/.test(entry)) continue;
-    try {
-      const text = readFileSync(`/proc/${entry}/stat`, "latin1");
-      // The name in brackets may hold blanks and brackets; the parent is the second word after it.
-      const parent = Number(text.slice(text.lastIndexOf(")") + 2).split(" ")[1]);
-      children.set(parent, [...(children.get(parent) ?? []), Number(entry)]);
-    } catch {
-      // It ended while the list was read.
-    }
+    const parent = statWords(Number(entry))?.[1];
+    if (parent !== undefined) children.set(Number(parent), [...(children.get(Number(parent)) ?? []), Number(entry)]);
   }
   const found: number[] = [];
   const open = [pid];

@@ -34,6 +34,8 @@ export interface RunOptions {
   minimumWindow?: number | undefined;
   /** How long a program may take to end when asked. */
   graceMilliseconds?: number | undefined;
+  /** A case is divided over no more ranks than leave each this many cells. */
+  leastCellsPerRank?: number | undefined;
 }
 
 interface Held {
@@ -89,7 +91,17 @@ async function runHeld(
   const cores = Math.max(1, options.cores ?? availableParallelism());
   const wanted = Math.max(1, Math.min(options.atOnce ?? cores, held.length, cores));
   const atOnce = fittingMemory(held, wanted, onEvent);
-  const ranks = solver.mpirun === null ? 1 : Math.max(1, Math.floor(cores / atOnce));
+  const share = Math.floor(cores / atOnce);
+  if (solver.mpirun === null && share > 1) {
+    onEvent({
+      event: "remark",
+      case: held[0]!.path,
+      message: "mpirun was not found: each case runs on one core. `dragledger environment` says how to get it.",
+    });
+  }
+  // Measured with 2 800 cells on 2 cores: two ranks took longer than one, they mostly wait for each other.
+  const leastCells = options.leastCellsPerRank ?? 5000;
+  const ranksOf = (cells: number) => (solver.mpirun === null ? 1 : Math.max(1, Math.min(share, Math.floor(cells / leastCells))));
   const settings: RunSettings = {
     mostIterations: options.mostIterations,
     pollMilliseconds: options.pollMilliseconds ?? 500,
@@ -103,7 +115,16 @@ async function runHeld(
     held.map((one) =>
       queue.add(async () => {
         const signals = [one.lost.signal, defect.signal, ...(options.signal ? [options.signal] : [])];
-        const run = new CaseRun(one.path, one.card, solver, ranks, one.state, settings, AbortSignal.any(signals), onEvent);
+        const run = new CaseRun({
+          path: one.path,
+          card: one.card,
+          solver,
+          ranks: ranksOf(one.card.mesh.predictedCells),
+          state: one.state,
+          settings,
+          signal: AbortSignal.any(signals),
+          emit: onEvent,
+        });
         try {
           return await runOne(run);
         } catch (error) {

@@ -1,14 +1,14 @@
-import { rename } from "node:fs/promises";
+import { rename, rm } from "node:fs/promises";
 import { join } from "node:path";
-import { exists, processorFolders, tailOf } from "./case-files.js";
+import { exists, processorFolders, tailOf, timeFolders } from "./case-files.js";
 import { type CaseRun, endWith, goOn, type Phase } from "./case-run.js";
-import { askToEnd, prepareForRun, putBack, readControlDict } from "./control-dict.js";
+import { askToEnd, entryOf, prepareForRun, putBack, readControlDict } from "./control-dict.js";
 import { lastSolved, trapped } from "./failure.js";
 import { HistoryFollower } from "./history-follower.js";
 import { changedInputs, type Hashes, solutionInputs } from "./inputs.js";
 import { listed, setAside } from "./mesh-case.js";
 import type { ProgramResult } from "./program.js";
-import { joinFields, placeFields } from "./start-point.js";
+import { findStartPoint, joinFields, placeFields } from "./start-point.js";
 import { type Step, solveSteps } from "./steps.js";
 import { testTargets, type Watched, Watcher, type Watching } from "./watcher.js";
 
@@ -35,6 +35,7 @@ export async function solveCase(run: CaseRun): Promise<Phase> {
     const joined = await joinFields(run);
     if (joined.end) return joined;
   }
+  await dropOldTimes(run);
   return solved;
 }
 
@@ -75,7 +76,10 @@ async function standing(run: CaseRun, inputs: Hashes): Promise<Phase> {
 
 async function runSolver(run: CaseRun, step: Step, inputs: Hashes, follower: HistoryFollower, from: number): Promise<Phase> {
   const watching = watchingOf(run);
-  if (from >= run.most) return atEnd(run, follower, watching, `the limit of ${run.most} iterations is reached`);
+  if (from >= run.most) {
+    run.skip(step);
+    return atEnd(run, follower, watching, `the limit of ${run.most} iterations is reached`);
+  }
   const prepared = await readControlDict(run.path);
   run.state.controlDict = await prepareForRun(run.path, prepared, run.most);
   await run.save("solving", "");
@@ -173,7 +177,11 @@ async function judge(
   const where = `${last ? `; last solved ${last.field}, initial residual ${last.residual}` : ""}; log: ${step.log}`;
   if (watched.kind === "diverged") return endWith("diverged", `${watched.reason}${where}`);
   if (watched.kind === "no-force") return endWith("failed", `${watched.reason}; log: ${step.log}`);
-  if (result.aborted || run.signal.aborted) return endWith("interrupted", `interrupted at iteration ${follower.iteration}`);
+  if (result.aborted || run.signal.aborted) {
+    const point = await findStartPoint(run);
+    const written = Math.max(Number(point.whole), Number(point.divided ?? 0));
+    return endWith("interrupted", `interrupted at iteration ${follower.iteration}; the next run goes on from ${written}`);
+  }
   if (result.signal === "SIGFPE" || (result.exitCode !== 0 && trapped(log))) {
     return endWith("diverged", `floating point trap after iteration ${follower.iteration}${where}`);
   }
@@ -203,6 +211,14 @@ function atEnd(run: CaseRun, follower: HistoryFollower, watching: Watching, reas
 function settledWith(run: CaseRun, reason: string): Phase {
   run.state.settled = true;
   return endWith("settled", reason);
+}
+
+/** The solver deletes old times by "purgeWrite" only among those of its own start; here they go for all starts of the case. */
+async function dropOldTimes(run: CaseRun): Promise<void> {
+  const kept = Number(entryOf(await readControlDict(run.path), "purgeWrite") ?? 0);
+  if (!Number.isInteger(kept) || kept <= 0) return;
+  const times = (await timeFolders(run.path)).filter((name) => Number(name) !== 0);
+  for (const name of times.slice(0, -kept)) await rm(join(run.path, name), { recursive: true, force: true });
 }
 
 /** Keeps the log of an earlier start as log.simpleFoam.1, .2 and so on, the highest number being the latest of them. */
