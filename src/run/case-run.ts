@@ -74,7 +74,7 @@ export class CaseRun {
     this.emit({ event: "step-end", case: this.path, step: step.name, seconds: 0, skipped: true });
   }
 
-  /** Runs one step; its record is in the state file before it starts and after it ended. `signal` in place of the run's own, if given. */
+  /** Runs one step; its record is in the state file while it runs and after it ended. `signal` in place of the run's own, if given. */
   async step(step: Step, inputs: Hashes, options: { marker?: string; signal?: AbortSignal } = {}): Promise<ProgramResult> {
     this.emit({ event: "step-start", case: this.path, step: step.name });
     this.worked = true;
@@ -90,7 +90,7 @@ export class CaseRun {
       ended: null,
     };
     this.state.steps = [...this.state.steps.filter(({ name }) => name !== step.name), record];
-    await this.save();
+    let noted: Promise<unknown> = Promise.resolve();
     const result = await runProgram({
       ...commandOf(step, this.solver.path, this.solver.mpirun),
       cwd: this.path,
@@ -101,9 +101,14 @@ export class CaseRun {
       ...(options.marker === undefined ? {} : { marker: options.marker }),
       onStart: (pid) => {
         this.state.running = { program: step.program, pid };
-        void this.save().catch(() => undefined);
+        noted = this.save().then(
+          () => null,
+          (error: unknown) => error,
+        );
       },
     });
+    const trouble = await noted;
+    if (trouble) throw trouble;
     this.state.running = null;
     const good = result.exitCode === 0 && !result.aborted;
     Object.assign(record, {

@@ -1,12 +1,9 @@
 import { readFile } from "node:fs/promises";
 import { join } from "node:path";
 import type { RunCard } from "../case/run-card.js";
+import { type BoundaryPatch, boundaryPatches } from "../openfoam/boundary.js";
+import { parseDictionary } from "../openfoam/dictionary.js";
 import { tailOf } from "./case-files.js";
-
-export interface MeshPatch {
-  name: string;
-  faces: number;
-}
 
 /** What was found in a finished mesh: `trouble` makes it useless, remarks are worth knowing. */
 export interface MeshVerdict {
@@ -15,27 +12,21 @@ export interface MeshVerdict {
   remarks: string[];
 }
 
+const boundaryName = "constant/polyMesh/boundary";
 const always = ["inlet", "outlet", "ground"];
 /** Cells made over cells predicted, beyond which something is likely to be wrong with the body or the plan. */
 const tooMany = 1.4;
 const tooFew = 0.6;
 
-/** The patches of constant/polyMesh/boundary (text also in a binary mesh) with their face counts, in file order. */
-export function readPatches(text: string): MeshPatch[] {
-  const bare = text.replace(/\/\*[\s\S]*?\*\/|\/\/[^\n]*/g, " ");
-  const patches: MeshPatch[] = [];
-  for (const match of bare.matchAll(/(?:"([^"\n]*)"|([^\s{};"]+))\s*\{([^{}]*)\}/g)) {
-    const faces = /(?:^|[\s;])nFaces\s+(\d+)\s*;/.exec(match[3]!)?.[1];
-    if (faces !== undefined) patches.push({ name: match[1] ?? match[2]!, faces: Number(faces) });
-  }
-  return patches;
-}
-
 /**
  * Judges a mesh by what stands in it, because the mesher reports none of these as errors: a keep-point inside the body, millimetres
  * taken as metres and a part that was lost all end with "Mesh OK.".
  */
-export function judgeMesh(patches: MeshPatch[], cells: number, card: Pick<RunCard, "parts" | "mesh" | "body">): MeshVerdict {
+export function judgeMesh(
+  patches: Pick<BoundaryPatch, "name" | "faces">[],
+  cells: number,
+  card: Pick<RunCard, "parts" | "mesh" | "body">,
+): MeshVerdict {
   const faces = new Map(patches.map((patch) => [patch.name, patch.faces]));
   const missing = (names: string[]) => names.filter((name) => !faces.get(name));
   const lost = missing(card.parts.map((part) => part.patch));
@@ -71,9 +62,9 @@ function troubleOf(bounds: string[], lost: string[], card: Pick<RunCard, "parts"
 export async function checkMeshOf(casePath: string, card: Pick<RunCard, "parts" | "mesh" | "body">): Promise<MeshVerdict> {
   const mesh = join(casePath, "constant", "polyMesh");
   const boundary = await readFile(join(mesh, "boundary"), "utf8").catch(() => null);
-  if (boundary === null) return { cells: 0, trouble: "constant/polyMesh/boundary was not written", remarks: [] };
+  if (boundary === null) return { cells: 0, trouble: `${boundaryName} was not written`, remarks: [] };
   const cells = await cellsOf(join(mesh, "owner"));
-  const verdict = judgeMesh(readPatches(boundary), cells, card);
+  const verdict = judgeMesh(boundaryPatches(parseDictionary(boundary, boundaryName), boundaryName), cells, card);
   const mesher = await readFile(join(casePath, "log.snappyHexMesh"), "latin1").catch(() => "");
   const limit = /No cells marked for refinement since reached limit (\d+)/.exec(mesher)?.[1];
   if (limit)

@@ -147,21 +147,18 @@ function endAllWithThisProcess(): void {
   });
 }
 
+/** Each process's own peak, summed. A program that ends before the first look has none: half a second in, it would be a wrong one. */
 function sampleMemory(pid: number): { stop: () => number | null } {
-  let peak = 0;
-  const sample = () => {
-    let sum = 0;
-    for (const member of [pid, ...descendantsOf(pid)]) sum += peakOf(member);
-    peak = Math.max(peak, sum);
-  };
-  if (process.platform !== "linux") return { stop: () => null };
-  sample();
-  const timer = setInterval(sample, 1000);
+  let peak: number | null = null;
+  const timer = setInterval(() => {
+    const sum = [pid, ...descendantsOf(pid)].reduce((bytes, member) => bytes + peakOf(member), 0);
+    if (sum > 0) peak = Math.max(peak ?? 0, sum);
+  }, 500);
   timer.unref();
   return {
     stop: () => {
       clearInterval(timer);
-      return peak > 0 ? peak : null;
+      return peak;
     },
   };
 }

@@ -107,8 +107,9 @@ export function testTargets(cd: Float64Array, cl: Float64Array, watching: Watchi
 
 function tested(values: Float64Array, halfWidth: number, { targets, minimumWindow }: Watching): Tested {
   const settling = settle(values, { halfWidth, confidence: targets.confidence });
+  // Both verdicts mean that the half-width is within the target.
   const usable = settling.verdict === "settled" || settling.verdict === "oscillating";
-  return { settling, met: usable && settling.halfWidth <= halfWidth && settling.rows >= minimumWindow };
+  return { settling, met: usable && settling.rows >= minimumWindow };
 }
 
 const finite = (value: number): number | null => (Number.isFinite(value) ? value : null);
