@@ -19,7 +19,8 @@ export function dominantPeriod(values: Float64Array): Period | null {
   const covariances = autocovariances(withoutTrend(values));
   const variance = covariances[0]!;
   if (!(variance > 0)) return null;
-  const longest = Math.floor(rows / 2);
+  // Fewer than three repetitions are no evidence.
+  const longest = Math.floor(rows / 3);
   // Without the factor n / (n - lag) far peaks of a pure cycle would look damped.
   const at = (lag: number): number => ((covariances[lag]! / variance) * rows) / (rows - lag);
   let lag = 1;

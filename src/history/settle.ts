@@ -1,8 +1,9 @@
 import { type Finding, finding } from "../finding.js";
-import { dominantPeriod, type Period } from "./period.js";
+import { mean, variance } from "./correlation.js";
+import { dominantPeriod, periodMeans } from "./period.js";
 import type { Settling, SettlingVerdict } from "./settling.js";
-import { startUp } from "./start-up.js";
-import { fewestSamples, mattering, type WindowMean, windowMean } from "./window-mean.js";
+import { type StartUp, startUp, startUpBatches } from "./start-up.js";
+import { bandOf, calmsDown, fewestSamples, mattering, type WindowMean, windowMean } from "./window-mean.js";
 
 export interface SettleOptions {
   /** Half-width wanted, in the unit of the values. Without it no size of the interval is asked for. */
@@ -57,23 +58,46 @@ export function settle(values: Float64Array, options: SettleOptions = {}): Settl
       stillNeeded: fewestRows - known.length,
     };
   }
-  const half = known.subarray(Math.floor(known.length / 2));
-  const batch = batchRows(dominantPeriod(half), known.length);
-  const start = startUp(known, batch);
+  const start = cutOf(known);
   const settling = start.open ? lateStart(known, start.rows, target, confidence) : window(known, start.rows, target, confidence);
   return { ...settling, startUp: settling.startUp + missing, firstRow: settling.firstRow + missing };
 }
 
-/** Five rows, or the smallest multiple of the period above that, as long as ten batches remain. */
-function batchRows(period: Period | null, rows: number): number {
-  if (period === null) return 5;
-  const multiple = Math.round(Math.ceil(5 / period.rows) * period.rows);
-  return rows / multiple >= 10 ? multiple : 5;
+/** The start-up by batches of five rows; where the second half repeats, by means over whole periods of at least five rows. */
+function cutOf(values: Float64Array): StartUp {
+  const period = dominantPeriod(values.subarray(Math.floor(values.length / 2)));
+  if (period === null) return startUp(values);
+  const length = Math.ceil(5 / period.rows) * period.rows;
+  const means = periodMeans(values, length);
+  if (means.length < 20) return startUp(values);
+  const cut = startUpBatches(means);
+  return { ...cut, rows: cut.rows === 0 ? 0 : Math.ceil(values.length - (means.length - cut.rows) * length) };
+}
+
+/**
+ * Takes back what was cut by chance: the start-up rule follows the noise, and a window chosen for its small spread gives an interval that is too narrow. Rows
+ * before the cut that look like those after it (mean within the noise, spread no larger) are no start-up.
+ */
+function withoutIdleCut(values: Float64Array, cut: number, judged: WindowMean): number {
+  // On a limit cycle the swing hides whether its mean still moves.
+  if (judged.period !== null) return cut;
+  const quarters = 4;
+  const after = values.subarray(judged.firstRow);
+  const spread = variance(after);
+  const perRow = judged.effectiveSamples > 0 ? (spread * after.length) / judged.effectiveSamples : spread;
+  for (let quarter = 0; quarter < quarters; quarter += 1) {
+    const from = Math.floor((cut * quarter) / quarters);
+    const before = values.subarray(from, cut);
+    if (before.length === 0) break;
+    const noise = Math.sqrt(perRow / before.length + perRow / after.length);
+    if (Math.abs(mean(before) - judged.mean) <= 2 * noise && variance(before) <= 1.5 * spread) return from;
+  }
+  return cut;
 }
 
 /** The usual case: a start-up was found. */
 function window(values: Float64Array, cut: number, target: number | null, confidence: number): Settling {
-  let start = cut;
+  let start = withoutIdleCut(values, cut, windowMean(values, cut, target, confidence));
   let judged = windowMean(values, start, target, confidence);
   // A slow tail that the start-up rule left in: cut a quarter at a time, never below a third of all rows.
   while (judged.drifts) {
@@ -92,18 +116,31 @@ function window(values: Float64Array, cut: number, target: number | null, confid
 
 /** The start-up rule found no steady stretch. A history that runs into a constant still counts when the rest of its way is below the target. */
 function lateStart(values: Float64Array, cut: number, target: number | null, confidence: number): Settling {
-  const last = windowMean(values, Math.floor(values.length / 2), target, confidence);
-  if (last.range <= mattering(target, last.mean)) {
-    // It lies somewhere in the band, wherever it goes on to.
-    const halfWidth = Math.max(last.range / 2, Math.min(last.halfWidth, last.range));
+  const half = Math.floor(values.length / 2);
+  const last = windowMean(values, half, target, confidence);
+  const latest = values.length - Math.max(fewestRows, Math.ceil(values.length / 4));
+  let best: { judged: WindowMean; band: number } | null = null;
+  const steps = 8;
+  for (let step = 0; step <= steps && latest >= half; step += 1) {
+    const judged = windowMean(values, half + Math.floor(((latest - half) * step) / steps), target, confidence);
+    const band = bandOf(judged);
+    if (calmsDown(judged.samples) && band <= mattering(target, judged.mean) && !(best !== null && best.band <= band))
+      best = { judged, band };
+  }
+  if (best !== null) {
+    const { judged, band } = best;
     const slow = finding(
       "slow-approach",
       "note",
-      `the last half of the rows still approaches its end value, within a band of ${last.range.toPrecision(2)}; the half-width covers the band`,
+      `the rows from ${judged.firstRow + 1} on still approach their end value; the half-width covers the way seen and the way to go`,
       "Run on if a narrower interval is wanted.",
     );
-    return report({ ...last, halfWidth }, "settled", [slow]);
+    const verdict = swings(judged, target) ? "oscillating" : "settled";
+    return report({ ...judged, halfWidth: band }, verdict, [...swingFindings(judged, target), slow]);
   }
+  // Noise alone puts the least criterion into the second half now and then: rows that look alike throughout have no start-up.
+  const from = withoutIdleCut(values, half, last);
+  if (from < half / 2) return window(values, from, target, confidence);
   const open = finding(
     "start-up-open",
     "warning",
@@ -112,6 +149,23 @@ function lateStart(values: Float64Array, cut: number, target: number | null, con
   );
   if (last.drifts) return report(last, "drifting", [open, driftFinding(last)]);
   return verdictOf(last, target, Math.max(5, 2 * cut - values.length), open);
+}
+
+/** The history repeats with a swing that matters. */
+const swings = (judged: WindowMean, target: number | null): boolean =>
+  judged.period !== null && judged.standardDeviation * Math.SQRT2 > mattering(target, judged.mean);
+
+function swingFindings(judged: WindowMean, target: number | null): Finding[] {
+  if (judged.period === null || !swings(judged, target)) return [];
+  const swing = (judged.standardDeviation * Math.SQRT2).toPrecision(2);
+  if (judged.period.rows < 2.5) {
+    const message = `the values alternate from row to row by ${swing}; the window holds an even number of rows`;
+    return [finding("zig-zag", "note", message, "Lower relaxation factors damp it.")];
+  }
+  const message = `the values repeat every ${judged.period.rows.toPrecision(3)} rows with a swing of ${swing}; the window holds whole periods`;
+  return [
+    finding("limit-cycle", "note", message, "The flow has no steady state on this mesh; the mean over whole periods is used."),
+  ];
 }
 
 function driftFinding(judged: WindowMean): Finding {
@@ -126,33 +180,14 @@ function driftFinding(judged: WindowMean): Finding {
 
 /** @param needed rows that are missing whatever the interval; more than 0 forbids `settled`, with the finding that says why */
 function verdictOf(judged: WindowMean, target: number | null, needed: number, open: Finding | null = null): Settling {
-  const findings: Finding[] = open === null ? [] : [open];
-  const wanted = mattering(target, judged.mean);
+  const findings = [...(open === null ? [] : [open]), ...swingFindings(judged, target)];
   const enough = judged.effectiveSamples >= fewestSamples;
   const narrow = target === null || judged.halfWidth <= target;
-  const banded = judged.range <= wanted;
-  const swing = judged.period !== null && judged.standardDeviation * Math.SQRT2 > wanted;
-  if (judged.period !== null && swing) {
-    const length = judged.period.rows.toPrecision(3);
-    findings.push(
-      judged.period.rows < 2.5
-        ? finding(
-            "zig-zag",
-            "note",
-            "the values alternate from row to row; the window holds an even number of rows",
-            "Lower relaxation factors damp it.",
-          )
-        : finding(
-            "limit-cycle",
-            "note",
-            `the values repeat every ${length} rows with a swing of ${(judged.standardDeviation * Math.SQRT2).toPrecision(2)}; the window holds whole periods`,
-            "The flow has no steady state on this mesh; the mean over whole periods is used.",
-          ),
-    );
-  }
+  const band = bandOf(judged);
+  const banded = band <= mattering(target, judged.mean);
   if (needed === 0 && ((enough && narrow) || banded)) {
-    const halfWidth = banded ? Math.min(judged.halfWidth, judged.range) : judged.halfWidth;
-    return report({ ...judged, halfWidth }, swing ? "oscillating" : "settled", findings);
+    const halfWidth = enough && narrow ? judged.halfWidth : band;
+    return report({ ...judged, halfWidth }, swings(judged, target) ? "oscillating" : "settled", findings);
   }
   if (!enough) {
     const samples = judged.effectiveSamples.toFixed(1);

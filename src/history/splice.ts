@@ -137,7 +137,9 @@ function place(piece: Piece, before: readonly Node[], all: readonly Piece[], fin
     }
   }
   if (parent === null) return node;
-  const startsAnew = rowsBefore(parent, piece.from) <= 2 || distanceAtJoint(parent, piece) > jump;
+  // Replacing another run from its very start is no continuation.
+  const replacesAll = parent.piece.to >= piece.from && rowsBefore(parent, piece.from) <= 2;
+  const startsAnew = replacesAll || distanceAtJoint(parent, piece) > jump;
   if (!startsAnew) {
     node.parent = parent;
     node.root = parent.root;
@@ -253,7 +255,7 @@ function meaninglessRows(node: Node, findings: Finding[]): number {
   }
   const foundation =
     table.dialect === "F3" || table.dialect === "F4" || table.dialect.startsWith("C3") || table.dialect.startsWith("C4");
-  return foundation && from === folderTime && table.rows > 1 ? 1 : 0;
+  return foundation && from === 0 && folderTime === 0 && table.rows > 1 ? 1 : 0;
 }
 
 function chainReason(node: Node, next: Node | undefined, skipped: number, replaced: number): string {

@@ -16,18 +16,23 @@ export interface StartUp {
  * Length of the start-up by MSER-5 (White 1997; White, Cobb and Spratt 2000): of all cuts d the one with the least
  * sum of squares of the batches after d divided by (k - d)^2, with batches of five rows. When that lies in the second half the rule says that
  * there are too few rows.
- *
- * @param batch rows per batch; on a history that repeats, a multiple of its period keeps the phase out of the batches
  */
-export function startUp(values: Float64Array, batch = batchRows): StartUp {
-  const batches = Math.floor(values.length / batch);
-  if (batches < 2 * fewestBatches) return { rows: 0, criterion: Number.NaN, open: true };
+export function startUp(values: Float64Array): StartUp {
+  const batches = Math.floor(values.length / batchRows);
   const origin = values[values.length - 1]!;
   const means = Float64Array.from({ length: batches }, (_, index) => {
     let sum = 0;
-    for (let row = index * batch; row < (index + 1) * batch; row += 1) sum += values[row]! - origin;
-    return sum / batch;
+    for (let row = index * batchRows; row < (index + 1) * batchRows; row += 1) sum += values[row]! - origin;
+    return sum / batchRows;
   });
+  const cut = startUpBatches(means);
+  return { ...cut, rows: cut.rows * batchRows };
+}
+
+/** The same rule on batch means that are given; `rows` counts batches. */
+export function startUpBatches(means: Float64Array): StartUp {
+  const batches = means.length;
+  if (batches < 2 * fewestBatches) return { rows: 0, criterion: Number.NaN, open: true };
   // From the end on, mean and sum of squares grow by one batch at a time (Welford 1962).
   let centre = 0;
   let squares = 0;
@@ -45,5 +50,5 @@ export function startUp(values: Float64Array, batch = batchRows): StartUp {
       best = cut;
     }
   }
-  return { rows: best * batch, criterion: least, open: best > batches / 2 };
+  return { rows: best, criterion: least, open: best > batches / 2 };
 }

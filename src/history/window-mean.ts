@@ -22,8 +22,8 @@ export interface WindowMean {
   change: number;
   /** the change exceeds both what noise makes and what matters */
   drifts: boolean;
-  /** largest minus smallest value */
-  range: number;
+  /** What the interval rests on: the rows, or the means over whole periods. */
+  samples: Float64Array;
 }
 
 /** Size of a change of the mean that matters. */
@@ -49,12 +49,14 @@ export function windowMean(values: Float64Array, firstRow: number, target: numbe
     const count = Math.floor(tail.length / period.rows);
     const whole = Math.min(tail.length, Math.round(count * period.rows));
     window = tail.subarray(tail.length - whole);
-    if (count >= fewestSamples) samples = periodMeans(tail, period.rows);
+    samples = count >= fewestSamples ? periodMeans(tail, period.rows) : window;
   }
   const spread = variance(samples);
   const longRun = longRunVariance(samples);
   const count = samples.length;
-  const effectiveSamples = longRun > 0 ? Math.min(count, (count * spread) / longRun) : count;
+  let effectiveSamples = longRun > 0 ? Math.min(count, (count * spread) / longRun) : count;
+  // A few repetitions of a slow swing are no more evidence than their number.
+  if (period !== null && samples === window) effectiveSamples = Math.min(effectiveSamples, count / period.rows);
   const trend = trendOf(samples);
   const change = trend.slope * (count - 1);
   const residuals = withoutTrend(samples);
@@ -79,22 +81,47 @@ export function windowMean(values: Float64Array, firstRow: number, target: numbe
     period,
     change,
     drifts,
-    range: rangeOf(window),
+    samples,
   };
 }
 
+/** Share of the rows that the summed lags may span; beyond it the correction for the estimated mean blows up. */
+const mostSpan = 0.9;
+
+/**
+ * The larger of Geyer's and the overlapping-batch estimate, at least the variance. Deviations are taken from the estimated mean, which makes
+ * every autocovariance too small by about (long-run variance) / n (Priestley 1981, 5.3.2); a sum over lags -K .. K is made whole by n / (n - 2K - 1).
+ */
 function longRunVariance(values: Float64Array): number {
+  const count = values.length;
   const covariances = autocovariances(values);
-  const size = Math.floor(Math.sqrt(values.length));
-  return Math.max(initialSequence(covariances).value, overlappingBatches(values, size), covariances[0]!);
+  const geyer = initialSequence(covariances);
+  const span = Math.min(mostSpan * count, 4 * geyer.pairs - 1);
+  const size = Math.floor(Math.sqrt(count));
+  return Math.max((geyer.value * count) / (count - span), overlappingBatches(values, size), covariances[0]!);
 }
 
-function rangeOf(values: Float64Array): number {
-  let least = Number.POSITIVE_INFINITY;
-  let most = Number.NEGATIVE_INFINITY;
-  for (const value of values) {
-    if (value < least) least = value;
-    if (value > most) most = value;
-  }
-  return most - least;
+/**
+ * Bound for a history that approaches its end value (steady iterations near convergence): the largest distance of a sample from the mean
+ * plus the way still to go, taken from the means of three thirds: a change that shrinks from third to third by a factor q goes on as the
+ * geometric series q / (1 - q). Infinity when the change does not shrink.
+ */
+export function bandOf({ samples, mean: centre }: WindowMean): number {
+  let farthest = 0;
+  for (const sample of samples) farthest = Math.max(farthest, Math.abs(sample - centre));
+  const third = Math.floor(samples.length / 3);
+  if (third === 0) return Number.POSITIVE_INFINITY;
+  const [first, second, last] = [3, 2, 1].map((from) =>
+    mean(samples.subarray(samples.length - from * third, samples.length - (from - 1) * third)),
+  ) as [number, number, number];
+  const [before, now] = [second - first, last - second];
+  if (now === 0 || before * now < 0) return farthest + Math.abs(now);
+  const factor = now / before;
+  return factor < 1 ? farthest + (Math.abs(now) * factor) / (1 - factor) : Number.POSITIVE_INFINITY;
+}
+
+/** The spread of the second half is at most half that of the first: a history on its way to a constant, not one that wanders. */
+export function calmsDown(samples: Float64Array): boolean {
+  const half = Math.floor(samples.length / 2);
+  return half >= 2 && variance(samples.subarray(half)) <= variance(samples.subarray(0, half)) / 4;
 }
