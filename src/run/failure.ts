@@ -65,8 +65,8 @@ export async function explainFailure(step: string, result: ProgramResult, logNam
 
 /** Log text without colour codes and control characters: it is shown in terminals and reports. */
 function plain(text: string): string {
-  // biome-ignore lint/suspicious/noControlCharactersInRegex: they are what is taken out
-  return text.replace(/\u001b\[[0-9;]*[A-Za-z]/g, "").replace(/[\u0000-\u0009\u000b-\u001f\u007f-\u009f]/g, " ");
+  // biome-ignore lint/suspicious/noControlCharactersInRegex: a colour code begins with one
+  return text.replace(/\u001b\[[0-9;]*[A-Za-z]/g, "").replace(/[^\P{Cc}\n]/gu, " ");
 }
 
 const shortened = (text: string): string => (text.length > longest ? `${text.slice(0, longest - 3)}...` : text);
