@@ -12,7 +12,7 @@ export interface Part {
 
 export interface SurfaceFile {
   path: string;
-  format: "stl-binary" | "stl-ascii";
+  format: "stl-binary" | "stl-ascii" | "obj";
   triangles: number;
 }
 

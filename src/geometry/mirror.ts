@@ -1,0 +1,132 @@
+import { nextInTriangle } from "./edges.js";
+import { nearestDistances } from "./nearest.js";
+import { silhouette } from "./silhouette.js";
+import type { SurfaceMesh } from "./surface-mesh.js";
+import type { Box, Vector3 } from "./vector.js";
+
+/** How a body and a plane across one axis of the file belong together. Mesh unit. */
+export interface Mirror {
+  kind: "whole" | "half" | "none";
+  /** Coordinate of the plane on that axis. */
+  plane: number;
+  /** whole and none: greatest distance of a mirrored vertex to the surface, over the sampled vertices; half: of the cut from its plane. */
+  deviation: number;
+}
+
+/** Vertices that are mirrored: one in each cell of a grid, so that fine and coarse regions count alike. */
+const MOST_SAMPLES = 6000;
+/** Shares of the body's greatest extent: a mirrored body may be off by this (2 mm on a car), a cut lies this close to its plane. */
+const SAME = 5e-4;
+const IN_PLANE = 1e-4;
+/** A cut is open over half the length at least, or closed by a lid of most of the side view. */
+const CUT_LENGTH = 0.5;
+const LID_SHARE = 0.7;
+
+/**
+ * Whether the body is symmetrical about the plane half-way between its bounds on `axis` (0, 1, 2), or is one half of such a body,
+ * cut by the plane at one of these bounds: the cut is open along half the body's greatest extent, or closed by a lid that fills most
+ * of the side view. The grid, not chance, chooses the vertices that are tried: the result is the same every time.
+ */
+export function mirrorOf(mesh: SurfaceMesh, bounds: Box, axis: number): Mirror {
+  const length = Math.max(...bounds.max.map((value, k) => value - bounds.min[k]));
+  const plane = (bounds.min[axis] + bounds.max[axis]) / 2;
+  if (!(length > 0)) return { kind: "none", plane, deviation: 0 };
+  const deviation = mirrorDistance(mesh, bounds, axis, plane, length);
+  if (deviation <= SAME * length) return { kind: "whole", plane, deviation };
+  return halfOf(mesh, bounds, axis, length) ?? { kind: "none", plane, deviation };
+}
+
+function mirrorDistance(mesh: SurfaceMesh, bounds: Box, axis: number, plane: number, length: number): number {
+  let points = samples(mesh.vertices, bounds.min, length);
+  for (let at = axis; at < points.length; at += 3) points[at] = 2 * plane - points[at];
+  let worst = 0;
+  for (const reach of [length / 200, length / 20, length / 3, 4 * length]) {
+    const distances = nearestDistances(mesh, points, reach);
+    const beyond: number[] = [];
+    distances.forEach((distance, k) => {
+      if (distance === Infinity) beyond.push(k);
+      else worst = Math.max(worst, distance);
+    });
+    if (beyond.length === 0) return worst;
+    // Far from the surface the grid cannot help; an even choice of the rest finds the greatest distance well enough.
+    const kept = beyond.filter((_, k) => k % Math.ceil(beyond.length / 200) === 0);
+    const next = new Float64Array(3 * kept.length);
+    kept.forEach((k, to) => {
+      next.set(points.subarray(3 * k, 3 * k + 3), 3 * to);
+    });
+    points = next;
+  }
+  return worst;
+}
+
+/** 3 per sample: the first vertex of each cell of a grid, coarse enough that there are few. */
+function samples(vertices: Float32Array, [x0, y0, z0]: Vector3, length: number): Float64Array {
+  for (let cell = length / 80; ; cell *= 1.5) {
+    const seen = new Set<number>();
+    const found: number[] = [];
+    const side = Math.ceil(length / cell) + 1;
+    for (let at = 0; at < vertices.length && found.length <= 3 * MOST_SAMPLES; at += 3) {
+      const i = Math.floor((vertices[at] - x0) / cell);
+      const j = Math.floor((vertices[at + 1] - y0) / cell);
+      const k = Math.floor((vertices[at + 2] - z0) / cell);
+      const key = (i * side + j) * side + k;
+      if (seen.has(key)) continue;
+      seen.add(key);
+      found.push(vertices[at], vertices[at + 1], vertices[at + 2]);
+    }
+    if (found.length <= 3 * MOST_SAMPLES) return Float64Array.from(found);
+  }
+}
+
+function halfOf(mesh: SurfaceMesh, bounds: Box, axis: number, length: number): Mirror | null {
+  const sides = [bounds.min[axis], bounds.max[axis]].map((plane) => ({ plane, ...cutAt(mesh, axis, plane, IN_PLANE * length) }));
+  const open = sides.filter((side) => side.openSpan >= CUT_LENGTH * length);
+  if (open.length === 1) return { kind: "half", plane: open[0].plane, deviation: open[0].deviation };
+  const lids = sides.filter((side) => side.lid > 0);
+  if (lids.length !== 1) return null;
+  const direction: Vector3 = [0, 0, 0];
+  direction[axis] = 1;
+  return lids[0].lid >= LID_SHARE * silhouette(mesh, direction).area
+    ? { kind: "half", plane: lids[0].plane, deviation: lids[0].deviation }
+    : null;
+}
+
+/** What lies in a plane: the diagonal of the box about the open edges, the area of the triangles, and how far both stray from it. */
+function cutAt(
+  { vertices, corners, ring }: SurfaceMesh,
+  axis: number,
+  plane: number,
+  tolerance: number,
+): { openSpan: number; lid: number; deviation: number } {
+  const off = (h: number): number => Math.abs(vertices[3 * corners[h] + axis] - plane);
+  const low: Vector3 = [Infinity, Infinity, Infinity];
+  const high: Vector3 = [-Infinity, -Infinity, -Infinity];
+  let lid = 0;
+  let deviation = 0;
+  for (let h = 0; h < corners.length; h++) {
+    if (off(h) > tolerance) continue;
+    const next = nextInTriangle(h);
+    if (off(next) > tolerance) continue;
+    if (ring[h] === h)
+      for (const end of [h, next]) {
+        deviation = Math.max(deviation, off(end));
+        for (let k = 0; k < 3; k++) {
+          low[k] = Math.min(low[k], vertices[3 * corners[end] + k]);
+          high[k] = Math.max(high[k], vertices[3 * corners[end] + k]);
+        }
+      }
+    if (h % 3 === 0 && off(h + 2) <= tolerance) lid += areaAcross(vertices, corners, h, axis);
+  }
+  return { openSpan: low[0] > high[0] ? 0 : Math.hypot(...low.map((value, k) => high[k] - value)), lid, deviation };
+}
+
+/** Area of the triangle of half-edge `h`, seen along `axis`. */
+function areaAcross(vertices: Float32Array, corners: Uint32Array, h: number, axis: number): number {
+  const u = (axis + 1) % 3;
+  const v = (axis + 2) % 3;
+  const [a, b, c] = [3 * corners[h], 3 * corners[h + 1], 3 * corners[h + 2]];
+  const cross =
+    (vertices[b + u] - vertices[a + u]) * (vertices[c + v] - vertices[a + v]) -
+    (vertices[b + v] - vertices[a + v]) * (vertices[c + u] - vertices[a + u]);
+  return Math.abs(cross) / 2;
+}

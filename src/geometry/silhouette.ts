@@ -1,0 +1,175 @@
+import { inputProblem } from "../errors.js";
+import { NO_EDGE, nextInTriangle } from "./edges.js";
+import type { SurfaceMesh } from "./surface-mesh.js";
+import { type Pieces, sweep } from "./sweep.js";
+import type { Vector3 } from "./vector.js";
+
+export interface Silhouette {
+  /** Area of the union of all triangles seen along the direction; the mesh's unit squared. */
+  area: number;
+  /** Bound of what the rounding of the coordinates to 32 bits can change about it. What facets differ from a curved body is not in it. */
+  error: number;
+  /** Length of the outline, holes included. */
+  outline: number;
+  /** Edges that were swept, and the places where they cross. */
+  edges: number;
+  crossings: number;
+}
+
+/**
+ * Exact area of the union silhouette of a surface along a direction (any length but zero): what a parallel beam is cut out by. Correct
+ * for overlapping, nested and hidden parts, and for surfaces that are open, not manifold or not oriented.
+ *
+ * Turn every triangle so that it faces the viewer, and add up their outlines as chains of directed edges: the number of times the
+ * sum winds about a point is the number of triangles that cover it. Edges between two triangles that face the same way cancel out;
+ * what remains are the silhouette edges (twice), open edges (once) and the like. Their plane is swept for the area they wind about.
+ */
+export function silhouette(mesh: Pick<SurfaceMesh, "vertices" | "corners" | "ring">, direction: Vector3): Silhouette {
+  const along = unit(direction);
+  const pieces = silhouetteEdges(mesh, along);
+  let flat = 0;
+  for (let k = 0; k < pieces.weight.length; k++) if (pieces.ay[k] === pieces.by[k]) flat += Math.abs(pieces.bx[k] - pieces.ax[k]);
+  const { area, border, crossings } = sweep(pieces);
+  const outline = border + flat;
+  return { area, error: outline * roundingOf(mesh.vertices), outline, edges: pieces.weight.length, crossings };
+}
+
+function unit(direction: Vector3): Vector3 {
+  const length = Math.hypot(...direction);
+  if (!(length > 0 && Number.isFinite(length)))
+    throw inputProblem({
+      code: "direction-zero",
+      message: `The direction of view (${direction.join(" ")}) has no length.`,
+      remedy: "Give a vector with a length, such as 1 0 0.",
+    });
+  return [direction[0] / length, direction[1] / length, direction[2] / length];
+}
+
+/** The edges that do not cancel out, in a plane across the direction whose second axis runs along the silhouette's longer side. */
+function silhouetteEdges(mesh: Pick<SurfaceMesh, "vertices" | "corners" | "ring">, along: Vector3): Pieces {
+  const { vertices, corners, ring } = mesh;
+  const facing = facingOf(mesh, along);
+  const from: number[] = [];
+  const to: number[] = [];
+  const weight: number[] = [];
+  for (let h = 0, t = 0; h < ring.length; t++) {
+    for (let end = h + 3; h < end; h++) {
+      const other = ring[h];
+      if (other === NO_EDGE) continue;
+      let sum = facing[t];
+      if (other !== h) {
+        const triangle = (other / 3) | 0;
+        if (ring[other] === h) {
+          // The common case, two triangles: met at the lower half-edge.
+          if (other < h) continue;
+          sum += corners[other] === corners[h] ? facing[triangle] : -facing[triangle];
+        } else {
+          sum = ringSum(mesh, facing, h);
+        }
+      }
+      if (sum === 0) continue;
+      from.push(corners[h]);
+      to.push(corners[nextInTriangle(h)]);
+      weight.push(sum);
+    }
+  }
+  const { u, v, middle } = planeAcross(along, vertices, from);
+  const at = (ids: number[], axis: Vector3, zero: number): Float64Array => {
+    const values = new Float64Array(ids.length);
+    for (let k = 0; k < ids.length; k++) {
+      const id = 3 * ids[k];
+      values[k] = vertices[id] * axis[0] + vertices[id + 1] * axis[1] + vertices[id + 2] * axis[2] - zero;
+    }
+    return values;
+  };
+  return {
+    ax: at(from, u, middle[0]),
+    ay: at(from, v, middle[1]),
+    bx: at(to, u, middle[0]),
+    by: at(to, v, middle[1]),
+    weight: Int32Array.from(weight),
+  };
+}
+
+/** 1 per triangle: 1 where the triangle's front is seen along the direction, -1 where its back is, 0 edge-on. */
+function facingOf({ vertices, corners }: Pick<SurfaceMesh, "vertices" | "corners">, [dx, dy, dz]: Vector3): Int8Array {
+  const facing = new Int8Array(corners.length / 3);
+  for (let t = 0, h = 0; t < facing.length; t++, h += 3) {
+    const a = 3 * corners[h];
+    const b = 3 * corners[h + 1];
+    const c = 3 * corners[h + 2];
+    const ax = vertices[a];
+    const ay = vertices[a + 1];
+    const az = vertices[a + 2];
+    const ux = vertices[b] - ax;
+    const uy = vertices[b + 1] - ay;
+    const uz = vertices[b + 2] - az;
+    const vx = vertices[c] - ax;
+    const vy = vertices[c + 1] - ay;
+    const vz = vertices[c + 2] - az;
+    const dot = dx * (uy * vz - uz * vy) + dy * (uz * vx - ux * vz) + dz * (ux * vy - uy * vx);
+    facing[t] = dot < 0 ? 1 : dot > 0 ? -1 : 0;
+  }
+  return facing;
+}
+
+/** The sum over an edge where three or more triangles meet, in the direction of half-edge `h`; 0 unless `h` is its lowest. */
+function ringSum({ corners, ring }: Pick<SurfaceMesh, "corners" | "ring">, facing: Int8Array, h: number): number {
+  let sum = facing[(h / 3) | 0];
+  for (let other = ring[h]; other !== h; other = ring[other]) {
+    if (other < h) return 0;
+    const triangle = facing[(other / 3) | 0];
+    sum += corners[other] === corners[h] ? triangle : -triangle;
+  }
+  return sum;
+}
+
+interface Plane {
+  u: Vector3;
+  v: Vector3;
+  /** Middle of the vertices along u and v: taken away, so that a body far from the origin loses no digits. */
+  middle: [number, number];
+}
+
+/** A plane across the direction; along an axis of the coordinates it keeps their values. */
+function planeAcross([dx, dy, dz]: Vector3, vertices: Float32Array, ids: number[]): Plane {
+  const size = [Math.abs(dx), Math.abs(dy), Math.abs(dz)];
+  const least = size.indexOf(Math.min(...size));
+  const helper: Vector3 = [least === 0 ? 1 : 0, least === 1 ? 1 : 0, least === 2 ? 1 : 0];
+  const [x, y, z] = cross(helper, [dx, dy, dz]);
+  const length = Math.hypot(x, y, z);
+  const u: Vector3 = [x / length, y / length, z / length];
+  const v = cross([dx, dy, dz], u);
+  const ranges = [u, v].map((axis) => {
+    let low = Infinity;
+    let high = -Infinity;
+    for (const id of ids) {
+      const value = vertices[3 * id] * axis[0] + vertices[3 * id + 1] * axis[1] + vertices[3 * id + 2] * axis[2];
+      low = Math.min(low, value);
+      high = Math.max(high, value);
+    }
+    return { extent: high - low, middle: ids.length > 0 ? (low + high) / 2 : 0 };
+  });
+  return ranges[0].extent > ranges[1].extent
+    ? { u: v, v: u, middle: [ranges[1].middle, ranges[0].middle] }
+    : { u, v, middle: [ranges[0].middle, ranges[1].middle] };
+}
+
+const cross = (a: Vector3, b: Vector3): Vector3 => [
+  a[1] * b[2] - a[2] * b[1],
+  a[2] * b[0] - a[0] * b[2],
+  a[0] * b[1] - a[1] * b[0],
+];
+
+/**
+ * How far the rounding of three coordinates to 32 bits can move a vertex in any one direction: √3 times half the spacing of float32
+ * numbers at the largest coordinate. Times the outline, this bounds the change of the area to first order.
+ */
+function roundingOf(vertices: Float32Array): number {
+  let largest = 0;
+  for (let k = 0; k < vertices.length; k++) {
+    const size = Math.abs(vertices[k]);
+    if (size > largest) largest = size;
+  }
+  return largest > 0 ? Math.sqrt(3) * 2 ** (Math.floor(Math.log2(largest)) - 24) : 0;
+}

@@ -1,0 +1,125 @@
+import type { SurfaceMesh } from "./surface-mesh.js";
+import type { Vector3 } from "./vector.js";
+
+/** Pixels along the longer side of the picture: about a millimetre on a road vehicle. */
+const PIXELS = 2048;
+const NOBODY = 0xffff;
+
+/**
+ * Which share of the silhouette each part owns when the body is seen along `direction` and the nearest part hides the others; the
+ * shares add up to 1 (to 0 where nothing has area). Depth buffer of 2048 pixels along the longer side, sampled at the middle of each
+ * pixel: a part that is nowhere as wide as a pixel may be missed. Where two parts are equally near, the lower number owns the pixel,
+ * so that the order of the triangles does not matter.
+ */
+export function visibleShares(
+  mesh: Pick<SurfaceMesh, "vertices" | "corners" | "partOf">,
+  parts: number,
+  direction: Vector3,
+): Float64Array {
+  const { vertices, corners, partOf } = mesh;
+  const shares = new Float64Array(parts);
+  const points = projected(vertices, direction);
+  const range = ranges(points, corners);
+  const longer = Math.max(range.width, range.height);
+  if (!(longer > 0)) return shares;
+  const scale = PIXELS / longer;
+  const columns = Math.max(1, Math.ceil(range.width * scale));
+  const rows = Math.max(1, Math.ceil(range.height * scale));
+  const depth = new Float32Array(columns * rows).fill(Infinity);
+  const owner = new Uint16Array(columns * rows).fill(NOBODY);
+  for (let t = 0, h = 0; t < partOf.length; t++, h += 3) {
+    const a = 3 * corners[h];
+    const b = 3 * corners[h + 1];
+    const c = 3 * corners[h + 2];
+    const ax = (points[a] - range.left) * scale;
+    const bx = (points[b] - range.left) * scale;
+    const cx = (points[c] - range.left) * scale;
+    // Middles of pixels lie at whole numbers and a half.
+    const left = Math.max(0, Math.ceil(Math.min(ax, bx, cx) - 0.5));
+    const right = Math.min(columns - 1, Math.floor(Math.max(ax, bx, cx) - 0.5));
+    if (left > right) continue;
+    const ay = (points[a + 1] - range.bottom) * scale;
+    const by = (points[b + 1] - range.bottom) * scale;
+    const cy = (points[c + 1] - range.bottom) * scale;
+    const bottom = Math.max(0, Math.ceil(Math.min(ay, by, cy) - 0.5));
+    const top = Math.min(rows - 1, Math.floor(Math.max(ay, by, cy) - 0.5));
+    if (bottom > top) continue;
+    const twice = (bx - ax) * (cy - ay) - (by - ay) * (cx - ax);
+    if (twice === 0) continue;
+    const az = points[a + 2];
+    const sb = points[b + 2] - az;
+    const sc = points[c + 2] - az;
+    const part = partOf[t];
+    for (let row = bottom; row <= top; row++) {
+      const y = row + 0.5 - ay;
+      for (let column = left; column <= right; column++) {
+        const x = column + 0.5 - ax;
+        const wb = (x * (cy - ay) - y * (cx - ax)) / twice;
+        const wc = (y * (bx - ax) - x * (by - ay)) / twice;
+        if (wb < 0 || wc < 0 || wb + wc > 1) continue;
+        const z = Math.fround(az + wb * sb + wc * sc);
+        const at = row * columns + column;
+        if (z < depth[at] || (z === depth[at] && part < owner[at])) {
+          depth[at] = z;
+          owner[at] = part;
+        }
+      }
+    }
+  }
+  let seen = 0;
+  for (let at = 0; at < owner.length; at++) {
+    if (owner[at] === NOBODY) continue;
+    seen++;
+    shares[owner[at]]++;
+  }
+  if (seen > 0) for (let part = 0; part < parts; part++) shares[part] /= seen;
+  return shares;
+}
+
+/** 3 per vertex: across, upwards and along the direction of view. */
+function projected(vertices: Float32Array, [dx, dy, dz]: Vector3): Float32Array {
+  const length = Math.hypot(dx, dy, dz);
+  const w: Vector3 = [dx / length, dy / length, dz / length];
+  const size = w.map(Math.abs);
+  const least = size.indexOf(Math.min(...size));
+  const helper: Vector3 = [least === 0 ? 1 : 0, least === 1 ? 1 : 0, least === 2 ? 1 : 0];
+  const u = normalised(cross(helper, w));
+  const v = cross(w, u);
+  const points = new Float32Array(vertices.length);
+  for (let at = 0; at < vertices.length; at += 3) {
+    const x = vertices[at];
+    const y = vertices[at + 1];
+    const z = vertices[at + 2];
+    points[at] = u[0] * x + u[1] * y + u[2] * z;
+    points[at + 1] = v[0] * x + v[1] * y + v[2] * z;
+    points[at + 2] = w[0] * x + w[1] * y + w[2] * z;
+  }
+  return points;
+}
+
+function ranges(points: Float32Array, corners: Uint32Array): { left: number; bottom: number; width: number; height: number } {
+  let left = Infinity;
+  let right = -Infinity;
+  let bottom = Infinity;
+  let top = -Infinity;
+  for (let h = 0; h < corners.length; h++) {
+    const x = points[3 * corners[h]];
+    const y = points[3 * corners[h] + 1];
+    if (x < left) left = x;
+    if (x > right) right = x;
+    if (y < bottom) bottom = y;
+    if (y > top) top = y;
+  }
+  return { left, bottom, width: right - left, height: top - bottom };
+}
+
+const cross = (a: Vector3, b: Vector3): Vector3 => [
+  a[1] * b[2] - a[2] * b[1],
+  a[2] * b[0] - a[0] * b[2],
+  a[0] * b[1] - a[1] * b[0],
+];
+
+function normalised(a: Vector3): Vector3 {
+  const length = Math.hypot(...a);
+  return [a[0] / length, a[1] / length, a[2] / length];
+}
