@@ -1,5 +1,5 @@
 import { inputProblem } from "../errors.js";
-import { blockColumns, forceBlocks, totalFirstNames } from "./force-columns.js";
+import { blockColumns, type ForceBlocks, forceBlocks, totalFirstNames } from "./force-columns.js";
 import { cellsOf, numberOf, readNumberRows } from "./number-rows.js";
 import type { Column, Table, TableLayout } from "./table.js";
 import { textBytes, textLine } from "./table-bytes.js";
@@ -202,19 +202,11 @@ function nameColumns(section: Section, cells: Float64Array[], naming: Naming, re
     }
     const blocks = forceBlocks(after.length);
     if (blocks !== null) {
-      const bracketed = naming.first.replace(/\s+/g, "");
-      if (bracketed.includes("(((")) section.dialect = "F1";
-      else if (bracketed.includes("),(")) section.dialect = "F2";
-      else section.dialect = blocks.parts === 3 ? "F3" : "F4";
-      const share = blocks.parts * 3;
-      section.columns = [...front, ...blockColumns(after.slice(0, share))];
-      section.moments = [...front, ...blockColumns(after.slice(share, 2 * share))];
-      if (blocks.local) {
-        section.columns.push(...blockColumns(after.slice(2 * share, 3 * share), "local_"));
-        section.moments.push(...blockColumns(after.slice(3 * share), "local_"));
-      }
+      section.dialect = blockDialect(naming.first, blocks);
+      nameBlocks(section, front, after, blocks);
       return;
     }
+    section.layout = "unknown";
   }
   if (section.layout === "coefficients") section.dialect = coefficientDialect(naming);
   let columns = names;
@@ -222,20 +214,49 @@ function nameColumns(section: Section, cells: Float64Array[], naming: Naming, re
     if (names.length > 0 && after.length === 3 * names.length) {
       columns = names.flatMap((name) => [`${name}_x`, `${name}_y`, `${name}_z`]);
     } else {
-      columns = after.map((_, index) => names[index] ?? `column ${index + 2}`);
+      // Names that may be shifted would give a plausible wrong value.
+      columns = after.map((_, index) => `column ${index + 2}`);
       remarks.push({
         code: "header-mismatch",
-        message: `the header names ${names.length + 1} columns but the rows hold ${after.length + 1} numbers`,
+        message: `the header names ${names.length + 1} columns but the rows hold ${after.length + 1} numbers: the columns have no names`,
       });
-      // Names that may be shifted would give a plausible wrong coefficient.
       if (section.layout === "coefficients") {
         section.layout = "unknown";
         section.dialect = "";
-        columns = after.map((_, index) => `column ${index + 2}`);
       }
     }
   }
   section.columns = [time, ...columns.map((name, index) => ({ name, values: after[index] ?? new Float64Array(0) }))];
+}
+
+function blockDialect(firstRow: string, blocks: ForceBlocks): string {
+  const brackets = firstRow.replace(/\s+/g, "");
+  if (brackets.includes("(((")) return "F1";
+  if (brackets.includes("),(")) return "F2";
+  return blocks.parts === 3 ? "F3" : "F4";
+}
+
+/** Columns of a `forces.dat`; values in a local system stand further right in the row, or in a second row of the same time. */
+function nameBlocks(section: Section, front: Column[], cells: Float64Array[], blocks: ForceBlocks): void {
+  const share = blocks.parts * 3;
+  let [lead, main] = [front, cells.slice(0, 2 * share)];
+  let local = blocks.local ? cells.slice(2 * share) : null;
+  const time = front[0]!.values;
+  const paired = time.length >= 2 && time.length % 2 === 0 && time.every((each, row) => each === time[row - (row % 2)]);
+  if (local === null && paired) {
+    const everyOther = (values: Float64Array, start: number): Float64Array =>
+      Float64Array.from({ length: values.length / 2 }, (_, row) => values[2 * row + start]!);
+    lead = front.map(({ name, values }) => ({ name, values: everyOther(values, 0) }));
+    local = main.map((values) => everyOther(values, 1));
+    main = main.map((values) => everyOther(values, 0));
+    section.rows /= 2;
+  }
+  section.columns = [...lead, ...blockColumns(main.slice(0, share))];
+  section.moments = [...lead, ...blockColumns(main.slice(share))];
+  if (local !== null) {
+    section.columns.push(...blockColumns(local.slice(0, share), "local_"));
+    section.moments.push(...blockColumns(local.slice(share), "local_"));
+  }
 }
 
 /** Which program family wrote a coefficient table, as far as its header tells. */
