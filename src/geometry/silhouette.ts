@@ -9,7 +9,7 @@ export interface Silhouette {
   area: number;
   /** Bound of what the rounding of the coordinates to 32 bits can change about it. What facets differ from a curved body is not in it. */
   error: number;
-  /** Length of the outline, holes included. */
+  /** Length of the outline, holes included. Never too short: of edges along the lines of the sweep, hidden ones are counted too. */
   outline: number;
   /** Edges that were swept, and the places where they cross. */
   edges: number;
@@ -27,10 +27,8 @@ export interface Silhouette {
 export function silhouette(mesh: Pick<SurfaceMesh, "vertices" | "corners" | "ring">, direction: Vector3): Silhouette {
   const along = unit(direction);
   const pieces = silhouetteEdges(mesh, along);
-  let flat = 0;
-  for (let k = 0; k < pieces.weight.length; k++) if (pieces.ay[k] === pieces.by[k]) flat += Math.abs(pieces.bx[k] - pieces.ax[k]);
   const { area, border, crossings } = sweep(pieces);
-  const outline = border + flat;
+  const outline = border + levelLength(pieces);
   return { area, error: outline * roundingOf(mesh.vertices), outline, edges: pieces.weight.length, crossings };
 }
 
@@ -43,6 +41,24 @@ function unit(direction: Vector3): Vector3 {
       remedy: "Give a vector with a length, such as 1 0 0.",
     });
   return [direction[0] / length, direction[1] / length, direction[2] / length];
+}
+
+/** Length of the pieces that the sweep passes over because they lie level; those upon each other count once. */
+function levelLength({ ax, ay, bx, by }: Pieces): number {
+  const level: { height: number; from: number; to: number }[] = [];
+  for (let k = 0; k < ay.length; k++)
+    if (ay[k] === by[k]) level.push({ height: ay[k], from: Math.min(ax[k], bx[k]), to: Math.max(ax[k], bx[k]) });
+  level.sort((a, b) => a.height - b.height || a.from - b.from);
+  let length = 0;
+  let height = Number.NaN;
+  let end = 0;
+  for (const piece of level) {
+    const from = piece.height === height ? Math.max(piece.from, end) : piece.from;
+    if (piece.to > from) length += piece.to - from;
+    end = piece.height === height ? Math.max(end, piece.to) : piece.to;
+    height = piece.height;
+  }
+  return length;
 }
 
 /** The edges that do not cancel out, in a plane across the direction whose second axis runs along the silhouette's longer side. */
