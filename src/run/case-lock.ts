@@ -62,7 +62,7 @@ export async function refuseOrphan(casePath: string): Promise<void> {
   const running = (await readRunState(casePath))?.running;
   if (!running || !isAlive(running.pid)) return;
   const folder = await readlink(`/proc/${running.pid}/cwd`).catch(() => null);
-  if (folder !== casePath) return;
+  if (folder !== running.cwd) return;
   throw inputProblem({
     code: "program-still-running",
     message: `${running.program} (process ${running.pid}), started by a run that is gone, still works in this case.`,

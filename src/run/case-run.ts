@@ -9,6 +9,7 @@ import type { Hashes } from "./inputs.js";
 import { type ProgramResult, runProgram } from "./program.js";
 import { type RunState, type StepRecord, writeRunState } from "./run-state.js";
 import { commandOf, type Step } from "./steps.js";
+import type { Workplace } from "./workplace.js";
 
 export interface RunSettings {
   mostIterations: number | undefined;
@@ -33,9 +34,11 @@ export class CaseRun {
   readonly settings: RunSettings;
   readonly signal: AbortSignal;
   readonly emit: (event: RunEvent) => void;
+  readonly workplace: Workplace;
 
-  constructor(given: Pick<CaseRun, "path" | "card" | "solver" | "ranks" | "state" | "settings" | "signal" | "emit">) {
+  constructor(given: Pick<CaseRun, "path" | "card" | "solver" | "ranks" | "state" | "settings" | "signal" | "emit" | "workplace">) {
     this.path = given.path;
+    this.workplace = given.workplace;
     this.card = given.card;
     this.solver = given.solver;
     this.ranks = given.ranks;
@@ -91,16 +94,18 @@ export class CaseRun {
     };
     this.state.steps = [...this.state.steps.filter(({ name }) => name !== step.name), record];
     let noted: Promise<unknown> = Promise.resolve();
+    const { program, args } = commandOf(step, this.solver.path, this.solver.mpirun);
     const result = await runProgram({
-      ...commandOf(step, this.solver.path, this.solver.mpirun),
-      cwd: this.path,
+      program,
+      args: [...args, ...this.workplace.args],
+      cwd: this.workplace.cwd,
       env: this.solver.env,
       log: join(this.path, step.log),
       signal: options.signal ?? this.signal,
       graceMilliseconds: this.settings.graceMilliseconds,
       ...(options.marker === undefined ? {} : { marker: options.marker }),
       onStart: (pid) => {
-        this.state.running = { program: step.program, pid };
+        this.state.running = { program: step.program, pid, cwd: this.workplace.cwd };
         noted = this.save().then(
           () => null,
           (error: unknown) => error,

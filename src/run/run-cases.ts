@@ -14,6 +14,7 @@ import { meshCase, stepsToMesh } from "./mesh-case.js";
 import { freshState, ownerLives, type RunState, readRunState, thisProcess, writeRunState } from "./run-state.js";
 import { restoreControlDict, solveCase } from "./solve-case.js";
 import { solveSteps } from "./steps.js";
+import { openWorkplace, type Workplace } from "./workplace.js";
 
 export interface RunOptions {
   /** Cores to use in all; all of the machine's when left out. */
@@ -43,6 +44,7 @@ interface Held {
   card: RunCard;
   state: RunState;
   lock: CaseLock;
+  workplace: Workplace;
   lost: AbortController;
 }
 
@@ -65,7 +67,7 @@ export async function runCases(paths: string[], options: RunOptions, onEvent: (e
     const byPath = new Map(outcomes.map((outcome) => [outcome.path, outcome]));
     return await Promise.all(paths.map(async (path) => byPath.get(await canonical(path))!));
   } finally {
-    await Promise.all(held.map(({ lock }) => lock.release()));
+    await Promise.all(held.flatMap(({ lock, workplace }) => [lock.release(), workplace.leave()]));
   }
 }
 
@@ -124,6 +126,7 @@ async function runHeld(
           settings,
           signal: AbortSignal.any(signals),
           emit: onEvent,
+          workplace: one.workplace,
         });
         try {
           return await runOne(run);
@@ -215,7 +218,7 @@ async function hold(path: string, card: RunCard): Promise<Held> {
     const state = (await readRunState(path)) ?? freshState();
     state.owner = thisProcess();
     await writeRunState(path, state);
-    return { path, card, state, lock, lost };
+    return { path, card, state, lock, lost, workplace: await openWorkplace(path) };
   } catch (error) {
     await lock.release();
     throw error;

@@ -39,7 +39,7 @@ export interface RunState {
   /** The process that runs the case; null when none does. */
   owner: { pid: number; host: string } | null;
   /** The program that was started last and has not been seen to end. */
-  running: { program: string; pid: number } | null;
+  running: { program: string; pid: number; cwd: string } | null;
   steps: StepRecord[];
   mesh: { inputs: Hashes; cells: number; remarks: string[] } | null;
   solution: { inputs: Hashes; most: number; targets: { drag: number; lift: number; confidence: number } } | null;

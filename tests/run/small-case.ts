@@ -66,6 +66,8 @@ export interface SmallCaseOptions {
   keepPoint?: string;
   /** Relaxation factor of the velocity. */
   relaxation?: number;
+  /** Name of the case folder. */
+  folder?: string;
 }
 
 export const smallControl = dictionary(
@@ -81,8 +83,9 @@ export async function smallCase({
   scale = 1,
   keepPoint = "(-1.501 0.0123 1.51)",
   relaxation = 0.9,
+  folder: name = "box-30ms",
 }: SmallCaseOptions = {}): Promise<string> {
-  const folder = join(await temporaryFolder(), "box-30ms");
+  const folder = join(await temporaryFolder(), name);
   for (const sub of ["0", "constant/triSurface", "system"]) await mkdir(join(folder, sub), { recursive: true });
   const card = {
     ...standInCard,
