@@ -9,7 +9,7 @@ export function bedCover(): Surface {
     side: 0.868,
     z: [bedRail - 0.015, bedRail + 0.025] as [number, number],
     radius: 0.016,
-    spacing: 0.08,
+    spacing: 0.09,
   };
   // A slight crown lets water run off.
   return roundedBox(box, ([x, y, z]) => [x, y, z + (z > bedRail ? 0.015 * (1 - (y / box.side) * (y / box.side)) : 0)]);

@@ -27,8 +27,8 @@ export function fillHalfEnd(
   }
 }
 
-/** Fills a ring that lies in a plane of constant y; `right`: the face looks to +y. */
-export function fillDisc(part: Surface, ring: Vector3[], spacing: number, right: boolean): void {
+/** Fills a ring that lies in a plane of constant y. `looks`: right is +y. */
+export function fillDisc(part: Surface, ring: Vector3[], spacing: number, looks: "left" | "right"): void {
   const y = ring[0][1];
   const { points, triangles } = fillRegion(
     ring.map(([x, , z]): Point => [x, z]),
@@ -36,7 +36,7 @@ export function fillDisc(part: Surface, ring: Vector3[], spacing: number, right:
   );
   const corners = points.map(([x, z]): Vector3 => [x, y, z]);
   for (const [a, b, c] of triangles) {
-    if (right) part.triangle(corners[a], corners[c], corners[b]);
+    if (looks === "right") part.triangle(corners[a], corners[c], corners[b]);
     else part.triangle(corners[a], corners[b], corners[c]);
   }
 }

@@ -29,24 +29,23 @@ const sides = [0.78, 0.82, 0.85, 0.88, 0.905, 0.925, 0.94, 0.955, 0.972, 0.99, 1
 const turns = 20;
 const endSpacing = 0.02;
 
-/** Mirrors: rounded shells on stalks that reach 40 mm into the doors. `side`: 1 on the right, -1 on the left. */
-export function mirror(side: 1 | -1): Surface {
-  const rings = sides.map((at) => ring(at, side));
+/** The right-hand mirror: a rounded shell on a stalk that reaches 40 mm into the door. */
+export function rightMirror(): Surface {
+  const rings = sides.map(ring);
   const part = new Surface();
   for (let i = 0; i + 1 < rings.length; i++) {
     for (let j = 0; j < turns; j++) {
       const next = (j + 1) % turns;
-      const corners: [Vector3, Vector3, Vector3, Vector3] = [rings[i][j], rings[i][next], rings[i + 1][next], rings[i + 1][j]];
-      if (side === 1) corners.reverse();
+      const corners: [Vector3, Vector3, Vector3, Vector3] = [rings[i + 1][j], rings[i + 1][next], rings[i][next], rings[i][j]];
       part.quad(...corners);
     }
   }
-  fillDisc(part, rings[0], endSpacing, side === -1);
-  fillDisc(part, rings[rings.length - 1], endSpacing, side === 1);
+  fillDisc(part, rings[0], endSpacing, "left");
+  fillDisc(part, rings[rings.length - 1], endSpacing, "right");
   return part;
 }
 
-function ring(at: number, side: 1 | -1): Vector3[] {
+function ring(at: number): Vector3[] {
   const value = (key: keyof MirrorSection): number =>
     throughPoints(
       at,
@@ -58,6 +57,6 @@ function ring(at: number, side: 1 | -1): Vector3[] {
     const [cosine, sine] = [Math.cos(angle), Math.sin(angle)];
     // Between a circle and a square: the fourth powers of the coordinates add up to one.
     const grow = 1 / Math.sqrt(Math.sqrt(cosine * cosine * cosine * cosine + sine * sine * sine * sine));
-    return [x + (cosine > 0 ? rearward : forward) * cosine * grow, side * at, z + tall * sine * grow];
+    return [x + (cosine > 0 ? rearward : forward) * cosine * grow, at, z + tall * sine * grow];
   });
 }

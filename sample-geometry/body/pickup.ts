@@ -1,5 +1,5 @@
 import { bedCover } from "./bed-cover.js";
-import { mirror } from "./mirrors.js";
+import { rightMirror } from "./mirrors.js";
 import { shellParts } from "./shell.js";
 import type { Surface } from "./surface.js";
 import { tailgateDown, tailgateUp } from "./tailgate.js";
@@ -18,6 +18,7 @@ export interface SamplePart {
 export function pickup(): SamplePart[] {
   const binary = (name: string, surface: Surface): SamplePart => ({ file: `${name}.stl`, name, format: "binary", surface });
   const { hood, cab, bed } = shellParts();
+  const mirror = rightMirror();
   return [
     binary("hood", hood),
     binary("cab", cab),
@@ -26,8 +27,8 @@ export function pickup(): SamplePart[] {
     { file: "tailgate-down.stl", name: "tailgate", format: "text", surface: tailgateDown() },
     binary("bed-cover", bedCover()),
     binary("underbody", underbody()),
-    binary("mirror-left", mirror(-1)),
-    binary("mirror-right", mirror(1)),
+    binary("mirror-left", mirror.mirrored()),
+    binary("mirror-right", mirror),
     ...Object.entries(wheelParts()).map(([name, surface]) => binary(name, surface)),
   ];
 }

@@ -42,7 +42,7 @@ function section(points: LinePoint[]): Vector3[] {
 const noseCentre = 0.7;
 const noseTaper = 0.2;
 const noseSteps = 5;
-const noseSpacing = 0.034;
+const noseSpacing = 0.038;
 
 /** x of the front face: rounded in plan, leaning back above, with a bumper that stands out and a shallow opening above it. */
 function noseFace(y: number, z: number): number {

@@ -43,15 +43,21 @@ export class Surface {
 
   /** Adds a copy of all triangles, mirrored at y = 0. */
   addMirrorImage(): void {
-    const own = this.positions.length;
-    for (let at = 0; at < own; at += 9) {
+    this.positions.push(...this.mirrored().positions);
+  }
+
+  /** A copy mirrored at y = 0, still turned outward. */
+  mirrored(): Surface {
+    const image = new Surface();
+    for (let at = 0; at < this.positions.length; at += 9) {
       // Swapping two corners keeps the outside outside.
       for (const corner of [0, 2, 1]) {
         const from = at + 3 * corner;
         const y = this.positions[from + 1];
-        this.positions.push(this.positions[from], y === 0 ? 0 : -y, this.positions[from + 2]);
+        image.positions.push(this.positions[from], y === 0 ? 0 : -y, this.positions[from + 2]);
       }
     }
+    return image;
   }
 }
 

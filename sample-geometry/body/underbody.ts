@@ -38,7 +38,8 @@ const widthAlong: Point[] = [
   [rear, 0.75],
 ];
 const betweenWheels = 0.575;
-const halfWheelBay = 0.4;
+/** Narrow until beyond the ends of the arch, so that side and arch meet squarely: a wedge between them would pinch the mesh. */
+const halfWheelBay = archRadius + 0.035;
 
 /**
  * The floor pan: a closed body with a smooth bottom that lies below the shell, fills the wheel arches between the wheels, and rises
@@ -71,7 +72,7 @@ function section(x: number, top: { x: number; z: number }): Vector3[] {
 
 function halfWidth(x: number): number {
   const wide = throughPoints(x, widthAlong);
-  const bay = Math.max(...[frontAxle, rearAxle].map((axle) => plateau(x, axle - halfWheelBay, axle + halfWheelBay, 0.14)));
+  const bay = Math.max(...[frontAxle, rearAxle].map((axle) => plateau(x, axle - halfWheelBay, axle + halfWheelBay, 0.15)));
   return wide + bay * (betweenWheels - wide);
 }
 

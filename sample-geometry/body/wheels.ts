@@ -19,39 +19,40 @@ const profile: [r: number, outboard: number, reach: number][] = [
 const pieces = { straight: [2, 1, 1, 2, 1, 1, 1, 2], turn: [1, 2, 3, 3, 2, 1, 1] };
 
 const turnsOnTheGround = 4;
-const turnsAbove = 44;
+const turnsAbove = 40;
 const discSpacing = 0.045;
 
-/** The four wheels: one tyre with a closed disc, mirrored and moved along. */
+/** The four wheels, each a tyre with a closed disc. */
 export function wheelParts(): Record<"wheel-front-left" | "wheel-front-right" | "wheel-rear-left" | "wheel-rear-right", Surface> {
+  const front = rightWheel(frontAxle);
+  const rear = rightWheel(rearAxle);
   return {
-    "wheel-front-left": wheelAt(frontAxle, -1),
-    "wheel-front-right": wheelAt(frontAxle, 1),
-    "wheel-rear-left": wheelAt(rearAxle, -1),
-    "wheel-rear-right": wheelAt(rearAxle, 1),
+    "wheel-front-left": front.mirrored(),
+    "wheel-front-right": front,
+    "wheel-rear-left": rear.mirrored(),
+    "wheel-rear-right": rear,
   };
 }
 
-/** `side`: 1 on the right, -1 on the left. */
-function wheelAt(axle: number, side: 1 | -1): Surface {
-  const place = (x: number, outboard: number, z: number): Vector3 => [axle + x, side * (wheel.side + outboard), z];
+function rightWheel(axle: number): Surface {
   const surface = new Surface();
   const line = roundedLine(
     profile.map(([r, outboard, reach]): Corner => ({ at: [r, outboard, 0], reach })),
     pieces,
   );
   const angles = anglesAroundTheTyre();
-  const rings = line.map(([r, outboard]) => angles.map((angle) => place(r * Math.sin(angle), outboard, height(r, angle))));
+  const rings = line.map(([r, outboard]) =>
+    angles.map((angle): Vector3 => [axle + r * Math.sin(angle), wheel.side + outboard, height(r, angle)]),
+  );
   for (let i = 0; i + 1 < rings.length; i++) {
     for (let j = 0; j < angles.length; j++) {
       const next = (j + 1) % angles.length;
-      const corners: [Vector3, Vector3, Vector3, Vector3] = [rings[i][j], rings[i][next], rings[i + 1][next], rings[i + 1][j]];
-      if (side === 1) corners.reverse();
+      const corners: [Vector3, Vector3, Vector3, Vector3] = [rings[i + 1][j], rings[i + 1][next], rings[i][next], rings[i][j]];
       surface.quad(...corners);
     }
   }
-  fillDisc(surface, rings[0], discSpacing, side === -1);
-  fillDisc(surface, rings[rings.length - 1], discSpacing, side === 1);
+  fillDisc(surface, rings[0], discSpacing, "left");
+  fillDisc(surface, rings[rings.length - 1], discSpacing, "right");
   return surface;
 }
 
