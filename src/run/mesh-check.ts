@@ -1,9 +1,10 @@
 import { readFile } from "node:fs/promises";
 import { join } from "node:path";
 import type { RunCard } from "../case/run-card.js";
+import { Problem } from "../errors.js";
 import { type BoundaryPatch, boundaryPatches } from "../openfoam/boundary.js";
 import { parseDictionary } from "../openfoam/dictionary.js";
-import { tailOf } from "./case-files.js";
+import { readCheckMesh, readMesherLog } from "../openfoam/mesh-log.js";
 
 /** What was found in a finished mesh: `trouble` makes it useless, remarks are worth knowing. */
 export interface MeshVerdict {
@@ -65,23 +66,31 @@ export async function checkMeshOf(casePath: string, card: Pick<RunCard, "parts" 
   if (boundary === null) return { cells: 0, trouble: `${boundaryName} was not written`, remarks: [] };
   const cells = await cellsOf(join(mesh, "owner"));
   const verdict = judgeMesh(boundaryPatches(parseDictionary(boundary, boundaryName), boundaryName), cells, card);
-  const mesher = await readFile(join(casePath, "log.snappyHexMesh"), "latin1").catch(() => "");
-  const limit = /No cells marked for refinement since reached limit (\d+)/.exec(mesher)?.[1];
-  if (limit)
+  const mesher = await readLog(join(casePath, "log.snappyHexMesh"), readMesherLog);
+  if (mesher?.limitReached) {
     verdict.remarks.push(
-      `Refinement stopped at the limit of ${limit} cells: the mesh is coarser than planned (log.snappyHexMesh). Raise maxGlobalCells.`,
+      "Refinement stopped at the limit of cells: the mesh is coarser than planned (log.snappyHexMesh). Raise maxGlobalCells.",
     );
-  const failed = failedChecks(await tailOf(join(casePath, "log.checkMesh"), 65_536).catch(() => ""));
-  if (failed > 0)
+  }
+  const failed = (await readLog(join(casePath, "log.checkMesh"), readCheckMesh))?.failedChecks ?? 0;
+  if (failed > 0) {
     verdict.remarks.push(
       `checkMesh: ${failed} ${failed === 1 ? "check" : "checks"} of the mesh failed (log.checkMesh, lines with ***). The run goes on; look at the places before trusting small differences.`,
     );
+  }
   return verdict;
 }
 
-/** The last verdict of a checkMesh log: number of failed checks. */
-function failedChecks(log: string): number {
-  return Number([...log.matchAll(/Failed (\d+) mesh checks/g)].at(-1)?.[1] ?? 0);
+/** A log as its reader understands it; null for one that is missing, empty or no text. */
+async function readLog<Log>(path: string, reader: (bytes: Uint8Array, name: string) => Log): Promise<Log | null> {
+  const bytes = await readFile(path).catch(() => null);
+  if (bytes === null) return null;
+  try {
+    return reader(bytes, path);
+  } catch (error) {
+    if (error instanceof Problem) return null;
+    throw error;
+  }
 }
 
 /** Number of cells from the note in the header of polyMesh/owner; 0 when it is not there. */

@@ -1,16 +1,16 @@
 import { rename, rm } from "node:fs/promises";
 import { join } from "node:path";
-import { exists, processorFolders, tailOf, timeFolders } from "./case-files.js";
+import { exists, processorFolders, timeFolders } from "./case-files.js";
 import { type CaseRun, endWith, goOn, type Phase } from "./case-run.js";
 import { askToEnd, entryOf, prepareForRun, putBack, readControlDict } from "./control-dict.js";
-import { lastSolved, trapped } from "./failure.js";
 import { HistoryFollower } from "./history-follower.js";
 import { changedInputs, type Hashes, solutionInputs } from "./inputs.js";
+import { atLimit, judgeSolve } from "./judge-solve.js";
 import { listed, setAside } from "./mesh-case.js";
 import type { ProgramResult } from "./program.js";
-import { findStartPoint, joinFields, placeFields } from "./start-point.js";
+import { joinFields, placeFields } from "./start-point.js";
 import { type Step, solveSteps } from "./steps.js";
-import { testTargets, type Watched, Watcher, type Watching } from "./watcher.js";
+import { type Watched, Watcher, type Watching } from "./watcher.js";
 
 /** Solves a meshed case from where it stands, until its targets hold, its limit is reached or something ends it. */
 export async function solveCase(run: CaseRun): Promise<Phase> {
@@ -78,7 +78,7 @@ async function runSolver(run: CaseRun, step: Step, inputs: Hashes, follower: His
   const watching = watchingOf(run);
   if (from >= run.most) {
     run.skip(step);
-    return atEnd(run, follower, watching, `the limit of ${run.most} iterations is reached`);
+    return atLimit(run, follower, watching, `the limit of ${run.most} iterations is reached`);
   }
   const prepared = await readControlDict(run.path);
   run.state.controlDict = await prepareForRun(run.path, prepared, run.most);
@@ -86,7 +86,7 @@ async function runSolver(run: CaseRun, step: Step, inputs: Hashes, follower: His
   await rotateLog(run.path, step.log);
   try {
     const { result, watched } = await watchSolver(run, step, inputs, follower, new Watcher(watching), from);
-    return await judge(run, step, follower, watching, result, watched);
+    return await judgeSolve({ run, step, follower, watching, result, watched });
   } finally {
     await restoreControlDict(run);
   }
@@ -162,55 +162,6 @@ function emitIteration(run: CaseRun, follower: HistoryFollower, watched: Watched
     halfWidth: watched.kind === "going" || watched.kind === "settled" ? watched.halfWidth : null,
     secondsLeft: perIteration * Math.min(toLimit, needed ?? toLimit),
   });
-}
-
-async function judge(
-  run: CaseRun,
-  step: Step,
-  follower: HistoryFollower,
-  watching: Watching,
-  result: ProgramResult,
-  watched: Watched,
-): Promise<Phase> {
-  const log = await tailOf(join(run.path, step.log), 65_536).catch(() => "");
-  const last = lastSolved(log);
-  const where = `${last ? `; last solved ${last.field}, initial residual ${last.residual}` : ""}; log: ${step.log}`;
-  if (watched.kind === "diverged") return endWith("diverged", `${watched.reason}${where}`);
-  if (watched.kind === "no-force") return endWith("failed", `${watched.reason}; log: ${step.log}`);
-  if (result.aborted || run.signal.aborted) {
-    const point = await findStartPoint(run);
-    const written = Math.max(Number(point.whole), Number(point.divided ?? 0));
-    return endWith("interrupted", `interrupted at iteration ${follower.iteration}; the next run goes on from ${written}`);
-  }
-  if (result.signal === "SIGFPE" || (result.exitCode !== 0 && trapped(log))) {
-    return endWith("diverged", `floating point trap after iteration ${follower.iteration}${where}`);
-  }
-  if (result.exitCode !== 0) return endWith("failed", await run.failure(step, result));
-  if (!/^End\s*$/m.test(log))
-    return endWith("failed", `${step.name} stopped without saying why (its log has no line End); log: ${step.log}`);
-  if (follower.rows === 0) {
-    const said = /Cannot find any patch or group names matching \S+|Unknown function type \S+|Could not load \S+/.exec(log)?.[0];
-    return endWith(
-      "failed",
-      `${step.name} ended but wrote no history of coefficients${said ? ` (${said})` : ""}; log: ${step.log}`,
-    );
-  }
-  const own = /SIMPLE solution converged in (\d+) iterations/.exec(log)?.[1];
-  const reason = own
-    ? `the solver's residual control ended it at iteration ${own}`
-    : `the limit of ${run.most} iterations is reached`;
-  return watched.kind === "settled" ? settledWith(run, watched.reason) : atEnd(run, follower, watching, reason);
-}
-
-/** A run that came to its limit: settled all the same if its history says so. */
-function atEnd(run: CaseRun, follower: HistoryFollower, watching: Watching, reason: string): Phase {
-  const test = testTargets(follower.cd, follower.cl, watching);
-  return test.met ? settledWith(run, test.reason) : endWith("stopped-at-limit", `${reason}: ${test.reason}`);
-}
-
-function settledWith(run: CaseRun, reason: string): Phase {
-  run.state.settled = true;
-  return endWith("settled", reason);
 }
 
 /** The solver deletes old times by "purgeWrite" only among those of its own start; here they go for all starts of the case. */

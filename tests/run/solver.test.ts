@@ -70,7 +70,7 @@ describe("the real solver", () => {
     expect(resumed).toMatchObject({ state: "stopped-at-limit", iterations: most });
     expect(await exists(join(interrupted, "postProcessing/coefficients", String(written), "coefficient.dat"))).toBe(true);
     expect(await cdAt(interrupted, most)).toBeCloseTo(cd, 1);
-  }, 60_000);
+  }, 120_000);
 
   test("is asked to end when the targets hold, writes its fields there, and is not started again", async (context) => {
     const path = await smallCase();
@@ -83,7 +83,7 @@ describe("the real solver", () => {
     expect(await readFile(join(path, "system/controlDict"), "utf8")).toBe(smallControl);
     expect(await runCases([path], given, ignore)).toEqual([settled]);
     expect(await exists(join(path, "log.simpleFoam.1"))).toBe(false);
-  }, 60_000);
+  }, 120_000);
 
   test("a keep-point inside the body, millimetres taken as metres, a point outside the domain", async (context) => {
     const given = options(context);
@@ -101,7 +101,7 @@ describe("the real solver", () => {
     expect(outcomes[2]!.reason).toMatch(
       /^snappyHexMesh ended with code 1; log: log\.snappyHexMesh; FOAM FATAL ERROR: Point \(100 0 0\) is not inside the mesh .*; the keep-point \(locationInMesh\) lies outside the domain$/,
     );
-  }, 60_000);
+  }, 120_000);
 
   test("divergence is found and told with its place", async (context) => {
     const path = await smallCase({ relaxation: 1.95 });
@@ -110,5 +110,5 @@ describe("the real solver", () => {
     expect(outcome!.reason).toMatch(
       /^(floating point trap after iteration \d+|coefficients are not numbers from iteration \d+|drag coefficient \S+ at iteration \d+); last solved \w+, initial residual \S+; log: log\.simpleFoam$/,
     );
-  }, 60_000);
+  }, 120_000);
 });
