@@ -10,25 +10,9 @@ export function nearestDistances(
 ): Float64Array {
   const count = points.length / 3;
   const squares = new Float64Array(count).fill(Infinity);
-  const cell = 2 * reach;
-  const cells = new Map<number, number[]>();
+  const grid = gridOf(points, reach);
+  const { cell, low, high, columns, rows, head, next } = grid;
   const index = (value: number): number => Math.floor(value / cell);
-  let low = [Infinity, Infinity, Infinity];
-  let high = [-Infinity, -Infinity, -Infinity];
-  for (let k = 0; k < count; k++) {
-    const at = [0, 1, 2].map((axis) => index(points[3 * k + axis]));
-    low = low.map((value, axis) => Math.min(value, at[axis]));
-    high = high.map((value, axis) => Math.max(value, at[axis]));
-  }
-  const columns = high[0] - low[0] + 1;
-  const rows = high[1] - low[1] + 1;
-  const key = (i: number, j: number, k: number): number => ((k - low[2]) * rows + (j - low[1])) * columns + (i - low[0]);
-  for (let k = 0; k < count; k++) {
-    const at = key(index(points[3 * k]), index(points[3 * k + 1]), index(points[3 * k + 2]));
-    const list = cells.get(at);
-    if (list === undefined) cells.set(at, [k]);
-    else list.push(k);
-  }
   const from = [0, 0, 0];
   const to = [0, 0, 0];
   for (let h = 0; h < corners.length; h += 3) {
@@ -46,16 +30,51 @@ export function nearestDistances(
     if (empty) continue;
     for (let k = from[2]; k <= to[2]; k++)
       for (let j = from[1]; j <= to[1]; j++)
-        for (let i = from[0]; i <= to[0]; i++) {
-          const list = cells.get(key(i, j, k));
-          if (list === undefined) continue;
-          for (const point of list) {
+        for (let i = from[0]; i <= to[0]; i++)
+          for (let point = head[((k - low[2]) * rows + (j - low[1])) * columns + (i - low[0])]; point >= 0; point = next[point]) {
+            if (squares[point] === 0) continue;
             const square = squaredDistance(points, 3 * point, vertices, a, b, c);
             if (square < squares[point]) squares[point] = square;
           }
-        }
   }
   return squares.map((square) => (square <= reach * reach ? Math.sqrt(square) : Infinity));
+}
+
+interface Grid {
+  cell: number;
+  low: number[];
+  high: number[];
+  columns: number;
+  rows: number;
+  /** First point of each cell and the next point of each point's cell; -1 ends a list. */
+  head: Int32Array;
+  next: Int32Array;
+}
+
+const MOST_CELLS = 1 << 22;
+
+function gridOf(points: Float64Array, reach: number): Grid {
+  const least = [Infinity, Infinity, Infinity];
+  const most = [-Infinity, -Infinity, -Infinity];
+  for (let at = 0; at < points.length; at++) {
+    least[at % 3] = Math.min(least[at % 3], points[at]);
+    most[at % 3] = Math.max(most[at % 3], points[at]);
+  }
+  for (let cell = 2 * reach; ; cell *= 2) {
+    const low = least.map((value) => Math.floor(value / cell));
+    const high = most.map((value) => Math.floor(value / cell));
+    const [columns, rows, layers] = high.map((value, axis) => value - low[axis] + 1);
+    if (points.length > 0 && columns * rows * layers > MOST_CELLS) continue;
+    const head = new Int32Array(points.length > 0 ? columns * rows * layers : 0).fill(-1);
+    const next = new Int32Array(points.length / 3);
+    for (let k = 0; 3 * k < points.length; k++) {
+      const [i, j, l] = [0, 1, 2].map((axis) => Math.floor(points[3 * k + axis] / cell) - low[axis]);
+      const at = (l * rows + j) * columns + i;
+      next[k] = head[at];
+      head[at] = k;
+    }
+    return { cell, low, high, columns, rows, head, next };
+  }
 }
 
 /** Squared distance of a point to a triangle (Ericson, Real-Time Collision Detection, 2005, section 5.1.5). */

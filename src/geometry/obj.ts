@@ -37,7 +37,7 @@ export class ObjReader {
     this.name = stem;
   }
 
-  /** Reads the complete lines in `bytes[0, length)` and returns how many bytes that is. */
+  /** Reads the complete lines in `bytes[0, length)`; returns how many bytes that is. At the `last`, `bytes[length]` is white space. */
   read(bytes: Uint8Array, length: number, last: boolean): number {
     const limit = last ? length : completeLines(bytes, length);
     let at = 0;
@@ -87,7 +87,7 @@ export class ObjReader {
     let at = from;
     for (let k = 0; k < 3; k++) {
       at = nextWord(bytes, at, end);
-      const value = this.number.scan(bytes, at, end);
+      const value = at < end ? this.number.scan(bytes, at) : Number.NaN;
       if (value - value !== 0) {
         const text = shown(bytes, at, end);
         throw /^[+-]?(nan|inf)/i.test(text) || (text !== "" && !Number.isNaN(Number(text)))

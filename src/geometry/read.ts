@@ -83,7 +83,9 @@ function readerFor(opened: Opened, format: SurfaceFile["format"], into: Triangle
     if (!opened.packed) into.reserve(announcedTriangles(opened.head), true);
     return new BinaryStlReader(into, file, into.part(stem, file), opened.head);
   }
-  return format === "stl-ascii" ? new AsciiStlReader(into, file, stem) : new ObjReader(into, file, stem);
+  return format === "stl-ascii"
+    ? new AsciiStlReader(into, file, stem, opened.packed ? 0 : opened.size)
+    : new ObjReader(into, file, stem);
 }
 
 const stemOf = (path: string): string =>
@@ -233,10 +235,12 @@ function looksLikeText(head: Uint8Array): boolean {
 
 /** Gives the whole file to `reader`; returns its unpacked size. */
 async function feed(opened: Opened, reader: PieceReader): Promise<number> {
-  let buffer = new Uint8Array(PIECE);
+  // One byte more than is ever filled: the text readers want white space after the last word.
+  let buffer = new Uint8Array(PIECE + 1);
   let kept = 0;
   let total = 0;
   const deal = (length: number, last: boolean): void => {
+    if (last) buffer[length] = 10;
     const used = reader.read(buffer, length, last);
     kept = length - used;
     if (kept > 0 && used > 0) buffer.copyWithin(0, used, length);
@@ -251,8 +255,8 @@ async function feed(opened: Opened, reader: PieceReader): Promise<number> {
   };
   if (opened.packed) {
     for await (const piece of unpacked(opened.path, 1 << 20)) {
-      if (kept + piece.length > buffer.length) {
-        const larger = new Uint8Array(Math.max(2 * buffer.length, kept + piece.length));
+      if (kept + piece.length >= buffer.length) {
+        const larger = new Uint8Array(Math.max(2 * buffer.length, kept + piece.length + 1));
         larger.set(buffer.subarray(0, kept));
         buffer = larger;
       }
@@ -266,7 +270,7 @@ async function feed(opened: Opened, reader: PieceReader): Promise<number> {
   const handle = await opening(opened.path);
   try {
     for (;;) {
-      const { bytesRead } = await handle.read(buffer, kept, buffer.length - kept, total);
+      const { bytesRead } = await handle.read(buffer, kept, buffer.length - 1 - kept, total);
       total += bytesRead;
       deal(kept + bytesRead, bytesRead === 0);
       if (bytesRead === 0) return total;

@@ -1,19 +1,32 @@
 import { finding } from "../finding.js";
 import { DecimalScanner } from "./decimal.js";
 import { partName } from "./part-names.js";
-import { completeUntil, isWord, shown, TextFault, wordEnd } from "./text.js";
+import { completeUntil, shown, TextFault, wordEnd } from "./text.js";
 import type { TriangleBuilder } from "./triangle-builder.js";
 
-const word = (text: string): Uint8Array => Buffer.from(text, "latin1");
-const SOLID = word("solid");
-const ENDSOLID = word("endsolid");
-const FACET = word("facet");
-const ENDFACET = word("endfacet");
-const NORMAL = word("normal");
-const OUTER = word("outer");
-const LOOP = word("loop");
-const ENDLOOP = word("endloop");
-const VERTEX = word("vertex");
+/** Four letters in one number, lower case; the words of the format are told apart by these. */
+const packed = (letters: string): number => four(Buffer.from(letters, "latin1"), 0);
+const four = (bytes: Uint8Array, at: number): number =>
+  bytes[at] | (bytes[at + 1] << 8) | (bytes[at + 2] << 16) | (bytes[at + 3] << 24) | 0x20202020;
+const [SOLI, OLID, ENDS, FACE, ACET, ENDF, OUTE, UTER, LOOP, ENDL, VERT, RTEX, NORM, RMAL] =
+  "soli olid ends face acet endf oute uter loop endl vert rtex norm rmal".split(" ").map(packed);
+// Each says whether the word at `at` is the one named. White space follows every word, so none reads past the piece by more than that.
+const isSolid = (bytes: Uint8Array, at: number): boolean =>
+  four(bytes, at) === SOLI && four(bytes, at + 1) === OLID && bytes[at + 5] <= 32;
+const isEndsolid = (bytes: Uint8Array, at: number): boolean => four(bytes, at) === ENDS && isSolid(bytes, at + 3);
+const isFacet = (bytes: Uint8Array, at: number): boolean =>
+  four(bytes, at) === FACE && four(bytes, at + 1) === ACET && bytes[at + 5] <= 32;
+const isEndfacet = (bytes: Uint8Array, at: number): boolean =>
+  four(bytes, at) === ENDF && four(bytes, at + 4) === ACET && bytes[at + 8] <= 32;
+const isOuter = (bytes: Uint8Array, at: number): boolean =>
+  four(bytes, at) === OUTE && four(bytes, at + 1) === UTER && bytes[at + 5] <= 32;
+const isLoop = (bytes: Uint8Array, at: number): boolean => four(bytes, at) === LOOP && bytes[at + 4] <= 32;
+const isEndloop = (bytes: Uint8Array, at: number): boolean =>
+  four(bytes, at) === ENDL && four(bytes, at + 3) === LOOP && bytes[at + 7] <= 32;
+const isVertex = (bytes: Uint8Array, at: number): boolean =>
+  four(bytes, at) === VERT && four(bytes, at + 2) === RTEX && bytes[at + 6] <= 32;
+const isNormal = (bytes: Uint8Array, at: number): boolean =>
+  four(bytes, at) === NORM && four(bytes, at + 2) === RMAL && bytes[at + 6] <= 32;
 
 /** What comes next. */
 enum Next {
@@ -27,6 +40,9 @@ enum Next {
   EndFacet,
 }
 
+/** Bytes from which the number of triangles in a file is estimated. */
+const FIRST_LOOK = 1 << 16;
+
 const REMEDY = "Export the surface again, or repair the file at this line.";
 
 /**
@@ -36,8 +52,7 @@ const REMEDY = "Export the surface again, or repair the file at this line.";
 export class AsciiStlReader {
   private next = Next.Solid;
   private part = -1;
-  /** Coordinates of the triangle that is being read, and how many of them there are. */
-  private readonly triangle = new Float32Array(9);
+  /** Coordinates there are of the triangle that is being read. */
   private filled = 0;
   /** Bytes of the file before the piece that is being read. */
   private before = 0;
@@ -46,19 +61,34 @@ export class AsciiStlReader {
   private readonly solids = new Map<string, number>();
   private unended = 0;
 
-  /** @param unnamed the part's name where a solid has none */
+  /** Triangles to make room for at once: what the file has if it goes on as it began. */
+  private expected = 0;
+  private readonly first: number;
+
+  /**
+   * @param unnamed the part's name where a solid has none
+   * @param size bytes of the file, where that is certain; else 0
+   */
   constructor(
     private readonly into: TriangleBuilder,
     private readonly file: number,
     private readonly unnamed: string,
-  ) {}
+    private readonly size: number,
+  ) {
+    this.first = into.triangles;
+  }
 
   /**
    * Reads what is complete in `bytes[0, length)` and returns how many bytes that is; the rest is to be given again, with more
-   * behind it. `last`: there is no more.
+   * behind it. `last`: there is no more; `bytes[length]` is white space then, so that words end before it.
    */
   read(bytes: Uint8Array, length: number, last: boolean): number {
     const limit = last ? length : completeUntil(bytes, length);
+    if (this.before === 0 && limit > FIRST_LOOK && this.size > 0) {
+      // Counts facets at the beginning; a facet takes 50 bytes at least, so that no file makes this grow beyond its own size.
+      const facets = facetsIn(bytes, FIRST_LOOK);
+      this.expected = this.first + Math.ceil(1.02 * (facets / FIRST_LOOK) * this.size) + 16;
+    }
     this.walk(bytes, limit);
     this.before += limit;
     return limit;
@@ -99,73 +129,86 @@ export class AsciiStlReader {
   }
 
   private walk(bytes: Uint8Array, limit: number): void {
-    const { number, triangle } = this;
+    const { number, into } = this;
+    let { next, filled } = this;
+    let { positions, triangles } = into;
+    let to = 9 * triangles + filled;
     let at = this.before === 0 && bytes[0] === 0xef && bytes[1] === 0xbb && bytes[2] === 0xbf ? 3 : 0;
     for (;;) {
-      while (at < limit && bytes[at] <= 32) at++;
-      if (at >= limit) return;
-      switch (this.next) {
+      while (bytes[at] <= 32 && at < limit) at++;
+      if (at >= limit) break;
+      switch (next) {
         case Next.Coordinate: {
-          const value = number.scan(bytes, at, limit);
+          const value = number.scan(bytes, at);
           // Only NaN and the infinities do not give zero here.
           if (value - value !== 0) throw this.badNumber(bytes, at, number.end);
-          triangle[this.filled++] = value;
+          positions[to++] = value;
           at = number.end;
-          if (this.filled === 9) {
-            this.keep();
-            this.next = Next.EndLoop;
-          } else if (this.filled === 3 || this.filled === 6) this.next = Next.Vertex;
+          if (++filled === 9) {
+            into.partOf[triangles++] = this.part;
+            filled = 0;
+            next = Next.EndLoop;
+          } else if (filled === 3 || filled === 6) next = Next.Vertex;
           break;
         }
         case Next.Vertex:
-          if (isWord(bytes, at, limit, VERTEX)) {
+          if (isVertex(bytes, at)) {
             at += 6;
-            this.next = Next.Coordinate;
-          } else if (isWord(bytes, at, limit, ENDLOOP)) throw this.wrongCorners(`${this.filled / 3}`, at);
+            next = Next.Coordinate;
+          } else if (isEndloop(bytes, at)) throw this.wrongCorners(`${filled / 3}`, at);
           else throw this.unexpected(bytes, at, limit, "vertex");
           break;
         case Next.Outer:
-          if (isWord(bytes, at, limit, OUTER)) this.next = Next.Loop;
-          else if (isWord(bytes, at, limit, VERTEX) || isWord(bytes, at, limit, ENDFACET))
-            throw this.unexpected(bytes, at, limit, "outer loop");
-          // Everything else is the normal, whatever it says.
-          at = wordEnd(bytes, at, limit);
+          // Everything up to "outer" is the normal, whatever it says.
+          if (bytes[at] > 64) {
+            if (isOuter(bytes, at)) next = Next.Loop;
+            else if (isVertex(bytes, at) || isEndfacet(bytes, at)) throw this.unexpected(bytes, at, limit, "outer loop");
+          }
+          while (bytes[at] > 32) at++;
           break;
         case Next.Loop:
-          if (!isWord(bytes, at, limit, LOOP)) throw this.unexpected(bytes, at, limit, "loop");
+          if (!isLoop(bytes, at)) throw this.unexpected(bytes, at, limit, "loop");
           at += 4;
-          this.filled = 0;
-          this.next = Next.Vertex;
+          next = Next.Vertex;
           break;
         case Next.EndLoop:
-          if (isWord(bytes, at, limit, VERTEX)) throw this.wrongCorners("more than 3", at);
-          if (!isWord(bytes, at, limit, ENDLOOP)) throw this.unexpected(bytes, at, limit, "endloop");
+          if (isVertex(bytes, at)) throw this.wrongCorners("more than 3", at);
+          if (!isEndloop(bytes, at)) throw this.unexpected(bytes, at, limit, "endloop");
           at += 7;
-          this.next = Next.EndFacet;
+          next = Next.EndFacet;
           break;
         case Next.EndFacet:
-          if (!isWord(bytes, at, limit, ENDFACET)) throw this.unexpected(bytes, at, limit, "endfacet");
+          if (!isEndfacet(bytes, at)) throw this.unexpected(bytes, at, limit, "endfacet");
           at += 8;
-          this.next = Next.FacetOrEnd;
+          next = Next.FacetOrEnd;
           break;
         case Next.FacetOrEnd:
-          if (isWord(bytes, at, limit, FACET)) {
+          if (isFacet(bytes, at)) {
             at += 5;
-            this.next = Next.Outer;
-          } else if (isWord(bytes, at, limit, ENDSOLID)) {
+            next = Next.Outer;
+            if (triangles === into.partOf.length) {
+              into.triangles = triangles;
+              into.reserve(Math.max(1024, this.expected - triangles));
+              positions = into.positions;
+            }
+          } else if (isEndsolid(bytes, at)) {
             at = endOfName(bytes, at + 8, limit);
-            this.next = Next.Solid;
-          } else if (isWord(bytes, at, limit, SOLID)) {
+            next = Next.Solid;
+          } else if (isSolid(bytes, at)) {
             this.unended++;
             at = this.beginSolid(bytes, at, limit);
           } else throw this.unexpected(bytes, at, limit, "facet or endsolid");
           break;
         case Next.Solid:
-          if (!isWord(bytes, at, limit, SOLID)) throw this.unexpected(bytes, at, limit, "solid");
+          if (!isSolid(bytes, at)) throw this.unexpected(bytes, at, limit, "solid");
           at = this.beginSolid(bytes, at, limit);
+          next = Next.FacetOrEnd;
           break;
       }
     }
+    this.next = next;
+    this.filled = filled;
+    into.triangles = triangles;
   }
 
   private beginSolid(bytes: Uint8Array, at: number, limit: number): number {
@@ -173,15 +216,7 @@ export class AsciiStlReader {
     const name = partName(bytes.subarray(at + 5, end)) || this.unnamed;
     this.solids.set(name, (this.solids.get(name) ?? 0) + 1);
     this.part = this.into.part(name, this.file);
-    this.next = Next.FacetOrEnd;
     return end;
-  }
-
-  private keep(): void {
-    const { into } = this;
-    if (into.triangles === into.partOf.length) into.reserve(1024);
-    into.positions.set(this.triangle, 9 * into.triangles);
-    into.partOf[into.triangles++] = this.part;
   }
 
   private unexpected(bytes: Uint8Array, at: number, limit: number, expected: string): TextFault {
@@ -228,14 +263,21 @@ function endOfName(bytes: Uint8Array, from: number, limit: number): number {
       at++;
       continue;
     }
-    if (solid < 0 && isWord(bytes, at, limit, SOLID)) solid = at;
-    const facet = isWord(bytes, at, limit, FACET);
+    if (solid < 0 && isSolid(bytes, at)) solid = at;
+    const facet = isFacet(bytes, at);
     const begin = at;
     at = wordEnd(bytes, at, limit);
     if (!facet) continue;
     let following = at;
     while (following < limit && (bytes[following] === 32 || bytes[following] === 9)) following++;
-    if (isWord(bytes, following, limit, NORMAL)) return solid < 0 ? begin : solid;
+    if (isNormal(bytes, following)) return solid < 0 ? begin : solid;
   }
   return at;
+}
+
+/** How many facets end in the first `limit` bytes. */
+function facetsIn(bytes: Uint8Array, limit: number): number {
+  let count = 0;
+  for (let at = 0; at < limit; at++) if (isEndloop(bytes, at)) count++;
+  return count;
 }

@@ -24,14 +24,6 @@ export function completeUntil(bytes: Uint8Array, length: number): number {
   return 0;
 }
 
-/** Whether the white-space-delimited word at `at` is `word` (lower case); upper case in `bytes` counts as lower. */
-export function isWord(bytes: Uint8Array, at: number, limit: number, word: Uint8Array): boolean {
-  const end = at + word.length;
-  if (end > limit) return false;
-  for (let k = 0; k < word.length; k++) if ((bytes[at + k] | 32) !== word[k]) return false;
-  return end === limit || bytes[end] <= 32;
-}
-
 /** Index after the word at `at`. */
 export function wordEnd(bytes: Uint8Array, at: number, limit: number): number {
   let end = at;

@@ -3,6 +3,10 @@ import type { Finding } from "../finding.js";
 import { cleanPatchNames } from "./part-names.js";
 import type { SurfaceFile, TriangleSet } from "./triangle-set.js";
 
+const FIRST_ROOM = 4096;
+/** More spare room than this share is given back at the end. */
+const SPARE = 0.2;
+
 /** A part index is kept in 16 bits per triangle. */
 const MOST_PARTS = 65_535;
 
@@ -26,7 +30,7 @@ export class TriangleBuilder {
   reserve(more: number, exactly = false): void {
     const needed = this.triangles + more;
     if (this.partOf.length >= needed) return;
-    const room = exactly ? needed : Math.max(needed, Math.ceil(this.partOf.length * 1.5));
+    const room = exactly ? needed : Math.max(needed, FIRST_ROOM, 2 * this.partOf.length);
     try {
       const positions = new Float32Array(9 * room);
       positions.set(this.positions.subarray(0, 9 * this.triangles));
@@ -77,9 +81,12 @@ export class TriangleBuilder {
 
   finish(): TriangleSet {
     const patches = cleanPatchNames(this.names);
+    const spare = this.partOf.length - this.triangles > SPARE * this.triangles;
+    const positions = this.positions.subarray(0, 9 * this.triangles);
+    const partOf = this.partOf.subarray(0, this.triangles);
     return {
-      positions: this.positions.subarray(0, 9 * this.triangles),
-      partOf: this.partOf.subarray(0, this.triangles),
+      positions: spare ? positions.slice() : positions,
+      partOf: spare ? partOf.slice() : partOf,
       parts: this.names.map((name, k) => ({ name, patch: patches[k], file: this.fileOfPart[k] })),
       files: this.files,
       findings: this.findings,

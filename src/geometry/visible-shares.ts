@@ -1,13 +1,15 @@
 import type { SurfaceMesh } from "./surface-mesh.js";
 import type { Vector3 } from "./vector.js";
 
-/** Pixels along the longer side of the picture: about a millimetre on a road vehicle. */
-const PIXELS = 2048;
+/** Pixels along the longer side of the picture: about two millimetres on a road vehicle. */
+const PIXELS = 1024;
+/** Lets a pixel on the edge between two triangles belong to both, whatever rounding says: no seams. */
+const SEAM = -1e-9;
 const NOBODY = 0xffff;
 
 /**
  * Which share of the silhouette each part owns when the body is seen along `direction` and the nearest part hides the others; the
- * shares add up to 1 (to 0 where nothing has area). Depth buffer of 2048 pixels along the longer side, sampled at the middle of each
+ * shares add up to 1 (to 0 where nothing has area). Depth buffer of 1024 pixels along the longer side, sampled at the middle of each
  * pixel: a part that is nowhere as wide as a pixel may be missed. Where two parts are equally near, the lower number owns the pixel,
  * so that the order of the triangles does not matter.
  */
@@ -47,17 +49,22 @@ export function visibleShares(
     const twice = (bx - ax) * (cy - ay) - (by - ay) * (cx - ax);
     if (twice === 0) continue;
     const az = points[a + 2];
-    const sb = points[b + 2] - az;
-    const sc = points[c + 2] - az;
+    const bx1 = (cy - ay) / twice;
+    const by1 = (ax - cx) / twice;
+    const cx1 = (ay - by) / twice;
+    const cy1 = (bx - ax) / twice;
+    const zx = bx1 * (points[b + 2] - az) + cx1 * (points[c + 2] - az);
+    const zy = by1 * (points[b + 2] - az) + cy1 * (points[c + 2] - az);
     const part = partOf[t];
     for (let row = bottom; row <= top; row++) {
       const y = row + 0.5 - ay;
       for (let column = left; column <= right; column++) {
         const x = column + 0.5 - ax;
-        const wb = (x * (cy - ay) - y * (cx - ax)) / twice;
-        const wc = (y * (bx - ax) - x * (by - ay)) / twice;
-        if (wb < 0 || wc < 0 || wb + wc > 1) continue;
-        const z = Math.fround(az + wb * sb + wc * sc);
+        // Barycentric weights of the second and third corner.
+        const wb = x * bx1 + y * by1;
+        const wc = x * cx1 + y * cy1;
+        if (wb < SEAM || wc < SEAM || wb + wc > 1 - SEAM) continue;
+        const z = Math.fround(az + x * zx + y * zy);
         const at = row * columns + column;
         if (z < depth[at] || (z === depth[at] && part < owner[at])) {
           depth[at] = z;

@@ -1,62 +1,90 @@
 import type { SurfaceMesh } from "./surface-mesh.js";
 
+/** A connected piece of a part, or several whose boxes overlap, as a small mesh of its own. Unit and axes of the mesh it comes from. */
+export interface WheelPiece {
+  /** 3 per vertex */
+  vertices: Float64Array;
+  /** 3 per triangle */
+  corners: Uint32Array;
+}
+
 /**
- * Takes a part apart into the pieces it is made of: triangles that share vertices, then pieces whose bounding boxes overlap (a rim
- * inside a tyre, a bolt inside a rim). Returns triangle numbers, the piece with most triangles first.
+ * Takes each part apart into the pieces it is made of: triangles that share vertices, then pieces whose bounding boxes overlap (a rim
+ * inside a tyre, a bolt inside a rim). Per part, the piece with most triangles first.
  */
-export function wheelPieces(mesh: SurfaceMesh, part: number): Uint32Array[] {
-  const triangles = trianglesOf(mesh, part);
-  const pieces = connected(mesh, triangles);
-  return overlapping(mesh, pieces).sort((a, b) => b.length - a.length || a[0] - b[0]);
+export function wheelPieces(mesh: SurfaceMesh, parts: number[]): WheelPiece[][] {
+  const local = new Int32Array(mesh.vertices.length / 3).fill(-1);
+  return trianglesOf(mesh, parts).map((triangles) => {
+    const whole = extracted(mesh, triangles, local);
+    return overlapping(whole, connected(whole)).sort((a, b) => b.corners.length - a.corners.length);
+  });
 }
 
-function trianglesOf({ partOf }: SurfaceMesh, part: number): Uint32Array {
-  let count = 0;
-  for (let t = 0; t < partOf.length; t++) if (partOf[t] === part) count++;
-  const triangles = new Uint32Array(count);
-  for (let t = 0, k = 0; t < partOf.length; t++) if (partOf[t] === part) triangles[k++] = t;
-  return triangles;
+/** Triangle numbers of each of the parts. */
+function trianglesOf({ partOf }: SurfaceMesh, parts: number[]): number[][] {
+  const lists: number[][] = parts.map(() => []);
+  const listOf = new Map(parts.map((part, k) => [part, lists[k]]));
+  for (let t = 0; t < partOf.length; t++) listOf.get(partOf[t])?.push(t);
+  return lists;
 }
 
-function connected({ corners }: SurfaceMesh, triangles: Uint32Array): Uint32Array[] {
-  const parent = new Map<number, number>();
+/** The triangles as a mesh with vertices of its own. `local`: scratch, -1 everywhere before and after. */
+function extracted({ vertices, corners }: SurfaceMesh, triangles: number[], local: Int32Array): WheelPiece {
+  const used: number[] = [];
+  const own = new Uint32Array(3 * triangles.length);
+  triangles.forEach((t, k) => {
+    for (let j = 0; j < 3; j++) {
+      const vertex = corners[3 * t + j];
+      if (local[vertex] < 0) {
+        local[vertex] = used.length;
+        used.push(vertex);
+      }
+      own[3 * k + j] = local[vertex];
+    }
+  });
+  const points = new Float64Array(3 * used.length);
+  used.forEach((vertex, k) => {
+    points.set(vertices.subarray(3 * vertex, 3 * vertex + 3), 3 * k);
+    local[vertex] = -1;
+  });
+  return { vertices: points, corners: own };
+}
+
+/** Number of the connected piece of each vertex, ascending from 0, and how many there are. */
+function connected({ vertices, corners }: WheelPiece): { pieceOf: Uint32Array; count: number } {
+  const parent = Uint32Array.from({ length: vertices.length / 3 }, (_, k) => k);
   const root = (vertex: number): number => {
     let at = vertex;
-    for (let above = parent.get(at) ?? at; above !== at; above = parent.get(at) ?? at) {
-      parent.set(at, parent.get(above) ?? above);
-      at = above;
-    }
+    while (parent[at] !== at) at = parent[at] = parent[parent[at]];
     return at;
   };
-  for (const t of triangles) {
-    const a = root(corners[3 * t]);
-    for (const vertex of [corners[3 * t + 1], corners[3 * t + 2]]) {
-      const b = root(vertex);
-      if (a !== b) parent.set(b, a);
-    }
+  for (let h = 0; h < corners.length; h += 3) {
+    const a = root(corners[h]);
+    const b = root(corners[h + 1]);
+    const c = root(corners[h + 2]);
+    const lowest = Math.min(a, b, c);
+    parent[a] = lowest;
+    parent[b] = lowest;
+    parent[c] = lowest;
   }
-  const groups = new Map<number, number[]>();
-  for (const t of triangles) {
-    const key = root(corners[3 * t]);
-    const group = groups.get(key);
-    if (group === undefined) groups.set(key, [t]);
-    else group.push(t);
-  }
-  return Array.from(groups.values(), (group) => Uint32Array.from(group));
+  for (let k = 0; k < parent.length; k++) parent[k] = parent[parent[k]];
+  let count = 0;
+  for (let k = 0; k < parent.length; k++) parent[k] = parent[k] === k ? count++ : parent[parent[k]];
+  return { pieceOf: parent, count };
 }
 
-interface Piece {
-  triangles: Uint32Array[];
+interface Group {
+  members: number[];
   low: number[];
   high: number[];
 }
 
 /** Puts together what overlaps, again and again, since a joined box may reach a further piece. */
-function overlapping(mesh: SurfaceMesh, found: Uint32Array[]): Uint32Array[] {
-  const pieces = found.map((triangles) => boxed(mesh, triangles)).sort((a, b) => sizeOf(b) - sizeOf(a));
-  const joined: Piece[] = [];
-  for (const piece of pieces) {
-    let current = piece;
+function overlapping(whole: WheelPiece, { pieceOf, count }: { pieceOf: Uint32Array; count: number }): WheelPiece[] {
+  const groups = boxes(whole, pieceOf, count).sort((a, b) => sizeOf(b) - sizeOf(a));
+  const joined: Group[] = [];
+  for (const group of groups) {
+    let current = group;
     for (let k = joined.length - 1; k >= 0; k--) {
       if (!overlap(joined[k], current)) continue;
       current = join(joined[k], current);
@@ -66,37 +94,39 @@ function overlapping(mesh: SurfaceMesh, found: Uint32Array[]): Uint32Array[] {
     }
     joined.push(current);
   }
-  return joined.map(({ triangles }) => {
-    if (triangles.length === 1) return triangles[0];
-    const all = new Uint32Array(triangles.reduce((sum, some) => sum + some.length, 0));
-    let at = 0;
-    for (const some of triangles) {
-      all.set(some, at);
-      at += some.length;
-    }
-    return all;
+  if (joined.length === 1) return [whole];
+  const groupOf = new Uint32Array(count);
+  joined.forEach(({ members }, k) => {
+    for (const member of members) groupOf[member] = k;
   });
+  const cornersOf: number[][] = joined.map(() => []);
+  for (let h = 0; h < whole.corners.length; h += 3)
+    cornersOf[groupOf[pieceOf[whole.corners[h]]]].push(whole.corners[h], whole.corners[h + 1], whole.corners[h + 2]);
+  return cornersOf.map((corners) => ({ vertices: whole.vertices, corners: Uint32Array.from(corners) }));
 }
 
-const sizeOf = ({ low, high }: Piece): number => high.reduce((sum, value, k) => sum + value - low[k], 0);
+const sizeOf = ({ low, high }: Group): number => high.reduce((sum, value, k) => sum + value - low[k], 0);
 
-const overlap = (a: Piece, b: Piece): boolean => a.low.every((value, k) => value <= b.high[k] && b.low[k] <= a.high[k]);
+const overlap = (a: Group, b: Group): boolean => a.low.every((value, k) => value <= b.high[k] && b.low[k] <= a.high[k]);
 
-const join = (a: Piece, b: Piece): Piece => ({
-  triangles: [...a.triangles, ...b.triangles],
+const join = (a: Group, b: Group): Group => ({
+  members: [...a.members, ...b.members],
   low: a.low.map((value, k) => Math.min(value, b.low[k])),
   high: a.high.map((value, k) => Math.max(value, b.high[k])),
 });
 
-function boxed({ vertices, corners }: SurfaceMesh, triangles: Uint32Array): Piece {
-  const low = [Infinity, Infinity, Infinity];
-  const high = [-Infinity, -Infinity, -Infinity];
-  for (const t of triangles)
-    for (let h = 3 * t; h < 3 * t + 3; h++)
-      for (let axis = 0; axis < 3; axis++) {
-        const value = vertices[3 * corners[h] + axis];
-        if (value < low[axis]) low[axis] = value;
-        if (value > high[axis]) high[axis] = value;
-      }
-  return { triangles: [triangles], low, high };
+function boxes({ vertices }: WheelPiece, pieceOf: Uint32Array, count: number): Group[] {
+  const groups = Array.from(
+    { length: count },
+    (_, k): Group => ({ members: [k], low: [Infinity, Infinity, Infinity], high: [-Infinity, -Infinity, -Infinity] }),
+  );
+  for (let k = 0; k < pieceOf.length; k++) {
+    const { low, high } = groups[pieceOf[k]];
+    for (let axis = 0; axis < 3; axis++) {
+      const value = vertices[3 * k + axis];
+      if (value < low[axis]) low[axis] = value;
+      if (value > high[axis]) high[axis] = value;
+    }
+  }
+  return groups;
 }

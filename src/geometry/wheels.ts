@@ -1,7 +1,7 @@
 import { type Circle, outerCircle } from "./circle.js";
 import type { SurfaceMesh } from "./surface-mesh.js";
 import type { Vector3 } from "./vector.js";
-import { wheelPieces } from "./wheel-pieces.js";
+import { type WheelPiece, wheelPieces } from "./wheel-pieces.js";
 
 /** A wheel found in a part. Mesh unit and axes. */
 export interface WheelFit {
@@ -45,40 +45,46 @@ const STEEPEST = 0.14;
  * through the centres of those that are round is the next axis, until it stands still. Radius and centre come from the outermost
  * ring seen along the axis. Flats and bulges where the tyre meets the ground do not count (see `outerCircle`).
  *
- * Null in `fit` where the piece is no wheel: not round within 3 %, or less than two thirds of a circle.
+ * `fit` is null where a piece is no wheel: not round within 3 %, or less than two thirds of a circle.
  */
 export function fitWheels(
   mesh: SurfaceMesh,
   parts: number[],
   axes: VehicleAxes,
 ): { part: number; fit: WheelFit | null; centre: Vector3 }[] {
-  return parts.flatMap((part) =>
-    wheelPieces(mesh, part).map((triangles) => {
-      const fit = fitWheel(mesh, part, triangles, axes);
-      return { part, fit, centre: fit?.centre ?? middleOf(mesh, triangles) };
+  return wheelPieces(mesh, parts).flatMap((pieces, k) =>
+    pieces.map((piece) => {
+      const fit = fitWheel(piece, parts[k], axes);
+      return { part: parts[k], fit, centre: fit?.centre ?? middleOf(piece) };
     }),
   );
 }
 
-function fitWheel(mesh: SurfaceMesh, part: number, triangles: Uint32Array, axes: VehicleAxes): WheelFit | null {
+function fitWheel(piece: WheelPiece, part: number, axes: VehicleAxes): WheelFit | null {
+  const straight = fitAbout(piece, part, axes.right, axes.up);
+  if (straight === null) return null;
   let axis = axes.right;
   for (let round = 0; round < 8; round++) {
-    const next = tiltedAxis(mesh, triangles, axis, axes.up);
+    const next = tiltedAxis(piece, axis, axes.up);
     const turned = Math.hypot(next[0] - axis[0], next[1] - axis[1], next[2] - axis[2]);
     axis = next;
-    if (turned < 1e-7) break;
+    if (turned < 1e-6) break;
   }
-  const straight = fitAbout(mesh, part, triangles, axes.right, axes.up);
-  const tilted = fitAbout(mesh, part, triangles, axis, axes.up);
+  const tilted = fitAbout(piece, part, axis, axes.up);
   // A tilt is believed only when the ring is clearly rounder for it: a balloon tyre or spokes can make one up.
-  const best = tilted !== null && (straight === null || tilted.fitError < 0.8 * straight.fitError) ? tilted : straight;
-  return best !== null && best.fitError <= NO_WHEEL * best.radius && best.covered >= LEAST_COVERED ? best : null;
+  const best = tilted !== null && tilted.fitError < 0.8 * straight.fitError ? tilted : straight;
+  return best.fitError <= NO_WHEEL * best.radius && best.covered >= LEAST_COVERED ? best : null;
 }
 
-function fitAbout(mesh: SurfaceMesh, part: number, triangles: Uint32Array, axis: Vector3, up: Vector3): WheelFit | null {
+function fitAbout(piece: WheelPiece, part: number, axis: Vector3, up: Vector3): WheelFit | null {
   const frame = frameAbout(axis, up);
-  const { points, low, high } = seenAlong(mesh, triangles, frame);
-  const circle = outerCircle(points);
+  const { points, low, high } = seenAlong(piece, frame);
+  const ring = new Float64Array((2 * points.length) / 3);
+  for (let k = 0; 3 * k < points.length; k++) {
+    ring[2 * k] = points[3 * k];
+    ring[2 * k + 1] = points[3 * k + 1];
+  }
+  const circle = outerCircle(ring);
   if (circle === null) return null;
   const along = (low + high) / 2;
   const centre = [0, 1, 2].map((k) => circle.x * frame.u[k] + circle.y * frame.v[k] + along * axis[k]) as Vector3;
@@ -97,20 +103,18 @@ function frameAbout(w: Vector3, up: Vector3): Frame {
 }
 
 /** The axis through the centres of the round sections; the given one where fewer than two are round. */
-function tiltedAxis(mesh: SurfaceMesh, triangles: Uint32Array, axis: Vector3, up: Vector3): Vector3 {
+function tiltedAxis(piece: WheelPiece, axis: Vector3, up: Vector3): Vector3 {
   const frame = frameAbout(axis, up);
-  const { low, high } = seenAlong(mesh, triangles, frame);
-  const found: { at: number; circle: Circle }[] = [];
-  for (let k = 0; k < SECTIONS; k++) {
-    const at = low + ((k + 0.5) / SECTIONS) * (high - low);
-    const circle = outerCircle(section(mesh, triangles, frame, at));
-    if (circle !== null && circle.deviation < ROUND * circle.radius && circle.covered > LEAST_COVERED) found.push({ at, circle });
+  const tread: { at: number; circle: Circle }[] = [];
+  for (const { at, points } of sections(piece, frame)) {
+    const circle = outerCircle(points);
+    if (circle !== null && circle.deviation < ROUND * circle.radius && circle.covered > LEAST_COVERED) tread.push({ at, circle });
   }
-  const largest = Math.max(...found.map(({ circle }) => circle.radius));
-  const tread = found.filter(({ circle }) => circle.radius > NEAR_LARGEST * largest);
-  if (tread.length < 2) return axis;
+  const largest = Math.max(...tread.map(({ circle }) => circle.radius));
+  const kept = tread.filter(({ circle }) => circle.radius > NEAR_LARGEST * largest);
+  if (kept.length < 2) return axis;
   const mean = (value: (item: { at: number; circle: Circle }) => number): number =>
-    tread.reduce((sum, item) => sum + value(item), 0) / tread.length;
+    kept.reduce((sum, item) => sum + value(item), 0) / kept.length;
   const middle = mean((item) => item.at);
   const spread = mean((item) => (item.at - middle) ** 2);
   const slopeX = mean((item) => (item.at - middle) * item.circle.x) / spread;
@@ -119,62 +123,68 @@ function tiltedAxis(mesh: SurfaceMesh, triangles: Uint32Array, axis: Vector3, up
   return normalised([0, 1, 2].map((k) => axis[k] + slopeX * frame.u[k] + slopeY * frame.v[k]) as Vector3);
 }
 
-/** The vertices in the plane across the axis (2 per corner) and their range along it. */
-function seenAlong(
-  mesh: SurfaceMesh,
-  triangles: Uint32Array,
-  { u, v, w }: Frame,
-): { points: Float64Array; low: number; high: number } {
-  const points = new Float64Array(6 * triangles.length);
+/** The piece's corners in the frame (3 per vertex that a triangle uses: across, up, along) and their range along the axis. */
+function seenAlong({ vertices, corners }: WheelPiece, { u, v, w }: Frame): { points: Float64Array; low: number; high: number } {
+  const used = new Uint8Array(vertices.length / 3);
+  let count = 0;
+  for (const vertex of corners) if (used[vertex] === 0) count += used[vertex] = 1;
+  const points = new Float64Array(3 * count);
   let low = Infinity;
   let high = -Infinity;
-  let to = 0;
-  for (const t of triangles)
-    for (let k = 0; k < 3; k++) {
-      const at = 3 * mesh.corners[3 * t + k];
-      points[to++] = dotAt(mesh.vertices, at, u);
-      points[to++] = dotAt(mesh.vertices, at, v);
-      const along = dotAt(mesh.vertices, at, w);
-      if (along < low) low = along;
-      if (along > high) high = along;
-    }
+  for (let k = 0, to = 0; k < used.length; k++) {
+    if (used[k] === 0) continue;
+    const along = dotAt(vertices, 3 * k, w);
+    points[to++] = dotAt(vertices, 3 * k, u);
+    points[to++] = dotAt(vertices, 3 * k, v);
+    points[to++] = along;
+    if (along < low) low = along;
+    if (along > high) high = along;
+  }
   return { points, low, high };
 }
 
-/** Where the triangles' edges cross the plane across the axis at `level`: 2 per crossing. */
-function section(mesh: SurfaceMesh, triangles: Uint32Array, { u, v, w }: Frame, level: number): Float64Array {
-  const { vertices, corners } = mesh;
-  const found: number[] = [];
-  for (const t of triangles)
-    for (let k = 0; k < 3; k++) {
-      const a = 3 * corners[3 * t + k];
-      const b = 3 * corners[3 * t + ((k + 1) % 3)];
-      const da = dotAt(vertices, a, w) - level;
-      const db = dotAt(vertices, b, w) - level;
-      if (da > 0 === db > 0) continue;
-      const share = da / (da - db);
-      found.push(
-        dotAt(vertices, a, u) + share * (dotAt(vertices, b, u) - dotAt(vertices, a, u)),
-        dotAt(vertices, a, v) + share * (dotAt(vertices, b, v) - dotAt(vertices, a, v)),
-      );
+/** Where the triangles' edges cross evenly spaced planes across the axis: 2 per crossing. */
+function sections({ vertices, corners }: WheelPiece, { u, v, w }: Frame): { at: number; points: Float64Array }[] {
+  const along = new Float64Array(vertices.length / 3);
+  for (let k = 0; k < along.length; k++) along[k] = dotAt(vertices, 3 * k, w);
+  let low = Infinity;
+  let high = -Infinity;
+  for (const vertex of corners) {
+    low = Math.min(low, along[vertex]);
+    high = Math.max(high, along[vertex]);
+  }
+  const step = (high - low) / SECTIONS;
+  const found: number[][] = Array.from({ length: SECTIONS }, () => []);
+  // The section of a height: planes lie half a step in from either side.
+  const index = (height: number): number => Math.ceil((height - low) / step - 0.5);
+  for (let h = 0; step > 0 && h < corners.length; h++) {
+    const a = corners[h];
+    const b = corners[h % 3 === 2 ? h - 2 : h + 1];
+    const first = Math.max(0, index(Math.min(along[a], along[b])));
+    const last = Math.min(SECTIONS, index(Math.max(along[a], along[b])));
+    for (let k = first; k < last; k++) {
+      const share = (low + (k + 0.5) * step - along[a]) / (along[b] - along[a]);
+      const x = dotAt(vertices, 3 * a, u);
+      const y = dotAt(vertices, 3 * a, v);
+      found[k].push(x + share * (dotAt(vertices, 3 * b, u) - x), y + share * (dotAt(vertices, 3 * b, v) - y));
     }
-  return Float64Array.from(found);
+  }
+  return found.map((points, k) => ({ at: low + (k + 0.5) * step, points: Float64Array.from(points) }));
 }
 
-function middleOf({ vertices, corners }: SurfaceMesh, triangles: Uint32Array): Vector3 {
+function middleOf({ vertices, corners }: WheelPiece): Vector3 {
   const low: Vector3 = [Infinity, Infinity, Infinity];
   const high: Vector3 = [-Infinity, -Infinity, -Infinity];
-  for (const t of triangles)
-    for (let k = 0; k < 3; k++)
-      for (let axis = 0; axis < 3; axis++) {
-        const value = vertices[3 * corners[3 * t + k] + axis];
-        low[axis] = Math.min(low[axis], value);
-        high[axis] = Math.max(high[axis], value);
-      }
+  for (const vertex of corners)
+    for (let axis = 0; axis < 3; axis++) {
+      const value = vertices[3 * vertex + axis];
+      low[axis] = Math.min(low[axis], value);
+      high[axis] = Math.max(high[axis], value);
+    }
   return low.map((value, axis) => (value + high[axis]) / 2) as Vector3;
 }
 
-const dotAt = (vertices: Float32Array, at: number, a: Vector3): number =>
+const dotAt = (vertices: Float64Array, at: number, a: Vector3): number =>
   vertices[at] * a[0] + vertices[at + 1] * a[1] + vertices[at + 2] * a[2];
 
 const cross = (a: Vector3, b: Vector3): Vector3 => [
