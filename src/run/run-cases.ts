@@ -129,7 +129,10 @@ async function runHeld(
           workplace: one.workplace,
         });
         try {
-          return await runOne(run);
+          const outcome = await runOne(run);
+          if (one.lost.signal.aborted)
+            run.remark("This case was ended because its lock was lost: the machine slept, or another run took it over.");
+          return outcome;
         } catch (error) {
           defect.abort();
           throw error;

@@ -129,19 +129,26 @@ async function watchSolver(
     }
   };
   let asked = false;
-  while (!ended) {
-    await new Promise<void>((resolve) => {
-      wake = resolve;
-      setTimeout(resolve, run.settings.pollMilliseconds);
-    });
-    if (ended) break;
-    await look();
-    if (seen.now.kind === "diverged" || seen.now.kind === "no-force") stop.abort();
-    if (seen.now.kind === "settled" && !asked) {
-      asked = true;
-      run.state.controlDict!.editedHash = await askToEnd(run.path);
-      await run.save();
+  try {
+    while (!ended) {
+      await new Promise<void>((resolve) => {
+        wake = resolve;
+        setTimeout(resolve, run.settings.pollMilliseconds);
+      });
+      if (ended) break;
+      await look();
+      if (seen.now.kind === "diverged" || seen.now.kind === "no-force") stop.abort();
+      if (seen.now.kind === "settled" && !asked) {
+        asked = true;
+        run.state.controlDict!.editedHash = await askToEnd(run.path);
+        await run.save();
+      }
     }
+  } catch (error) {
+    // Whatever went wrong here (a full disk, say), the solver must not go on without its watcher.
+    stop.abort();
+    await program.catch(() => undefined);
+    throw error;
   }
   const result = await program;
   await look();

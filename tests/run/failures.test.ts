@@ -134,4 +134,19 @@ describe("how a case can fail", () => {
       [good, "stopped-at-limit"],
     ]);
   });
+
+  test("a defect in the caller's listener ends the solver before it is thrown on", async () => {
+    const made = await standIn();
+    const path = await standInCase();
+    made.behave({ STAND_IN_SOLVER: "hang" });
+    const call = runCases([path], quick(made), (event) => {
+      if (event.event === "iteration") throw new Error("listener broke");
+    });
+    await expect(call).rejects.toThrow("listener broke");
+    const state = JSON.parse(await readFile(join(path, "run-state.json"), "utf8"));
+    expect(state.running).toBe(null);
+    expect(state.steps.at(-1)).toMatchObject({ name: "simpleFoam", state: "interrupted", signal: "SIGTERM" });
+    expect(await readFile(join(path, "system/controlDict"), "utf8")).toBe(preparedControl);
+    expect(await exists(join(path, "run.lock"))).toBe(false);
+  });
 });
