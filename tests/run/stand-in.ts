@@ -115,16 +115,13 @@ export async function standIn(): Promise<StandIn> {
     join(folder, "mpirun"),
     `#!/bin/sh\nshift 2\necho "mpirun $*" >> launches\n"$@" &\nchild=$!\ntrap 'kill $child; wait $child; exit 143' TERM\nwait $child\n`,
   );
-  const env: Record<string, string> = { PATH: process.env.PATH ?? "" };
-  const solver: SolverEnvironment = {
-    path: folder,
-    projectDir: folder,
-    version: "v1912",
-    lineage: "com",
-    mpirun: join(folder, "mpirun"),
-    env,
-  };
-  return { solver, behave: (behaviour) => Object.assign(env, behaviour) };
+  const solver = standInSolver(folder);
+  return { solver, behave: (behaviour) => Object.assign(solver.env, behaviour) };
+}
+
+export function standInSolver(folder: string, behaviour: Record<string, string> = {}): SolverEnvironment {
+  const env = { PATH: process.env.PATH ?? "", ...behaviour };
+  return { path: folder, projectDir: folder, version: "v1912", lineage: "com", mpirun: join(folder, "mpirun"), env };
 }
 
 async function program(path: string, text: string): Promise<void> {
