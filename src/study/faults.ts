@@ -1,7 +1,8 @@
 import type { z } from "zod";
 import { inputProblem, type Problem } from "../errors.js";
-import { keyAt, notComputed, studyKeys } from "./keys.js";
-import { shownValue } from "./quantity.js";
+import { keyAt, notComputed, type StudyKey, studyKeys } from "./keys.js";
+import { printable, shownValue } from "./message-text.js";
+import { nearest } from "./nearest.js";
 import type { YamlSource } from "./yaml-source.js";
 
 type Path = readonly PropertyKey[];
@@ -16,32 +17,38 @@ export interface Fault {
   remedy: string;
 }
 
+/** Faults whose place is looked up; a file with more is no study. */
+const MOST_PLACED = 100;
+
 /** A path as it is written in messages: `variants.open-bed.files[0]`. */
 export function keyText(path: Path): string {
-  return path.map((step, k) => (typeof step === "number" ? `[${step}]` : `${k > 0 ? "." : ""}${String(step)}`)).join("");
+  return path
+    .map((step, k) => (typeof step === "number" ? `[${step}]` : `${k > 0 ? "." : ""}${printable(String(step)).slice(0, 60)}`))
+    .join("");
 }
 
 /** The problem to throw for what is wrong with a file: the first fault in the order of the text, and where the others are. */
 export function problemOf(faults: Fault[], source: YamlSource, name: string): Problem {
   const placed = faults
+    .slice(0, MOST_PLACED)
     .map((fault) => ({ ...fault, position: source.at(fault.path, fault.at) }))
     .sort((a, b) => a.position.line - b.position.line || a.position.column - b.position.column);
   const first = placed[0]!;
   const others = placed.slice(1, 6).map((fault) => `line ${fault.position.line} (${keyText(fault.path)})`);
-  if (placed.length > 6) others.push(`${placed.length - 6} more`);
+  if (faults.length > 6) others.push(`${faults.length - 6} more`);
   const key = keyText(first.path);
   return inputProblem({
     code: first.code,
-    message: first.message,
+    message: printable(first.message),
     where: `${name}:${first.position.line}:${first.position.column}${key ? ` (${key})` : ""}`,
-    remedy: others.length > 0 ? `${first.remedy} Also wrong: ${others.join(", ")}.` : first.remedy,
+    remedy: printable(others.length > 0 ? `${first.remedy} Also wrong: ${others.join(", ")}.` : first.remedy),
   });
 }
 
-/** What the schema found, in the words of the study file. `value` is the whole document. */
-export function schemaFaults(issues: readonly z.core.$ZodIssue[], value: unknown): Fault[] {
+/** What the schema found, in the words of the study file. `document` is the whole of what was checked. */
+export function schemaFaults(issues: readonly z.core.$ZodIssue[], document: unknown): Fault[] {
   return issues.flatMap((issue) =>
-    issue.code === "unrecognized_keys" ? issue.keys.map((key) => unknownKey([...issue.path, key])) : [valueFault(issue, value)],
+    issue.code === "unrecognized_keys" ? issue.keys.map((key) => unknownKey([...issue.path, key])) : [valueFault(issue, document)],
   );
 }
 
@@ -55,46 +62,53 @@ function valueFault(issue: z.core.$ZodIssue, document: unknown): Fault {
       message: `The study file holds ${kindOf(document)}; expected keys such as 'study', 'speed' and 'variants'.`,
       remedy: "Write a study file with: dragledger new study.yaml body.stl",
     };
-  const name = keyText(path);
   const entry = keyAt(path);
-  const expects = entry?.expects ?? "another value";
+  if (entry === null) throw new Error(`study key ${keyText(path)} has no entry`);
+  const name = `Key '${keyText(path)}'`;
   const value = valueAt(document, path);
-  if (entry?.single && value !== null)
+  const expects = typeof path.at(-1) === "number" ? `in the list ${expectedIn(entry)}` : entry.expects;
+  const remedy = remedyFor(entry);
+  if (value === undefined)
+    return { path, at: "key", code: "study-missing-key", message: `${name} is missing; expected ${expects}.`, remedy };
+  if (value === null)
+    return { path, at: "key", code: "study-value", message: `${name} has no value; expected ${expects}.`, remedy };
+  if (entry.single && !(issue.code === "custom" && issue.params?.worded))
     return {
       path,
       at: "value",
       code: "not-computed",
-      message: `Key '${name}' is ${shownValue(value)}, which is not computed by this version; the only value possible is ${entry.choices![0]}.`,
-      remedy: `Write ${String(path.at(-1))}: ${entry.choices![0]}, or remove the key.`,
+      message: `${name} is ${shownValue(value)}, which this version does not compute; the only value possible is ${entry.choices![0]}.`,
+      remedy: `Write ${lastWord(entry)}: ${entry.choices![0]}, or remove the key.`,
     };
-  if (issue.code === "custom")
-    return {
-      path,
-      at: "value",
-      code: "study-value",
-      message: `Key '${name}' ${issue.message}.`,
-      remedy: remedyFor(entry?.description),
-    };
-  if (value === undefined)
-    return {
-      path,
-      at: "key",
-      code: "study-missing-key",
-      message: `Key '${name}' is missing; expected ${expects}.`,
-      remedy: remedyFor(entry?.description),
-    };
-  const found =
-    value === null ? "has no value" : Array.isArray(value) && value.length === 0 ? "is an empty list" : `is ${kindOf(value)}`;
-  return {
-    path,
-    at: value === null ? "key" : "value",
-    code: "study-value",
-    message: `Key '${name}' ${found}; expected ${typeof path.at(-1) === "number" ? `in the list ${expects}` : expects}.`,
-    remedy: remedyFor(entry?.description),
-  };
+  if (issue.code === "custom") return { path, at: "value", code: "study-value", message: `${name} ${issue.message}.`, remedy };
+  const found = isEmpty(value) ? "is empty" : (tooMany(issue) ?? `is ${kindOf(value)}`);
+  return { path, at: "value", code: "study-value", message: `${name} ${found}; expected ${expects}.`, remedy };
 }
 
-const remedyFor = (description: string | undefined): string => description ?? "Correct the value.";
+const expectedIn = (entry: StudyKey): string => (entry.quantity ? entry.expects : "a text");
+
+const isEmpty = (value: unknown): boolean => value === "" || (Array.isArray(value) && value.length === 0);
+
+/** Lists are the only thing that can be too long; within a union the fault is one level down. */
+function tooMany(issue: z.core.$ZodIssue): string | null {
+  if (issue.code === "too_big") return `is a list of more than ${issue.maximum}`;
+  if (issue.code !== "invalid_union") return null;
+  return (
+    issue.errors
+      .flat()
+      .map(tooMany)
+      .find((found) => found !== null) ?? null
+  );
+}
+
+const lastWord = (entry: StudyKey): string => entry.key.slice(entry.key.lastIndexOf(".") + 1);
+
+function remedyFor(entry: StudyKey): string {
+  if (entry.default !== undefined) return `Correct it, or remove the key to have ${entry.default}.`;
+  if (lastWord(entry) === "*") return `Write, for example, name: ${entry.example}.`;
+  if (entry.required) return `Write, for example, ${lastWord(entry)}: ${entry.example}.`;
+  return `Write, for example, ${lastWord(entry)}: ${entry.example}, or remove the key.`;
+}
 
 function kindOf(value: unknown): string {
   if (value === null || value === undefined) return "nothing";
@@ -114,19 +128,15 @@ function unknownKey(path: Path): Fault {
   const later = notComputed.get(keyText(path));
   if (later !== undefined)
     return { path, at: "key", code: "not-computed", message: `Key '${key}': ${later}.`, remedy: "Remove the key." };
-  const known = keysBelow(path.slice(0, -1));
-  const meant =
-    nearest(key, known) ??
-    nearest(
-      key,
-      studyKeys.filter((entry) => !entry.key.includes("*")).map((entry) => entry.key),
-    );
+  const here = keysBelow(path.slice(0, -1));
+  const anywhere = studyKeys.map((entry) => entry.key).filter((each) => !each.includes("*"));
+  const meant = nearest(key, here) ?? nearest(key, anywhere);
   return {
     path,
     at: "key",
     code: "study-unknown-key",
     message: `Unknown key '${key.slice(0, 60)}'${meant === null ? "" : ` (did you mean '${meant}'?)`}.`,
-    remedy: `Keys possible here: ${known.join(", ")}.`,
+    remedy: `Keys possible here: ${here.join(", ")}.`,
   };
 }
 
@@ -136,40 +146,4 @@ function keysBelow(path: Path): string[] {
   return studyKeys
     .filter((entry) => entry.key.startsWith(above) && !entry.key.slice(above.length).includes("."))
     .map((entry) => entry.key.slice(above.length));
-}
-
-/**
- * The candidate that a misspelt word most likely means, or null. Case and separators do not count; a path such as `mesh.cells` is
- * also known by its last word. At most a third of the letters may differ.
- */
-export function nearest(word: string, candidates: readonly string[]): string | null {
-  const bare = (text: string): string => text.toLowerCase().replace(/[^\p{L}\p{N}]/gu, "");
-  const wanted = bare(word.slice(0, 60));
-  let best: string | null = null;
-  let least = Math.max(1, Math.floor(wanted.length / 3)) + 1;
-  for (const candidate of candidates) {
-    const distance = editDistance(wanted, bare(candidate.slice(candidate.lastIndexOf(".") + 1)));
-    if (distance < least) {
-      least = distance;
-      best = candidate;
-    }
-  }
-  return best;
-}
-
-/** Letters to insert, remove, replace or swap with a neighbour (optimal string alignment; Damerau 1964). */
-function editDistance(a: string, b: string): number {
-  let before: number[] = [];
-  let above = Array.from({ length: b.length + 1 }, (_, k) => k);
-  for (let i = 1; i <= a.length; i++) {
-    const row = [i];
-    for (let j = 1; j <= b.length; j++) {
-      const same = a[i - 1] === b[j - 1] ? 0 : 1;
-      row[j] = Math.min(above[j]! + 1, row[j - 1]! + 1, above[j - 1]! + same);
-      if (i > 1 && j > 1 && a[i - 1] === b[j - 2] && a[i - 2] === b[j - 1]) row[j] = Math.min(row[j]!, before[j - 2]! + 1);
-    }
-    before = above;
-    above = row;
-  }
-  return above[b.length]!;
 }

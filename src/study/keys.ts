@@ -1,4 +1,14 @@
+import { alternatives } from "./message-text.js";
 import { type Dimension, dimensions, expectedQuantity } from "./quantity.js";
+
+/** A quantity, and the range that it must lie in: SI, both ends included, and the same in words. */
+export interface QuantityRule {
+  dimension: Dimension;
+  min: number;
+  max: number;
+  range: string;
+  whole?: true;
+}
 
 /** One key of the study file. Schema, messages and the key table of the documentation are made from this. */
 export interface StudyKey {
@@ -7,31 +17,33 @@ export interface StudyKey {
   title: string;
   /** One sentence. */
   description: string;
-  /** What a message says was expected, such as `a speed such as "30 m/s"`. */
+  /** What a message says was expected, such as `a speed such as "30 m/s" or "108 km/h"`. */
   expects: string;
+  /** What could stand after the key, as it is written. */
+  example: string;
   /** What is taken when the key is missing, as it would be written; undefined: the key is required or simply absent. */
   default?: string | number | boolean;
   required?: true;
   /** SI unit of a bare number; "" for a plain number, undefined for no quantity. */
   unit?: string;
-  /** A quantity, and the range it must lie in, SI, both ends included. */
-  quantity?: { dimension: Dimension; min: number; max: number; why: string; whole?: true };
-  /** The words that are possible. */
+  quantity?: QuantityRule;
+  /** The values that are possible. */
   choices?: readonly (string | number | boolean)[];
-  /** The values of `choices` are all that this version computes of something that has more. */
+  /** `choices` are all that this version computes of something that has more. */
   single?: true;
 }
 
-interface Given extends Omit<StudyKey, "expects" | "unit"> {
-  expects?: string;
-}
+const counts = { dimension: "coefficient", min: 1e-5, max: 0.1, range: "0.01 to 100 counts (1 count is 0.001)" } as const;
+const signedAxes = ["+x", "-x", "+y", "-y", "+z", "-z"] as const;
 
-const keys: Given[] = [
+/** Where `expects` or `example` is missing it follows from the quantity or the choices. */
+const entries: (Omit<StudyKey, "expects" | "example" | "unit"> & Partial<Pick<StudyKey, "expects" | "example">>)[] = [
   {
     key: "study",
     title: "Name",
     description: "Name of the study, for reports and job names.",
     expects: "a name of letters, digits, blanks and - _ . +",
+    example: "pickup-bed",
     required: true,
   },
   {
@@ -39,35 +51,48 @@ const keys: Given[] = [
     title: "Question",
     description: "The one question that the study is to answer; printed on the report.",
     expects: "a text",
+    example: "Does a bed cover pay?",
   },
-  { key: "air", title: "Air", description: "State of the oncoming air.", expects: "temperature, pressure and humidity" },
+  {
+    key: "air",
+    title: "Air",
+    description: "State of the oncoming air.",
+    expects: "a block with temperature, pressure and humidity",
+    example: "{ temperature: 15 degC }",
+  },
   {
     key: "air.temperature",
     title: "Air temperature",
     description: "Temperature of the oncoming air.",
     default: "15 degC",
-    quantity: { dimension: "temperature", min: 223.15, max: 333.15, why: "-50 to 60 degC" },
+    quantity: { dimension: "temperature", min: 223.15, max: 333.15, range: "-50 to 60 degC" },
   },
   {
     key: "air.pressure",
     title: "Air pressure",
-    description: "Static pressure of the oncoming air, at the place and not reduced to sea level.",
+    description: "Static pressure of the oncoming air, as it is at the place, not reduced to sea level.",
     default: "1013.25 hPa",
-    quantity: { dimension: "pressure", min: 30_000, max: 200_000, why: "300 to 2000 hPa" },
+    quantity: { dimension: "pressure", min: 30_000, max: 200_000, range: "300 to 2000 hPa" },
   },
   {
     key: "air.humidity",
     title: "Relative humidity",
     description: "Relative humidity of the oncoming air.",
     default: "0 %",
-    quantity: { dimension: "ratio", min: 0, max: 1, why: "0 to 100 %" },
+    example: "50 %",
+    quantity: { dimension: "ratio", min: 0, max: 1, range: "0 to 100 %" },
   },
   {
     key: "speed",
     title: "Speed",
-    description: "Speed over the ground in still air, one or a list; every variant is computed at each.",
+    description: "Speed of the vehicle in still air, one or a list; every variant is computed at each.",
     required: true,
-    quantity: { dimension: "speed", min: 1, max: 100, why: "1 to 100 m/s: beyond, air does not flow as if it were incompressible" },
+    quantity: {
+      dimension: "speed",
+      min: 1,
+      max: 100,
+      range: "1 to 100 m/s (faster air is compressible, which this version does not compute)",
+    },
   },
   {
     key: "yaw",
@@ -88,29 +113,39 @@ const keys: Given[] = [
   {
     key: "baseline",
     title: "Baseline",
-    description: "The variant that the others are compared with, and whose reference area all share; the first unless given.",
+    description: "The variant that the others are compared with and whose reference area all share; the first unless given.",
     expects: "the name of one of the variants",
+    example: "open-bed",
   },
   {
     key: "variants",
     title: "Variants",
     description: "The versions of the body, each under a name of its own.",
     expects: "variants by name, each with its files",
+    example: "{ open-bed: { files: [geometry/body.stl] } }",
     required: true,
   },
-  { key: "variants.*", title: "Variant", description: "One version of the body.", expects: "a list of files under the key files" },
+  {
+    key: "variants.*",
+    title: "Variant",
+    description: "One version of the body.",
+    expects: "a block with the key files",
+    example: "{ files: [geometry/body.stl] }",
+  },
   {
     key: "variants.*.files",
     title: "Files",
-    description: "Surface files that together make the body; relative paths start at the study file.",
+    description: "Surface files that together make the body; relative paths start at the folder of the study file.",
     expects: "a list of paths such as [geometry/body.stl, geometry/wheels.stl]",
+    example: "[geometry/body.stl]",
     required: true,
   },
   {
     key: "body",
     title: "Body",
     description: "How the numbers in the files are to be understood.",
-    expects: "unit, travel, up and so on",
+    expects: "a block with unit, travel, up, wheelbase and reference-area",
+    example: "{ unit: mm, travel: -x, up: +z }",
   },
   {
     key: "body.unit",
@@ -124,14 +159,14 @@ const keys: Given[] = [
     title: "Travel",
     description: "Direction in which the vehicle drives, in the axes of the files; the air comes from there.",
     default: "-x",
-    choices: ["+x", "-x", "+y", "-y", "+z", "-z"],
+    choices: signedAxes,
   },
   {
     key: "body.up",
     title: "Up",
-    description: "Direction upwards in the axes of the files.",
+    description: "Direction upwards, in the axes of the files.",
     default: "+z",
-    choices: ["+x", "-x", "+y", "-y", "+z", "-z"],
+    choices: signedAxes,
   },
   {
     key: "body.wheelbase",
@@ -139,7 +174,7 @@ const keys: Given[] = [
     description: "Distance of the axles: auto takes it from the wheels of the baseline, none says that there are no axles.",
     default: "auto",
     expects: 'auto, none or a length such as "2.7 m"',
-    quantity: { dimension: "length", min: 0.01, max: 30, why: "0.01 to 30 m" },
+    quantity: { dimension: "length", min: 0.01, max: 30, range: "0.01 to 30 m" },
   },
   {
     key: "body.reference-area",
@@ -148,25 +183,28 @@ const keys: Given[] = [
       "Area that coefficients refer to, of the whole vehicle: auto takes the frontal area of the baseline for all variants.",
     default: "auto",
     expects: 'auto or an area such as "2.1 m2"',
-    quantity: { dimension: "area", min: 1e-4, max: 100, why: "0.0001 to 100 m2" },
+    quantity: { dimension: "area", min: 1e-4, max: 100, range: "0.0001 to 100 m2" },
   },
   {
     key: "parts",
     title: "Parts",
     description: "Rules about parts, each under a name of its own.",
     expects: "rules by name, each with match",
+    example: '{ wheels: { match: "wheel-*", rotating: true } }',
   },
   {
     key: "parts.*",
     title: "Rule",
-    description: "A rule about all parts whose name matches; the first rule that matches a part holds.",
-    expects: "match and rotating",
+    description: "A rule about all parts whose names match; of several that match a part the first holds.",
+    expects: "a block with match and rotating",
+    example: '{ match: "wheel-*", rotating: true }',
   },
   {
     key: "parts.*.match",
     title: "Match",
-    description: "Pattern over part names, or a list of patterns; * stands for any run of characters.",
+    description: "Pattern over the names of parts, or a list of patterns; * stands for any run of characters, case counts.",
     expects: 'a pattern such as "wheel-*", or a list of them',
+    example: '"wheel-*"',
     required: true,
   },
   {
@@ -176,14 +214,19 @@ const keys: Given[] = [
     default: false,
     choices: [true, false],
   },
-  { key: "mesh", title: "Mesh", description: "What the mesh is to be like.", expects: "cells, half, y-plus and so on" },
+  {
+    key: "mesh",
+    title: "Mesh",
+    description: "What the mesh is to be like.",
+    expects: "a block with cells, half, y-plus and layers",
+    example: "{ cells: 1.5 million }",
+  },
   {
     key: "mesh.cells",
     title: "Cells",
-    description:
-      "Number of cells aimed at, of what is computed (a half model has half the cells of a whole one at the same fineness).",
+    description: "Number of cells of the mesh aimed at.",
     default: "1.5 million",
-    quantity: { dimension: "number", min: 5000, max: 500e6, why: "5 thousand to 500 million" },
+    quantity: { dimension: "number", min: 5000, max: 500e6, range: "5 thousand to 500 million" },
   },
   {
     key: "mesh.half",
@@ -195,22 +238,23 @@ const keys: Given[] = [
   {
     key: "mesh.y-plus",
     title: "y+",
-    description:
-      "Distance of the wall cells' centres from the wall aimed at, in wall units; the walls are modelled by wall functions.",
+    description: "Distance of the wall cells' centres from the wall aimed at, in wall units; walls are modelled by wall functions.",
     default: 50,
-    quantity: { dimension: "number", min: 30, max: 300, why: "30 to 300, where wall functions hold" },
+    example: "50",
+    quantity: { dimension: "number", min: 30, max: 300, range: "30 to 300 (wall functions hold there)" },
   },
   {
     key: "mesh.layers",
     title: "Layers",
     description: "Layers of flat cells on the body.",
     default: 3,
-    quantity: { dimension: "number", min: 0, max: 20, why: "0 to 20", whole: true },
+    example: "3",
+    quantity: { dimension: "number", min: 0, max: 20, range: "a whole number from 0 to 20", whole: true },
   },
   {
     key: "mesh.levels",
     title: "Levels",
-    description: "Meshes of different fineness per case; this version computes one.",
+    description: "Meshes of different fineness for each case; this version computes one.",
     default: 1,
     choices: [1],
     single: true,
@@ -219,7 +263,8 @@ const keys: Given[] = [
     key: "solver",
     title: "Solver",
     description: "How the flow is computed.",
-    expects: "turbulence, mode, start and most-iterations",
+    expects: "a block with turbulence, mode, start and most-iterations",
+    example: "{ most-iterations: 3000 }",
   },
   {
     key: "solver.turbulence",
@@ -232,7 +277,7 @@ const keys: Given[] = [
   {
     key: "solver.mode",
     title: "Mode",
-    description: "Steady flow or flow in time.",
+    description: "Steady flow, or flow in time, which this version does not compute.",
     default: "steady",
     choices: ["steady"],
     single: true,
@@ -250,29 +295,36 @@ const keys: Given[] = [
     title: "Most iterations",
     description: "Iterations after which a case that has not settled is stopped.",
     default: 3000,
-    quantity: { dimension: "number", min: 10, max: 1_000_000, why: "10 to 1 million", whole: true },
+    example: "3000",
+    quantity: { dimension: "number", min: 10, max: 1_000_000, range: "a whole number from 10 to 1 million", whole: true },
   },
-  { key: "stop", title: "Stop", description: "When a history counts as settled.", expects: "drag, lift and confidence" },
+  {
+    key: "stop",
+    title: "Stop",
+    description: "When a history counts as settled.",
+    expects: "a block with drag, lift and confidence",
+    example: "{ drag: 1 count, lift: 3 counts }",
+  },
   {
     key: "stop.drag",
     title: "Drag",
-    description: "Half-width to which the mean drag coefficient is to be known; 1 count is 0.001.",
+    description: "Half-width to which the mean drag coefficient is to be known.",
     default: "1 count",
-    quantity: { dimension: "coefficient", min: 1e-5, max: 0.1, why: "0.01 to 100 counts (1 count is 0.001)" },
+    quantity: counts,
   },
   {
     key: "stop.lift",
     title: "Lift",
-    description: "Half-width to which the mean lift coefficient is to be known; 1 count is 0.001.",
+    description: "Half-width to which the mean lift coefficient is to be known.",
     default: "3 counts",
-    quantity: { dimension: "coefficient", min: 1e-5, max: 0.1, why: "0.01 to 100 counts (1 count is 0.001)" },
+    quantity: counts,
   },
   {
     key: "stop.confidence",
     title: "Confidence",
     description: "Confidence of the half-widths.",
     default: "95 %",
-    quantity: { dimension: "ratio", min: 0.5, max: 0.999, why: "50 to 99.9 %" },
+    quantity: { dimension: "ratio", min: 0.5, max: 0.999, range: "50 to 99.9 %" },
   },
   {
     key: "floor",
@@ -284,15 +336,16 @@ const keys: Given[] = [
   },
 ];
 
-const oneOf = (choices: readonly (string | number | boolean)[]): string =>
-  choices.length === 1 ? String(choices[0]) : `${choices.slice(0, -1).join(", ")} or ${choices.at(-1)}`;
-
 /** All keys of the study file, in the order in which they are documented. */
-export const studyKeys: readonly StudyKey[] = keys.map((entry) => ({
-  ...entry,
-  expects: entry.expects ?? (entry.quantity ? expectedQuantity(entry.quantity.dimension) : oneOf(entry.choices ?? [])),
-  ...(entry.quantity ? { unit: dimensions[entry.quantity.dimension].unit } : {}),
-}));
+export const studyKeys: readonly StudyKey[] = entries.map((entry) => {
+  const dimension = entry.quantity && dimensions[entry.quantity.dimension];
+  return {
+    ...entry,
+    expects: entry.expects ?? (entry.quantity ? expectedQuantity(entry.quantity.dimension) : alternatives(entry.choices ?? [])),
+    example: entry.example ?? String(dimension?.examples[0] ?? entry.choices?.[0]),
+    ...(dimension ? { unit: dimension.unit } : {}),
+  };
+});
 
 const byPath = new Map(studyKeys.map((entry) => [entry.key, entry]));
 
@@ -310,7 +363,7 @@ export function keyAt(path: readonly PropertyKey[]): StudyKey | null {
   return byPath.get(named.join(".")) ?? null;
 }
 
-/** Keys that a later version may compute. They are refused with a message of their own. */
+/** Keys of a study that this version does not compute, and how a message says so. */
 export const notComputed: ReadonlyMap<string, string> = new Map([
   ["zones", "zones are not computed by this version"],
   ["air-boxes", "air boxes are not computed by this version"],

@@ -1,9 +1,11 @@
 /** Longest name of a study, a variant or a rule. With the speed and a path around it a folder stays far below 255 bytes. */
 export const LONGEST_NAME = 60;
 
-/** The pattern of names for the schema; `nameFault` says what is wrong with one. */
-export const NAME_PATTERN = "^[\\p{L}\\p{N}][\\p{L}\\p{M}\\p{N} _.+-]*$";
-const allowed = new RegExp(NAME_PATTERN, "u");
+/**
+ * The pattern of names for the schema, in the syntax that all readers of schemas share: it knows no classes of letters, so it lets
+ * everything from U+00AA on pass. `nameFault` decides.
+ */
+export const NAME_PATTERN = "^[A-Za-z0-9\\u00aa-\\uffff]([A-Za-z0-9 _.+\\u00aa-\\uffff-]*[A-Za-z0-9_.+\\u00aa-\\uffff-])?$";
 
 /** Letters that Unicode does not take apart into a base letter and a mark. */
 const plainLetters: Record<string, string> = { ß: "ss", æ: "ae", œ: "oe", ø: "o", đ: "d", ð: "d", þ: "th", ł: "l", ı: "i" };
@@ -18,7 +20,7 @@ export function nameFault(name: string): string | null {
   if (name.length > LONGEST_NAME) return `has ${name.length} characters; ${LONGEST_NAME} is the most`;
   const bad = Array.from(name).find((letter) => !/[\p{L}\p{M}\p{N} _.+-]/u.test(letter));
   if (bad !== undefined) return `holds ${JSON.stringify(bad)}; letters, digits, blanks and - _ . + are possible`;
-  if (!allowed.test(name)) return "does not begin with a letter or digit";
+  if (!/^[\p{L}\p{N}]/u.test(name)) return "does not begin with a letter or digit";
   if (name.includes("..")) return 'holds ".."';
   if (folderName(name) === "") return "has no letter a-z and no digit that a folder could be named by";
   return null;

@@ -1,5 +1,5 @@
 import { inputProblem } from "../errors.js";
-import { listed } from "./resolve.js";
+import { listed, printable } from "./message-text.js";
 import type { PartRule } from "./study.js";
 
 /**
@@ -49,7 +49,7 @@ export function requireMatches(rules: readonly PartRule[], parts: readonly strin
   if (idle === undefined) return;
   throw inputProblem({
     code: "rule-without-part",
-    message: `The pattern "${idle.match}" of the rule '${idle.name}' matches no part of any variant; the parts are: ${listed(names)}.`,
+    message: `The pattern "${printable(idle.match)}" of the rule '${idle.name}' matches no part of any variant; the parts are: ${listed(names)}.`,
     where: `${where} (parts.${idle.name}.match)`,
     remedy: "Correct the pattern (case counts, * stands for any run of characters), or remove the rule.",
   });

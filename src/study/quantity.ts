@@ -1,5 +1,6 @@
 import Qty from "js-quantities";
 import { inputProblem } from "../errors.js";
+import { printable, shownValue } from "./message-text.js";
 
 /** What a quantity can be; the SI unit it is read into and examples for messages. */
 export const dimensions = {
@@ -76,7 +77,7 @@ export function readQuantity(given: string | number, dimension: Dimension): Quan
   if (dimension === "temperature") return temperature(amount, unit);
   const factor = ownFactors[dimension]?.[unit.toLowerCase()];
   if (factor !== undefined) return { value: factor < 1 && Number.isInteger(1 / factor) ? amount / (1 / factor) : amount * factor };
-  if (dimensions[dimension].unit === "") return { fault: `has the unit "${unit}"` };
+  if (dimensions[dimension].unit === "") return { fault: `has the unit "${printable(unit)}"` };
   return general(amount, unit, dimension);
 }
 
@@ -94,12 +95,12 @@ function temperature(amount: number, unit: string): QuantityReading {
       : kelvin.has(name)
         ? amount
         : null;
-  if (value === null) return { fault: `has the unit "${unit}"` };
+  if (value === null) return { fault: `has the unit "${printable(unit)}"` };
   return value < 0 ? { fault: "is below absolute zero" } : { value };
 }
 
 function general(amount: number, unit: string, dimension: Dimension): QuantityReading {
-  if (!UNIT.test(unit)) return { fault: `has the unit "${unit}"` };
+  if (!UNIT.test(unit)) return { fault: `has the unit "${printable(unit)}"` };
   try {
     const read = Qty(`${amount} ${unit}`);
     const target = Qty(`1 ${dimensions[dimension].unit}`);
@@ -107,14 +108,8 @@ function general(amount: number, unit: string, dimension: Dimension): QuantityRe
     const value = read.to(target.units()).scalar;
     return Number.isFinite(value) ? { value } : { fault: "is not a finite number" };
   } catch {
-    return { fault: `has the unit "${unit}", which is not known` };
+    return { fault: `has the unit "${printable(unit)}", which is not known` };
   }
-}
-
-/** A value as a message shows it: one line, at most 60 characters. */
-export function shownValue(value: unknown): string {
-  const text = JSON.stringify(value) ?? String(value);
-  return text.length > 60 ? `${text.slice(0, 57)}...` : text;
 }
 
 /**

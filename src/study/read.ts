@@ -7,8 +7,8 @@ import { studySchema } from "./schema.js";
 import type { Study } from "./study.js";
 import { readYaml, type YamlSource } from "./yaml-source.js";
 
-/** A study of a hundred variants has a few kilobytes; more than this is another kind of file. */
-const LARGEST = 256 * 1024;
+/** Bytes. A hundred variants of twenty files each fit; more is another kind of file. */
+const LARGEST = 128 * 1024;
 
 const write = "Write a study file with: dragledger new study.yaml body.stl";
 
@@ -25,6 +25,7 @@ export function parseStudy(text: string, path: string, name: string = path): Stu
 function parse(text: string, path: string, name: string): { study: Study; source: YamlSource; files: string[][] } {
   if (text.trim() === "")
     throw inputProblem({ code: "study-empty", message: "The study file is empty.", where: name, remedy: write });
+  if (text.length > LARGEST) throw tooLarge(text.length, name);
   const source = readYaml(text, name);
   const parsed = studySchema.safeParse(source.value);
   if (!parsed.success) throw problemOf(schemaFaults(parsed.error.issues, source.value), source, name);
@@ -62,6 +63,14 @@ export async function readStudy(path: string): Promise<Study> {
   return study;
 }
 
+const tooLarge = (size: number, where: string) =>
+  inputProblem({
+    code: "study-too-large",
+    message: `The file has ${size} bytes; a study file has at most ${LARGEST}.`,
+    where,
+    remedy: "Name the study file, not a surface or a result.",
+  });
+
 async function readText(path: string): Promise<string> {
   const problem = (code: string, message: string, remedy: string) => inputProblem({ code, message, where: path, remedy });
   const found = await stat(path).catch(() => null);
@@ -69,12 +78,7 @@ async function readText(path: string): Promise<string> {
   if (found.isDirectory())
     throw problem("study-is-folder", "This is a folder; expected a study file.", "Name the study file in it.");
   if (!found.isFile()) throw problem("study-not-a-file", "This is no ordinary file; expected a study file.", "Name a study file.");
-  if (found.size > LARGEST)
-    throw problem(
-      "study-too-large",
-      `The file has ${found.size} bytes; a study file has at most ${LARGEST}.`,
-      "Name the study file, not a surface or a result.",
-    );
+  if (found.size > LARGEST) throw tooLarge(found.size, path);
   const bytes = await readFile(path);
   let text: string;
   try {

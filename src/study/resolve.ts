@@ -1,8 +1,8 @@
 import { dirname, resolve } from "node:path";
 import type { Fault } from "./faults.js";
-import { nearest } from "./faults.js";
+import { listed, shownValue } from "./message-text.js";
 import { folderName, nameFault } from "./names.js";
-import { shownValue } from "./quantity.js";
+import { nearest } from "./nearest.js";
 import type { StudyDocument } from "./schema.js";
 import type { PartRule, Study } from "./study.js";
 
@@ -163,10 +163,4 @@ function fileFaults(document: StudyDocument): Fault[] {
       return [];
     }),
   );
-}
-
-/** At most ten names, then how many more. */
-export function listed(names: readonly string[]): string {
-  const shown = names.slice(0, 10).join(", ");
-  return names.length > 10 ? `${shown} and ${names.length - 10} more` : shown;
 }
