@@ -1,5 +1,5 @@
+import { listPlan } from "../../src/case/list-plan.js";
 import type { PlannedNumber } from "../../src/case/plan.js";
-import { listPlan } from "../../src/case/plan-case.js";
 import { planStudy, prepareStudy } from "../../src/case/prepare.js";
 import { readStudy } from "../../src/study/read.js";
 import type { CommandModule } from "../command.js";

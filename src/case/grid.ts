@@ -1,4 +1,4 @@
-import { boundingDomain, type BoundingDomain } from "../flow/domain.js";
+import { type BoundingDomain, boundingDomain } from "../flow/domain.js";
 import type { Box } from "../geometry/vector.js";
 import { refinementBoxes } from "./boxes.js";
 import type { RefinementBox } from "./plan.js";
