@@ -44,13 +44,35 @@ const NUMBER = /^([+-]?(?:\d+(?:\.\d*)?|\.\d+)(?:[eE][+-]?\d+)?) ?(.*)$/;
 const UNIT = /^[A-Za-z]+(?:\^?-?[1-4])?(?: ?[*/ ] ?[A-Za-z]+(?:\^?-?[1-4])?)*$/;
 
 /** Factors to SI by unit, lower case, where a general unit library is inexact, ambiguous or does not know the word. */
-const ownFactors: Partial<Record<Dimension, Record<string, number>>> = {
-  speed: { kph: 1 / 3.6, kmh: 1 / 3.6, "km/hr": 1 / 3.6, kn: 1852 / 3600, kt: 1852 / 3600, knot: 1852 / 3600, knots: 1852 / 3600 },
-  area: { sqm: 1, sqft: 0.3048 ** 2, "sq ft": 0.3048 ** 2 },
-  angle: { "°": Math.PI / 180 },
-  ratio: { "%": 0.01, percent: 0.01 },
-  coefficient: { count: 0.001, counts: 0.001 },
-  number: { thousand: 1e3, million: 1e6 },
+const ownFactors: Partial<Record<Dimension, ReadonlyMap<string, number>>> = {
+  speed: new Map([
+    ["kph", 1 / 3.6],
+    ["kmh", 1 / 3.6],
+    ["km/hr", 1 / 3.6],
+    ["kn", 1852 / 3600],
+    ["kt", 1852 / 3600],
+    ["knot", 1852 / 3600],
+    ["knots", 1852 / 3600],
+  ]),
+  area: new Map([
+    ["sqm", 1],
+    ["sqft", 0.3048 ** 2],
+    ["sq ft", 0.3048 ** 2],
+  ]),
+  pressure: new Map([["psi", 4.4482216152605 / 0.0254 ** 2]]),
+  angle: new Map([["°", Math.PI / 180]]),
+  ratio: new Map([
+    ["%", 0.01],
+    ["percent", 0.01],
+  ]),
+  coefficient: new Map([
+    ["count", 0.001],
+    ["counts", 0.001],
+  ]),
+  number: new Map([
+    ["thousand", 1e3],
+    ["million", 1e6],
+  ]),
 };
 const celsius = new Set(["degc", "°c", "c", "deg c", "celsius", "tempc"]);
 const fahrenheit = new Set(["degf", "°f", "f", "deg f", "fahrenheit", "tempf"]);
@@ -63,7 +85,7 @@ export type QuantityReading = { value: number } | { fault: string };
  * A number, or a text that is one, is SI; an angle must have a unit unless it is zero.
  */
 export function readQuantity(given: string | number, dimension: Dimension): QuantityReading {
-  if (typeof given === "number") return Number.isFinite(given) ? bare(given, dimension) : { fault: "is not a finite number" };
+  if (typeof given === "number") return bare(given, dimension);
   const text = given.normalize("NFKC").replace(/\s+/g, " ").trim();
   if (text === "") return { fault: "is empty" };
   if (text.length > LONGEST) return { fault: `is longer than ${LONGEST} characters` };
@@ -75,15 +97,18 @@ export function readQuantity(given: string | number, dimension: Dimension): Quan
   if (/^,\d/.test(unit)) return { fault: "has a comma in its number (the decimal sign is a point, and digits are not grouped)" };
   if (unit === "") return bare(amount, dimension);
   if (dimension === "temperature") return temperature(amount, unit);
-  const factor = ownFactors[dimension]?.[unit.toLowerCase()];
-  if (factor !== undefined) return { value: factor < 1 && Number.isInteger(1 / factor) ? amount / (1 / factor) : amount * factor };
+  const factor = ownFactors[dimension]?.get(unit.toLowerCase());
+  // 3 / 1000 is the double nearest to 0.003, 3 * 0.001 is not.
+  if (factor !== undefined) return finite(Number.isInteger(1 / factor) ? amount / (1 / factor) : amount * factor);
   if (dimensions[dimension].unit === "") return { fault: `has the unit "${printable(unit)}"` };
   return general(amount, unit, dimension);
 }
 
+const finite = (value: number): QuantityReading => (Number.isFinite(value) ? { value } : { fault: "is not a finite number" });
+
 function bare(amount: number, dimension: Dimension): QuantityReading {
   if (dimension === "angle" && amount !== 0) return { fault: "has no unit" };
-  return { value: amount };
+  return finite(amount);
 }
 
 function temperature(amount: number, unit: string): QuantityReading {
@@ -105,8 +130,7 @@ function general(amount: number, unit: string, dimension: Dimension): QuantityRe
     const read = Qty(`${amount} ${unit}`);
     const target = Qty(`1 ${dimensions[dimension].unit}`);
     if (!read.isCompatible(target)) return { fault: `is not ${nouns[dimension]}` };
-    const value = read.to(target.units()).scalar;
-    return Number.isFinite(value) ? { value } : { fault: "is not a finite number" };
+    return finite(read.to(target.units()).scalar);
   } catch {
     return { fault: `has the unit "${printable(unit)}", which is not known` };
   }
