@@ -12,7 +12,7 @@ export interface EnvironmentReport {
   /** bytes that this process may use */
   memory: number;
   /** bytes free in the current folder */
-  diskFree: number;
+  disk: number;
   solver: { found: boolean; version: string | null; lineage: "com" | "org" | "unknown" | null; path: string | null };
   mpi: { found: boolean; version: string | null; path: string | null };
   slurm: { found: boolean; version: string | null };
@@ -57,7 +57,7 @@ export async function surveyEnvironment(search: SolverSearch = {}): Promise<Envi
     node: process.version,
     cores: availableParallelism(),
     memory: usableMemory(),
-    diskFree: disk.bavail * disk.bsize,
+    disk: disk.bavail * disk.bsize,
     solver: {
       found: solver !== null,
       version: solver?.version ?? null,

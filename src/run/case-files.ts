@@ -66,6 +66,10 @@ export async function filesBelow(casePath: string, folder: string): Promise<stri
   const entries = await readdir(join(casePath, folder), { withFileTypes: true, recursive: true }).catch(() => []);
   return entries
     .filter((entry) => entry.isFile() && !entry.name.startsWith(".") && !/(~|\.part|\.orig|\.bak)$/.test(entry.name))
-    .map((entry) => relative(casePath, join(entry.parentPath, entry.name)).split(sep).join("/"))
+    .map((entry) =>
+      relative(casePath, join(entry.parentPath ?? entry.path, entry.name))
+        .split(sep)
+        .join("/"),
+    )
     .sort();
 }

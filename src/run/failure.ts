@@ -1,5 +1,6 @@
 import { Problem } from "../errors.js";
 import { FatalText, logLines } from "../openfoam/log-lines.js";
+import { printable } from "../study/message-text.js";
 import { tailOf } from "./case-files.js";
 import type { ProgramResult } from "./program.js";
 
@@ -51,7 +52,7 @@ export function causeOf(log: Uint8Array | string): string | null {
   fatal.close();
   const said =
     fatal.message === null ? known : `FOAM FATAL ERROR: ${fatal.message}${fatal.file === null ? "" : ` (${fatal.file})`}`;
-  return said === null ? null : shortened(plain(said));
+  return said === null ? null : shortened(printable(said));
 }
 
 /** One sentence for a program that did not do its work: step, how it ended, log, cause and what the cause means. */
@@ -66,8 +67,5 @@ export async function explainFailure(step: string, result: ProgramResult, logNam
   const parts = [`${step} ${how}`, `log: ${logName}`, ...(cause ? [cause] : []), ...(meaning ? [meaning] : [])];
   return parts.join("; ");
 }
-
-/** Text of a log without control characters: it is shown in terminals and reports. */
-const plain = (text: string): string => text.replace(/\p{Cc}/gu, " ");
 
 const shortened = (text: string): string => (text.length > longest ? `${text.slice(0, longest - 3)}...` : text);

@@ -5,6 +5,7 @@ import { Problem } from "../errors.js";
 import { type BoundaryPatch, boundaryPatches } from "../openfoam/boundary.js";
 import { parseDictionary } from "../openfoam/dictionary.js";
 import { readCheckMesh, readMesherLog } from "../openfoam/mesh-log.js";
+import { printable } from "../study/message-text.js";
 
 /** What was found in a finished mesh: `trouble` makes it useless, remarks are worth knowing. */
 export interface MeshVerdict {
@@ -54,7 +55,7 @@ function troubleOf(bounds: string[], lost: string[], card: Pick<RunCard, "parts"
     const size = card.body.bounds.max.map((high, axis) => (high - card.body.bounds.min[axis]!).toPrecision(3)).join(" x ");
     return `no part of the body is in the mesh: the body is outside the domain or too small for its cells (body ${size} m, cells of ${card.mesh.baseCell} m before refinement); a wrong unit does this, check \`body.unit\` in the study`;
   }
-  const names = card.parts.filter((part) => lost.includes(part.patch)).map((part) => part.name);
+  const names = card.parts.filter((part) => lost.includes(part.patch)).map((part) => printable(part.name));
   const shown = names.length > 5 ? `${names.slice(0, 5).join(", ")} and ${names.length - 5} more` : names.join(", ");
   return `no faces in the mesh for ${names.length === 1 ? "part" : `${names.length} parts`} ${shown}: smaller than the cells there, hidden inside another part, or outside the domain; use a finer mesh or leave ${names.length === 1 ? "it" : "them"} out`;
 }

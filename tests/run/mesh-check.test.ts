@@ -31,6 +31,11 @@ describe("judging a mesh by its patches", () => {
     );
   });
 
+  test("a part's name cannot write to the terminal", () => {
+    const hostile = { ...card, parts: [...card.parts, { name: "wing\u001b[2J\n", patch: "body_other" }] };
+    expect(judgeMesh([...bounds, ...parts], 1000, hostile).trouble).toMatch(/^no faces in the mesh for part wing\?\[2J\?: /);
+  });
+
   test("many lost parts: five are named", () => {
     expect(judgeMesh([...bounds, parts[0]!], 1000, card).trouble).toBe(
       "no faces in the mesh for 6 parts wing, door, glass, sill, skirt and 1 more: smaller than the cells there, hidden inside another part, or outside the domain; use a finer mesh or leave them out",

@@ -3,7 +3,7 @@ import { join } from "node:path";
 import { describe, expect, test } from "vitest";
 import { caseState, runCases } from "../../src/run/run-cases.js";
 import { exists, listener, quick, starts } from "./listening.js";
-import { preparedControl, standIn, standInCase } from "./stand-in.js";
+import { preparedControl, standIn, standInCard, standInCase } from "./stand-in.js";
 
 describe("a case from dictionaries to a settled history", () => {
   test("meshes, solves, asks the solver to end when drag and lift are known, and leaves controlDict as prepared", async () => {
@@ -84,6 +84,17 @@ describe("a case from dictionaries to a settled history", () => {
     );
     const [third] = await runCases([path], quick(made), () => undefined);
     expect(third).toMatchObject({ state: "stopped-at-limit", iterations: 280 });
+  });
+
+  test("a case at its limit is settled when looser targets hold for its history, without a further iteration", async () => {
+    const made = await standIn();
+    const path = await standInCase({ stop: { drag: 1e-9, lift: 1e-9, confidence: 0.95 }, mostIterations: 400 });
+    const [first] = await runCases([path], quick(made), () => undefined);
+    expect(first).toMatchObject({ state: "stopped-at-limit", iterations: 400 });
+    await writeFile(join(path, "dragledger.json"), JSON.stringify({ ...standInCard, mostIterations: 400 }));
+    const [second] = await runCases([path], quick(made), () => undefined);
+    expect(second).toMatchObject({ state: "settled", settled: true, iterations: 400 });
+    expect(await starts(path)).toHaveLength(1);
   });
 
   test("a limit that the write interval does not divide is still written", async () => {

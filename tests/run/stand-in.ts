@@ -80,7 +80,7 @@ const valuesAt = (time) => {
   if (behaviour === "nan" && time >= 30) return ["nan", "-nan"];
   if (behaviour === "huge" && time >= 30) return [4.2e5, 1];
   const wander = behaviour === "wander" ? time / 50 : 0;
-  return [0.3 + Math.exp(-time / 8) + 1e-5 * noise() + wander, 0.1 - Math.exp(-time / 8) + 1e-5 * noise()];
+  return [0.3 + Math.exp(-time / 8) + 1e-3 * noise() + wander, 0.1 - Math.exp(-time / 8) + 1e-3 * noise()];
 };
 const pause = (milliseconds) => Atomics.wait(new Int32Array(new SharedArrayBuffer(4)), 0, 0, milliseconds);
 if (behaviour === "deaf") process.on("SIGTERM", () => {});
