@@ -16,11 +16,11 @@ const comma = 44;
 const minus = 45;
 const point = 46;
 const zero = 48;
+const upperE = 69;
+const lowerE = 101;
 
 /** 1e0 .. 1e22: the powers of ten that are exact doubles. */
 const powersOfTen = Float64Array.from({ length: 23 }, (_, exponent) => Number(`1e${exponent}`));
-/** A mantissa below this can take one more digit and stay an exact integer. */
-const roomForOneDigit = 9e14;
 
 /** What stands between two cells: blanks, tabs, brackets, commas, carriage returns. */
 const separates = new Uint8Array(256);
@@ -54,33 +54,36 @@ export interface NumberRows {
 }
 
 /**
- * Reads rows of exactly `width` numbers from `bytes[at]` on, until a line starts with `#` or the bytes end. Brackets and commas
- * count as blanks, empty lines are passed over.
- *
- * A row with another count, or with a cell that is not a plain number, is given to `odd` as text; what that returns (`width`
- * numbers) is taken as the row, null leaves the row out. A last line without a line end is cut: it is never read.
+ * One row at a time. The row has a method of its own because the engine compiles a method that is called often sooner than one long loop.
  */
-export function readNumberRows(
-  bytes: Uint8Array,
-  start: number,
-  width: number,
-  odd: (text: string, line: number) => ArrayLike<number> | null,
-): NumberRows {
-  const end = bytes.length;
-  const buffer = Buffer.from(bytes.buffer, bytes.byteOffset, end);
-  // A cut last line is found once, here, so that the loop below may rely on a line end.
-  const lastNewline = bytes.lastIndexOf(newline);
-  let capacity = 1024;
-  let columns = Array.from({ length: width }, () => new Float64Array(capacity));
-  let rows = 0;
-  let at = start;
-  let lines = 0;
-  const scratch = new Float64Array(width);
+class RowScanner {
+  /** one per cell of a row; all of one length */
+  columns: Float64Array<ArrayBuffer>[];
+  /** numbers found in the row; those beyond the width are counted, not kept */
+  count = 0;
+  /** every cell is a plain number */
+  plain = true;
+  private readonly text: Buffer;
+  private readonly words: DataView;
 
-  while (at < end) {
-    if (bytes[at] === hash) break;
-    if (at > lastNewline) return { columns, rows, at: end, lines: lines + 1, cut: hasCell(bytes, at, end) };
-    const rowStart = at;
+  constructor(
+    private readonly bytes: Uint8Array,
+    private readonly width: number,
+    capacity: number,
+  ) {
+    this.columns = Array.from({ length: width }, () => new Float64Array(capacity));
+    this.text = Buffer.from(bytes.buffer, bytes.byteOffset, bytes.length);
+    this.words = new DataView(bytes.buffer, bytes.byteOffset, bytes.length);
+  }
+
+  /**
+   * Reads the row that starts at `start` into place `row` of the columns; there must be a line end behind it. Returns the place of that
+   * line end.
+   */
+  scan(start: number, row: number): number {
+    const { bytes, width, columns, words } = this;
+    const lastWord = bytes.length - 4;
+    let at = start;
     let count = 0;
     let plain = true;
     for (;;) {
@@ -93,80 +96,139 @@ export function readNumberRows(
         negative = true;
         byte = bytes[++at]!;
       } else if (byte === plus) byte = bytes[++at]!;
-      let mantissa = 0;
-      let exponent = 0;
-      let exact = true;
-      const wholeStart = at;
+      // Nine digits fit a small integer, which is quicker to build than a double; two such make any mantissa that can be exact.
+      let head = 0;
+      let tail = 0;
+      let digits = 0;
       let digit = byte - zero;
       while (digit >= 0 && digit <= 9) {
-        if (mantissa < roomForOneDigit) mantissa = mantissa * 10 + digit;
-        else exact = false;
-        digit = bytes[++at]! - zero;
+        if (digits < 9) head = (head * 10 + digit) | 0;
+        else if (digits < 15) tail = (tail * 10 + digit) | 0;
+        digits += 1;
+        byte = bytes[++at]!;
+        digit = byte - zero;
       }
-      let digits = at - wholeStart;
-      if (bytes[at] === point) {
-        const fractionStart = ++at;
-        digit = bytes[at]! - zero;
-        while (digit >= 0 && digit <= 9) {
-          if (mantissa < roomForOneDigit) mantissa = mantissa * 10 + digit;
-          else exact = false;
-          digit = bytes[++at]! - zero;
+      let exponent = 0;
+      if (byte === point) {
+        exponent = digits;
+        at += 1;
+        // Four digits at a time: every byte is 0x30..0x39 when its high half is 3 before and after adding 6 to the low half.
+        while (digits <= 5 && at <= lastWord) {
+          const four = words.getUint32(at, false);
+          if (((four & 0xf0f0f0f0) | 0) !== 0x30303030 || (((four + 0x06060606) & 0xf0f0f0f0) | 0) !== 0x30303030) break;
+          const pairs = Math.imul((four >>> 8) & 0x000f000f, 10) + (four & 0x000f000f);
+          head = (Math.imul(head, 10_000) + Math.imul(pairs >>> 16, 100) + (pairs & 0xffff)) | 0;
+          digits += 4;
+          at += 4;
         }
-        exponent = fractionStart - at;
-        digits -= exponent;
+        byte = bytes[at]!;
+        digit = byte - zero;
+        while (digit >= 0 && digit <= 9) {
+          if (digits < 9) head = (head * 10 + digit) | 0;
+          else if (digits < 15) tail = (tail * 10 + digit) | 0;
+          digits += 1;
+          byte = bytes[++at]!;
+          digit = byte - zero;
+        }
+        exponent -= digits;
       }
-      if (digits > 0 && (bytes[at]! | blank) === 101) {
+      let whole = digits > 0;
+      if (byte === lowerE || byte === upperE) {
         byte = bytes[++at]!;
         let down = false;
         if (byte === minus) {
           down = true;
           byte = bytes[++at]!;
         } else if (byte === plus) byte = bytes[++at]!;
-        const exponentStart = at;
         let power = 0;
         digit = byte - zero;
+        if (digit < 0 || digit > 9) whole = false;
         while (digit >= 0 && digit <= 9) {
           if (power < 10_000) power = power * 10 + digit;
-          digit = bytes[++at]! - zero;
+          byte = bytes[++at]!;
+          digit = byte - zero;
         }
-        if (at === exponentStart) digits = 0;
         exponent += down ? -power : power;
       }
-      if (digits === 0 || endsCell[bytes[at]!] === 0) {
+      if (!whole || endsCell[byte] === 0) {
         plain = false;
         at = bytes.indexOf(newline, at);
         break;
       }
       let value: number;
-      if (exact && exponent >= -22 && exponent <= 22) {
-        value = exponent < 0 ? mantissa / powersOfTen[-exponent]! : mantissa * powersOfTen[exponent]!;
+      if (digits <= 15 && exponent >= -22 && exponent <= 22) {
+        value = digits <= 9 ? head : head * powersOfTen[digits - 9]! + tail;
+        value = exponent < 0 ? value / powersOfTen[-exponent]! : value * powersOfTen[exponent]!;
         if (negative) value = -value;
-      } else value = Number(buffer.toString("latin1", cellStart, at));
-      if (count < width) scratch[count] = value;
+      } else value = Number(this.text.toString("latin1", cellStart, at));
+      if (count < width) columns[count]![row] = value;
       count += 1;
     }
-    at += 1;
+    this.count = count;
+    this.plain = plain;
+    return at;
+  }
+
+  /** Makes room for more rows. */
+  grow(): void {
+    this.columns = this.columns.map((column) => {
+      const grown = new Float64Array(Math.ceil(column.length * 1.5) + 16);
+      grown.set(column);
+      return grown;
+    });
+  }
+
+  lineText(from: number, to: number): string {
+    return this.text.toString("utf8", from, to);
+  }
+}
+
+/**
+ * Reads rows of exactly `width` numbers from `bytes[start]` on, until a line starts with `#` or the bytes end. Brackets and commas
+ * count as blanks, empty lines are passed over.
+ *
+ * A row with another count, or with a cell that is not a plain number, is given to `odd` as text; what that returns (`width`
+ * numbers) is taken as the row, null leaves the row out. A last line without a line end is cut: it is never read.
+ */
+export function readNumberRows(
+  bytes: Uint8Array,
+  start: number,
+  width: number,
+  odd: (text: string, line: number) => ArrayLike<number> | null,
+): NumberRows {
+  const end = bytes.length;
+  // A cut last line is found once, here, so that the scanner may rely on a line end.
+  const lastNewline = bytes.lastIndexOf(newline);
+  // Rows are padded to much the same length: the first tells how many there are, with a margin.
+  const firstLength = Math.max(2, bytes.indexOf(newline, start) + 1 - start);
+  let capacity = Math.ceil(((end - start) / firstLength) * 1.05) + 16;
+  const scanner = new RowScanner(bytes, width, capacity);
+  let rows = 0;
+  let at = start;
+  let lines = 0;
+  let cut = false;
+  while (at < end && bytes[at] !== hash) {
     lines += 1;
-    let row: ArrayLike<number> | null = scratch;
-    if (!plain || count !== width) {
-      if (plain && count === 0) continue;
-      row = odd(buffer.toString("utf8", rowStart, at - 1), lines);
-      if (row === null) continue;
+    if (at > lastNewline) {
+      cut = hasCell(bytes, at, end);
+      at = end;
+      break;
     }
     if (rows === capacity) {
-      // The rows left to read, judged by the mean length so far, with a margin.
-      const expected = Math.ceil(((end - start) / (at - start)) * rows * 1.05) + 1024;
-      capacity = Math.max(expected, Math.ceil(capacity * 1.5));
-      columns = columns.map((old) => {
-        const grown = new Float64Array(capacity);
-        grown.set(old);
-        return grown;
-      });
+      scanner.grow();
+      capacity = scanner.columns[0]!.length;
     }
-    for (let column = 0; column < width; column += 1) columns[column]![rows] = row[column]!;
+    const rowStart = at;
+    at = scanner.scan(at, rows) + 1;
+    if (!scanner.plain || scanner.count !== width) {
+      if (scanner.plain && scanner.count === 0) continue;
+      const row = odd(scanner.lineText(rowStart, at - 1), lines);
+      if (row === null) continue;
+      for (let column = 0; column < width; column += 1) scanner.columns[column]![rows] = row[column]!;
+    }
     rows += 1;
   }
-  return { columns, rows, at, lines, cut: false };
+  return { columns: scanner.columns, rows, at, lines, cut };
 }
 
 function hasCell(bytes: Uint8Array, from: number, to: number): boolean {

@@ -61,18 +61,18 @@ export function readTables(bytes: Uint8Array, name: string): Table[] {
     at = read.at;
     line = read.line;
   }
+  if (sections.every((section) => section.layout === "unknown") && previous?.columnText == null) {
+    throw inputProblem({
+      code: "no-table",
+      message: "no header line starts with '# Time': this is no table of a function object",
+      where: name,
+      remedy: "Give a table such as postProcessing/<object>/<time>/coefficient.dat.",
+    });
+  }
   const kept = sections.filter((section) => section.rows > 0);
   if (kept.length === 0) {
-    if (sections[0] === undefined || sections[0].layout === "unknown") {
-      throw inputProblem({
-        code: "no-table",
-        message: "no header line that starts with '# Time' and no row of numbers was found: this is no table of a function object",
-        where: name,
-        remedy: "Give a table such as postProcessing/<object>/<time>/coefficient.dat.",
-      });
-    }
     remarks.push({ code: "no-rows", message: "the table has a header but no complete row" });
-    kept.push(sections[0]);
+    kept.push(sections[0]!);
   }
   return joinSections(kept, remarks);
 }
