@@ -10,7 +10,7 @@ import { TextFault } from "./text.js";
 import { TriangleBuilder } from "./triangle-builder.js";
 import type { SurfaceFile, TriangleSet } from "./triangle-set.js";
 
-/** Bytes asked of the disk at a time. */
+/** Bytes dealt with at a time. */
 const PIECE = 8 << 20;
 /** Bytes looked at to tell the formats apart. */
 const HEAD = 1024;
@@ -39,22 +39,22 @@ interface Opened {
  * ending). Parts of one name within a file are joined, with a finding; across files they are an error, because two variants of a
  * part in one body are almost always a mistake. Normals in the files are ignored: the order of the corners counts.
  *
- * Files are read in pieces of 8 MB into typed arrays. A count in a header is compared with the size of the file before room is
+ * Files are read in pieces of 8 MB (`piece`; any size that holds two lines gives the same result) into typed arrays. A count in a header is compared with the size of the file before room is
  * made for it.
  *
  * @throws Problem(input): `file-missing`, `file-unreadable`, `not-a-file`, `file-empty`, `not-a-surface`, `stl-truncated`,
  * `stl-syntax`, `stl-facet-corners`, `stl-number`, `coordinate-not-finite`, `obj-*`, `gzip-damaged`, `duplicate-part-name`,
  * `too-many-parts`, `surface-too-large`.
  */
-export async function readSurfaces(paths: string[]): Promise<TriangleSet> {
+export async function readSurfaces(paths: string[], { piece = PIECE }: { piece?: number } = {}): Promise<TriangleSet> {
   if (paths.length === 0)
     throw inputProblem({ code: "no-files", message: "No surface file was given.", remedy: "Name at least one STL or OBJ file." });
   const into = new TriangleBuilder();
-  for (const path of paths) await readSurface(path, into);
+  for (const path of paths) await readSurface(path, into, piece);
   return into.finish();
 }
 
-async function readSurface(path: string, into: TriangleBuilder): Promise<void> {
+async function readSurface(path: string, into: TriangleBuilder, piece: number): Promise<void> {
   if (into.files.some((file) => resolve(file.path) === resolve(path)))
     throw inputProblem({
       code: "file-twice",
@@ -69,7 +69,7 @@ async function readSurface(path: string, into: TriangleBuilder): Promise<void> {
   const before = into.triangles;
   const reader = readerFor(opened, format, into);
   try {
-    reader.finish(await feed(opened, reader));
+    reader.finish(await feed(opened, reader, piece));
   } catch (cause) {
     throw cause instanceof TextFault ? await located(opened, cause) : cause;
   }
@@ -227,16 +227,20 @@ function formatOf({ path, packed, size, head }: Opened): SurfaceFile["format"] {
   return "stl-binary";
 }
 
-/** Whether no byte is a control character that text does not have. */
+/** Whether no byte is a control character that text does not have, and most are ASCII: names may be in any of the old alphabets. */
 function looksLikeText(head: Uint8Array): boolean {
-  for (const byte of head) if (byte < 9 || (byte > 13 && byte < 32 && byte !== 27) || byte === 127) return false;
-  return true;
+  let foreign = 0;
+  for (const byte of head) {
+    if (byte < 9 || (byte > 13 && byte < 32 && byte !== 27) || byte === 127) return false;
+    if (byte > 127) foreign++;
+  }
+  return foreign <= 0.3 * head.length;
 }
 
 /** Gives the whole file to `reader`; returns its unpacked size. */
-async function feed(opened: Opened, reader: PieceReader): Promise<number> {
+async function feed(opened: Opened, reader: PieceReader, piece: number): Promise<number> {
   // One byte more than is ever filled: the text readers want white space after the last word.
-  let buffer = new Uint8Array(PIECE + 1);
+  let buffer = new Uint8Array(Math.min(piece, opened.packed ? 1 << 16 : opened.size) + 1);
   let kept = 0;
   let total = 0;
   const deal = (length: number, last: boolean): void => {
@@ -245,24 +249,24 @@ async function feed(opened: Opened, reader: PieceReader): Promise<number> {
     kept = length - used;
     if (kept > 0 && used > 0) buffer.copyWithin(0, used, length);
     // Nothing but a file without any line or blank for megabytes keeps a whole buffer waiting.
-    if (!last && kept > buffer.length / 2)
+    if (!last && kept > piece / 2)
       throw new TextFault(
         "not-a-surface",
-        "The file has a run of several megabytes without any white space.",
+        "The file has megabytes without a line end or a facet; it is neither STL nor OBJ.",
         "Export the surface again as STL or OBJ.",
         total,
       );
   };
   if (opened.packed) {
-    for await (const piece of unpacked(opened.path, 1 << 20)) {
-      if (kept + piece.length >= buffer.length) {
-        const larger = new Uint8Array(Math.max(2 * buffer.length, kept + piece.length + 1));
+    for await (const bytes of unpacked(opened.path, Math.min(Math.max(64, piece >> 3), 1 << 18))) {
+      if (kept + bytes.length >= buffer.length) {
+        const larger = new Uint8Array(Math.max(2 * buffer.length, kept + bytes.length + 1));
         larger.set(buffer.subarray(0, kept));
         buffer = larger;
       }
-      buffer.set(piece, kept);
-      total += piece.length;
-      deal(kept + piece.length, false);
+      buffer.set(bytes, kept);
+      total += bytes.length;
+      deal(kept + bytes.length, false);
     }
     deal(kept, true);
     return total;

@@ -1,7 +1,7 @@
 import { finding } from "../finding.js";
 import { DecimalScanner } from "./decimal.js";
 import { partName } from "./part-names.js";
-import { completeUntil, shown, TextFault, wordEnd } from "./text.js";
+import { shown, TextFault, wordEnd } from "./text.js";
 import type { TriangleBuilder } from "./triangle-builder.js";
 
 /** Four letters in one number, lower case; the words of the format are told apart by these. */
@@ -63,6 +63,7 @@ export class AsciiStlReader {
 
   /** Triangles to make room for at once: what the file has if it goes on as it began. */
   private expected = 0;
+  private last = false;
   private readonly first: number;
 
   /**
@@ -83,6 +84,7 @@ export class AsciiStlReader {
    * behind it. `last`: there is no more; `bytes[length]` is white space then, so that words end before it.
    */
   read(bytes: Uint8Array, length: number, last: boolean): number {
+    this.last = last;
     const limit = last ? length : completeUntil(bytes, length);
     if (this.before === 0 && limit > FIRST_LOOK && this.size > 0) {
       // Counts facets at the beginning; a facet takes 50 bytes at least, so that no file makes this grow beyond its own size.
@@ -96,13 +98,7 @@ export class AsciiStlReader {
 
   /** Says what was odd in the file as a whole. */
   finish(): void {
-    if (this.next !== Next.Solid && this.next !== Next.FacetOrEnd)
-      throw new TextFault(
-        "stl-truncated",
-        "The file ends inside a facet; it was cut off.",
-        "Copy or export the file again and compare its size with the original.",
-        this.before,
-      );
+    if (this.next !== Next.Solid && this.next !== Next.FacetOrEnd) throw this.cutOff(0);
     if (this.next === Next.FacetOrEnd) this.unended++;
     const { path } = this.into.files[this.file];
     if (this.unended > 0)
@@ -141,7 +137,7 @@ export class AsciiStlReader {
         case Next.Coordinate: {
           const value = number.scan(bytes, at);
           // Only NaN and the infinities do not give zero here.
-          if (value - value !== 0) throw this.badNumber(bytes, at, number.end);
+          if (value - value !== 0) throw this.badNumber(bytes, at, number.end, limit);
           positions[to++] = value;
           at = number.end;
           if (++filled === 9) {
@@ -220,7 +216,17 @@ export class AsciiStlReader {
   }
 
   private unexpected(bytes: Uint8Array, at: number, limit: number, expected: string): TextFault {
+    if (this.last && wordEnd(bytes, at, limit) === limit) return this.cutOff(at);
     return new TextFault("stl-syntax", `Expected ${expected}, found "${shown(bytes, at, limit)}".`, REMEDY, this.before + at);
+  }
+
+  private cutOff(at: number): TextFault {
+    return new TextFault(
+      "stl-truncated",
+      "The file ends inside a facet; it was cut off.",
+      "Copy or export the file again and compare its size with the original.",
+      this.before + at,
+    );
   }
 
   private wrongCorners(corners: string, at: number): TextFault {
@@ -232,7 +238,8 @@ export class AsciiStlReader {
     );
   }
 
-  private badNumber(bytes: Uint8Array, at: number, end: number): TextFault {
+  private badNumber(bytes: Uint8Array, at: number, end: number, limit: number): TextFault {
+    if (this.last && end === limit) return this.cutOff(at);
     const text = shown(bytes, at, end);
     const value = Number(text.replace(/^([+-]?)(inf|infinity)$/i, "$1Infinity"));
     return /^[+-]?nan\b/i.test(text) || Math.abs(Math.fround(value)) === Number.POSITIVE_INFINITY
@@ -249,6 +256,18 @@ export class AsciiStlReader {
           this.before + at,
         );
   }
+}
+
+/**
+ * How much of `bytes[0, length)` ends with a line or, where lines are long, with a facet, so that no word and no name is cut. Zero:
+ * more is needed.
+ */
+function completeUntil(bytes: Uint8Array, length: number): number {
+  for (let at = length - 1; at >= 0; at--) {
+    if (bytes[at] === 10 || bytes[at] === 13) return at + 1;
+    if (bytes[at] <= 32 && at >= 8 && isEndfacet(bytes, at - 8)) return at + 1;
+  }
+  return 0;
 }
 
 /**

@@ -11,19 +11,6 @@ export class TextFault extends Error {
   }
 }
 
-/** Longest run without white space that a text file may hold; nothing in a surface file comes near. */
-const LONGEST_WORD = 1 << 16;
-
-/**
- * How much of `bytes[0, length)` holds only complete lines; complete words where there is not a single line end. Zero: more is
- * needed.
- */
-export function completeUntil(bytes: Uint8Array, length: number): number {
-  for (let at = length - 1; at >= 0; at--) if (bytes[at] === 10 || bytes[at] === 13) return at + 1;
-  for (let at = length - 1; at >= 0 && length - at < LONGEST_WORD; at--) if (bytes[at] <= 32) return at + 1;
-  return 0;
-}
-
 /** Index after the word at `at`. */
 export function wordEnd(bytes: Uint8Array, at: number, limit: number): number {
   let end = at;
