@@ -342,7 +342,7 @@ export const studyKeys: readonly StudyKey[] = entries.map((entry) => {
   return {
     ...entry,
     expects: entry.expects ?? (entry.quantity ? expectedQuantity(entry.quantity.dimension) : alternatives(entry.choices ?? [])),
-    example: entry.example ?? String(dimension?.examples[0] ?? entry.choices?.[0]),
+    example: entry.example ?? String(dimension?.examples[0] ?? entry.default),
     ...(dimension ? { unit: dimension.unit } : {}),
   };
 });
