@@ -10,8 +10,8 @@ export const runEntries = ["startFrom", "stopAt", "endTime", "writeInterval", "r
 /** What a run has put into system/controlDict, kept in the state until the file is as it was prepared. */
 export interface ControlEdit {
   prepared: string;
-  /** sha256 of the edited text: a file that no longer has it was changed by somebody else and is left alone. */
-  editedHash: string;
+  /** sha256 of the texts put there: a file that has none of them was changed by somebody else and is left alone. */
+  editedHashes: string[];
 }
 
 interface Entry {
@@ -105,8 +105,8 @@ export async function readControlDict(casePath: string): Promise<string> {
   });
 }
 
-/** Writes the file for the start of a solver: on from the last written time, up to `most` iterations. */
-export async function prepareForRun(casePath: string, prepared: string, most: number): Promise<ControlEdit> {
+/** The text for the start of a solver: on from the last written time, up to `most` iterations. */
+export function textForRun(prepared: string, most: number): string {
   const interval = Number(entryOf(prepared, "writeInterval"));
   const values: Record<string, string> = {
     startFrom: "latestTime",
@@ -117,28 +117,28 @@ export async function prepareForRun(casePath: string, prepared: string, most: nu
   if (Number.isInteger(interval) && interval > 0 && /^(timeStep)?$/.test(entryOf(prepared, "writeControl") ?? "")) {
     values.writeInterval = String(writeIntervalFor(most, interval));
   }
-  const edited = withEntries(prepared, values);
-  await writeFileAtomic(fileOf(casePath), edited);
-  return { prepared, editedHash: hashOf(edited) };
+  return withEntries(prepared, values);
 }
 
+/** The text that asks the running solver to write its fields at the end of its iteration and to end. */
+export const textForEnd = (running: string): string => withEntries(running, { stopAt: "writeNow" });
+
 /**
- * Asks the running solver to write its fields at the end of this iteration and to end. The solver takes a file as changed only when its
- * date is more than its "fileModificationSkew" (10 s as shipped) past the one it read: the date is set ahead, so that it notices at once.
+ * `ahead`: dates the file a minute ahead. A running solver takes it as changed only when its date is more than its
+ * "fileModificationSkew" (10 s as shipped) past the one it read; so it notices at once.
  */
-export async function askToEnd(casePath: string): Promise<string> {
-  const edited = withEntries(await readControlDict(casePath), { stopAt: "writeNow" });
-  await writeFileAtomic(fileOf(casePath), edited);
-  const ahead = new Date(Date.now() + 60_000);
-  await utimes(fileOf(casePath), ahead, ahead);
-  return hashOf(edited);
+export async function writeControlDict(casePath: string, text: string, options: { ahead?: boolean } = {}): Promise<void> {
+  await writeFileAtomic(fileOf(casePath), text);
+  if (!options.ahead) return;
+  const date = new Date(Date.now() + 60_000);
+  await utimes(fileOf(casePath), date, date);
 }
 
 /** Puts the prepared text back; false when somebody else has changed the file meanwhile, which is then left as it is. */
 export async function putBack(casePath: string, edit: ControlEdit): Promise<boolean> {
   const now = await readControlDict(casePath);
   if (now === edit.prepared) return true;
-  if (hashOf(now) !== edit.editedHash) return false;
-  await writeFileAtomic(fileOf(casePath), edit.prepared);
+  if (!edit.editedHashes.includes(hashOf(now))) return false;
+  await writeControlDict(casePath, edit.prepared);
   return true;
 }

@@ -2,7 +2,7 @@ import { rename, rm } from "node:fs/promises";
 import { join } from "node:path";
 import { exists, processorFolders, timeFolders } from "./case-files.js";
 import { type CaseRun, endWith, goOn, type Phase } from "./case-run.js";
-import { askToEnd, entryOf, prepareForRun, putBack, readControlDict } from "./control-dict.js";
+import { entryOf, hashOf, putBack, readControlDict, textForEnd, textForRun, writeControlDict } from "./control-dict.js";
 import { HistoryFollower } from "./history-follower.js";
 import { changedInputs, type Hashes, solutionInputs } from "./inputs.js";
 import { atLimit, judgeSolve } from "./judge-solve.js";
@@ -87,8 +87,8 @@ async function runSolver(run: CaseRun, step: Step, inputs: Hashes, follower: His
     return atLimit(run, follower, watching, `the limit of ${run.most} iterations is reached`);
   }
   const prepared = await readControlDict(run.path);
-  run.state.controlDict = await prepareForRun(run.path, prepared, run.most);
   await run.save("solving", "");
+  await editControlDict(run, prepared, textForRun(prepared, run.most));
   await rotateLog(run.path, step.log);
   try {
     const { result, watched } = await watchSolver(run, step, inputs, follower, new Watcher(watching), from);
@@ -96,6 +96,14 @@ async function runSolver(run: CaseRun, step: Step, inputs: Hashes, follower: His
   } finally {
     await restoreControlDict(run);
   }
+}
+
+/** Edits system/controlDict; the state knows of the edit before it is made, so that a killed run is put back in any case. */
+async function editControlDict(run: CaseRun, prepared: string, text: string, options: { ahead?: boolean } = {}): Promise<void> {
+  const before = run.state.controlDict?.editedHashes ?? [];
+  run.state.controlDict = { prepared, editedHashes: [...before, hashOf(text)] };
+  await run.save();
+  await writeControlDict(run.path, text, options);
 }
 
 /** Puts system/controlDict back as it was prepared, also after a run that was killed. */
@@ -117,7 +125,7 @@ async function watchSolver(
 ): Promise<{ result: ProgramResult; watched: Watched }> {
   const stop = new AbortController();
   const signal = AbortSignal.any([run.signal, stop.signal]);
-  const began = performance.now();
+  const pace = new Pace(run, from);
   let ended = false;
   let wake: () => void = () => undefined;
   const program = run.step(step, inputs, { signal }).finally(() => {
@@ -125,14 +133,10 @@ async function watchSolver(
     wake();
   });
   const seen: { now: Watched } = { now: { kind: "going", halfWidth: null, stillNeeded: null } };
-  let told = -1;
   const look = async () => {
     await follower.poll();
     if (seen.now.kind === "going") seen.now = watcher.look(follower.time, follower.cd, follower.cl);
-    if (follower.iteration > from && follower.iteration !== told) {
-      told = follower.iteration;
-      emitIteration(run, follower, seen.now, from, (performance.now() - began) / 1000);
-    }
+    pace.tell(follower, seen.now);
   };
   let asked = false;
   try {
@@ -146,8 +150,8 @@ async function watchSolver(
       if (seen.now.kind === "diverged" || seen.now.kind === "no-force") stop.abort();
       if (seen.now.kind === "settled" && !asked) {
         asked = true;
-        run.state.controlDict!.editedHash = await askToEnd(run.path);
-        await run.save();
+        const { prepared } = run.state.controlDict!;
+        await editControlDict(run, prepared, textForEnd(await readControlDict(run.path)), { ahead: true });
       }
     }
   } catch (error) {
@@ -161,20 +165,38 @@ async function watchSolver(
   return { result, watched: seen.now };
 }
 
-function emitIteration(run: CaseRun, follower: HistoryFollower, watched: Watched, from: number, seconds: number): void {
-  const iteration = follower.iteration;
-  const perIteration = seconds / (iteration - from);
-  const toLimit = run.most - iteration;
-  const needed = watched.kind === "going" ? watched.stillNeeded : 0;
-  run.emit({
-    event: "iteration",
-    case: run.path,
-    iteration,
-    most: run.most,
-    cd: follower.cd.at(-1) ?? null,
-    halfWidth: watched.kind === "going" || watched.kind === "settled" ? watched.halfWidth : null,
-    secondsLeft: perIteration * Math.min(toLimit, needed ?? toLimit),
-  });
+/** Tells of the iterations of one start; their pace is taken from the first one seen on, without the time the solver took to start. */
+class Pace {
+  private first: { iteration: number; at: number } | null = null;
+  private told: number;
+
+  constructor(
+    private readonly run: CaseRun,
+    from: number,
+  ) {
+    this.told = from;
+  }
+
+  tell(follower: HistoryFollower, watched: Watched): void {
+    const { run } = this;
+    const { iteration } = follower;
+    if (iteration <= this.told) return;
+    this.told = iteration;
+    const now = performance.now();
+    this.first ??= { iteration, at: now };
+    const since = iteration - this.first.iteration;
+    const toLimit = run.most - iteration;
+    const needed = watched.kind === "going" ? watched.stillNeeded : 0;
+    run.emit({
+      event: "iteration",
+      case: run.path,
+      iteration,
+      most: run.most,
+      cd: follower.cd.at(-1) ?? null,
+      halfWidth: watched.kind === "going" || watched.kind === "settled" ? watched.halfWidth : null,
+      secondsLeft: since === 0 ? null : ((now - this.first.at) / 1000 / since) * Math.min(toLimit, needed ?? toLimit),
+    });
+  }
 }
 
 /** The solver deletes old times by "purgeWrite" only among those of its own start; here they go for all starts of the case. */

@@ -176,7 +176,7 @@ describe("going on after an interruption", () => {
     expect(state.controlDict).toBe(null);
     const leftBehind = {
       ...state,
-      controlDict: { prepared: preparedControl, editedHash: createHash("sha256").update(edited).digest("hex") },
+      controlDict: { prepared: preparedControl, editedHashes: [createHash("sha256").update(edited).digest("hex")] },
     };
     await writeFile(join(path, "run-state.json"), JSON.stringify(leftBehind));
     await writeFile(join(path, "system/controlDict"), edited);
