@@ -9,9 +9,12 @@ export interface DraftSource {
   survey: Survey;
 }
 
-/** Speed of a draft, and the cells it starts with: a fineness at which a bluff body's drag came out within 2 % (measured with the solver). */
-const SPEED = "108 km/h";
-const CELLS = "300 thousand";
+/**
+ * Cells of a draft, for one half of a symmetric body and for a whole one. With 300 thousand for the half the drag of a bluff body came
+ * out 2 % high (measured with the solver).
+ */
+const CELLS_HALF = "300 thousand";
+const CELLS_WHOLE = "600 thousand";
 
 /**
  * Text of a study file for one body, filled in from its survey. Every value that was guessed carries a `# GUESS: reason` comment
@@ -22,15 +25,16 @@ export function draftStudy({ name, files, survey }: DraftSource): string {
   const size = [extents.length, extents.width, extents.height].map((value) => significant(value)).join(" x ");
   const half = symmetry.kind === "half";
   const wholeArea = (half ? 2 : 1) * survey.frontalArea.value;
-  return [
-    `# Written by dragledger from ${files.length === 1 ? "one file" : `${files.length} files`}: ${survey.parts.length} parts, ${survey.triangles} triangles,`,
+  const text = [
+    `# Written by dragledger from ${counted(files.length, "file")}: ${counted(survey.parts.length, "part")}, ${counted(survey.triangles, "triangle")},`,
     `# ${size} m (length x width x height), frontal area ${significant(wholeArea)} m2${half ? " (twice that of the half body)" : ""}.`,
-    "# Values marked GUESS were not given: confirm or correct each.",
+    ...fitnessLines(survey),
+    "# What is marked GUESS was not given: confirm or correct it.",
     "",
     `study: ${quoted(fitName(name))}`,
     `question: ${quoted("Does the change pay in drag or lift, and where?")}   # GUESS: say what this study is to answer`,
     "air: { temperature: 15 degC, pressure: 1013.25 hPa, humidity: 0 % }   # GUESS: standard air at sea level",
-    `speed: ${SPEED}   # GUESS: a usual road speed; one or a list`,
+    `speed: 108 km/h   # GUESS: a usual road speed; one or a list`,
     "ground: moving   # GUESS: as on the road; fixed for a tunnel with a standing floor",
     "baseline: baseline",
     "variants:",
@@ -41,22 +45,30 @@ export function draftStudy({ name, files, survey }: DraftSource): string {
     "body:",
     `  unit: ${unit.value}${unit.certain ? "" : `   # GUESS: ${comment(unit.basis)}`}`,
     `  travel: ${quoted(axes.travel)}${axes.certain ? "" : `   # GUESS: ${comment(axes.basis)}`}`,
-    `  up: ${quoted(axes.up)}${axes.certain ? "" : `   # GUESS: ${comment(axes.basis)}`}`,
+    `  up: ${quoted(axes.up)}${axes.certain ? "" : "   # GUESS: as for travel"}`,
     wheelbaseLine(survey),
     "  reference-area: auto   # frontal area of the baseline, held for all variants",
     ...partLines(survey),
     "mesh:",
-    `  cells: ${CELLS}   # GUESS: a first look on a laptop; raise it for the answer`,
+    `  cells: ${symmetry.kind === "none" ? CELLS_WHOLE : CELLS_HALF}   # GUESS: a first look on a laptop; raise it for the answer`,
     `  half: auto   # ${symmetryText(symmetry.kind)}`,
+    "  # From here on: what is taken when nothing is said.",
     "  y-plus: 50",
     "  layers: 3",
-    "solver:",
-    "  turbulence: k-omega-SST",
-    "  mode: steady",
-    "  most-iterations: 3000",
-    "stop: { drag: 1 count, lift: 3 counts, confidence: 95 % }   # 1 count = 0.001",
-    "",
-  ].join("\n");
+    "solver: { turbulence: k-omega-SST, mode: steady, start: cold, most-iterations: 3000 }",
+    "stop: { drag: 1 count, lift: 3 counts, confidence: 95 % }   # half-widths; 1 count = 0.001",
+  ];
+  return `${text.join("\n")}\n`;
+}
+
+const counted = (count: number, noun: string): string => `${count} ${noun}${count === 1 ? "" : "s"}`;
+
+function fitnessLines({ verdict, findings }: Survey): string[] {
+  if (verdict === "fit") return [];
+  const count = (severity: string): number => findings.filter((found) => found.severity === severity).length;
+  return [
+    `# The body is ${verdict}: ${counted(count("error"), "error")}, ${counted(count("warning"), "warning")}; dragledger inspect says which.`,
+  ];
 }
 
 function wheelbaseLine(survey: Survey): string {
@@ -65,15 +77,17 @@ function wheelbaseLine(survey: Survey): string {
   const reason =
     survey.wheels.length === 0
       ? "no wheels were found, so moments use the overall length; give a length if there are axles"
-      : `${survey.wheels.length} wheel parts make no two axles, so moments use the overall length; give a length if there are axles`;
+      : `${survey.wheels.length} wheel ${survey.wheels.length === 1 ? "part makes" : "parts make"} no two axles, so moments use the overall length; give a length if there are axles`;
   return `  wheelbase: none   # GUESS: ${reason}`;
 }
 
 function partLines(survey: Survey): string[] {
-  const wheels = [...new Set(survey.wheels.map((wheel) => wheel.part))];
+  const found = [...new Set(survey.wheels.map((wheel) => wheel.part))];
+  const fixed = survey.parts.map((part) => part.name).filter((name) => !found.includes(name));
+  // A name that holds * is a pattern, too; it must not make other parts turn.
+  const wheels = found.filter((name) => name !== "" && !fixed.some((other) => matchesPattern(name, other)));
   if (wheels.length === 0) return ["# No wheel parts were found: no part turns with the road."];
-  const others = survey.parts.map((part) => part.name).filter((name) => !wheels.includes(name));
-  const pattern = commonPattern(wheels, others);
+  const pattern = commonPattern(wheels, fixed);
   const match = pattern === null ? `[${wheels.map(quoted).join(", ")}]` : quoted(pattern);
   return [
     "parts:",
@@ -119,10 +133,10 @@ function quoted(text: string): string {
   );
 }
 
-/** A text for a comment: one line, without control characters, cut at 160. */
+/** A text for a comment: one line, without control characters, cut at 300. */
 function comment(text: string): string {
   const line = text.replace(/[\p{Cc}\p{Cf}\u2028\u2029]+/gu, " ").trim();
-  return line.length > 160 ? `${line.slice(0, 157)}...` : line;
+  return line.length > 300 ? `${line.slice(0, 297)}...` : line;
 }
 
 const significant = (value: number): string => String(Number(value.toPrecision(4)));

@@ -5,7 +5,7 @@ import { nameFault } from "./names.js";
 import { expectedQuantity, readQuantity } from "./quantity.js";
 
 /** Longest list that a study takes anywhere. */
-export const MOST_IN_LIST = 200;
+export const MOST_IN_LIST = 1000;
 
 /** What an editor shows about a key. */
 export function about(
