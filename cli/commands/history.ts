@@ -18,7 +18,7 @@ interface Options {
 }
 
 export const command: CommandModule<Options> = {
-  arguments: "<file or case...>",
+  arguments: "<file-or-case...>",
   description:
     "Read any table that the solver's function objects wrote, of any version: layout, columns, joined files, last values, mean and spread of the\n" +
     "last rows, and what is odd about it. A case folder shows every table below it. Exit 3 when a table holds an error such as zeros or nan.",

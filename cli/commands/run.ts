@@ -17,7 +17,7 @@ interface Options {
 }
 
 export const command: CommandModule<Options> = {
-  arguments: "<study.yaml or case...>",
+  arguments: "<study-or-case...>",
   description:
     "Mesh, check and solve cases, one after another or side by side, and stop each when its drag and lift are known well enough. A study is\n" +
     "prepared first if need be. Called again, it goes on where it ended; what is done is not done twice.",

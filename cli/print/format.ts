@@ -14,11 +14,11 @@ export function signed(value: number | null | undefined, decimals: number): stri
   return text === "-" || text.startsWith("-") || text === "inf" ? text : `+${text}`;
 }
 
-/** `0.3012 ± 0.0008` */
+/** `0.3012 ± 0.0008`; a question mark where the rows are too few for an interval */
 export function estimate(quantity: Estimate | null | undefined, decimals: number): string {
   if (!quantity) return "-";
   return quantity.halfWidth === null
-    ? fixed(quantity.value, decimals)
+    ? `${fixed(quantity.value, decimals)} ± ?`
     : `${fixed(quantity.value, decimals)} ± ${fixed(quantity.halfWidth, decimals)}`;
 }
 

@@ -34,7 +34,7 @@ export function printSettlings(print: Printer, cases: ConvergedCase[]): void {
         print.colours.bold,
       ),
     );
-    for (const segment of each.segments.filter((s) => s.used < s.rows || each.segments.length > 1))
+    for (const segment of each.segments.filter((s) => s.used < s.rows || !s.reason.startsWith("start of the run")))
       print.line(
         print.colours.dim(
           `  ${segment.file}: rows ${segment.used} of ${segment.rows} used, ${segment.from} to ${segment.to}: ${segment.reason}`,

@@ -17,12 +17,19 @@ describe("numbers for people", () => {
 
   test("an estimate has its half-width when it is known", () => {
     expect(estimate({ value: 0.30123, halfWidth: 0.0008 }, 4)).toBe("0.3012 ± 0.0008");
-    expect(estimate({ value: 0.30123, halfWidth: null }, 4)).toBe("0.3012");
+    expect(estimate({ value: 0.30123, halfWidth: null }, 4)).toBe("0.3012 ± ?");
     expect(estimate(null, 4)).toBe("-");
   });
 
   test("significant digits stay readable over many sizes", () => {
-    expect([0, 1234567, 12345678, 0.00012346, 0.000012341, -2.5].map((x) => significant(x))).toEqual(["0", "1235000", "1.235e+7", "0.0001235", "1.234e-5", "-2.5"]);
+    expect([0, 1234567, 12345678, 0.00012346, 0.000012341, -2.5].map((x) => significant(x))).toEqual([
+      "0",
+      "1235000",
+      "1.235e+7",
+      "0.0001235",
+      "1.234e-5",
+      "-2.5",
+    ]);
   });
 
   test("counts, durations and sizes", () => {

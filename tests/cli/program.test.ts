@@ -7,22 +7,39 @@ describe("help", () => {
     const { code, stdout, stderr } = await call("--help");
     expect(code).toBe(0);
     expect(stderr).toBe("");
-    for (const name of ["inspect", "new", "prepare", "run", "history", "converged", "ledger", "compare", "report", "environment", "demo"])
+    for (const name of [
+      "inspect",
+      "new",
+      "prepare",
+      "run",
+      "history",
+      "converged",
+      "ledger",
+      "compare",
+      "report",
+      "environment",
+      "demo",
+    ])
       expect(stdout).toMatch(new RegExp(`^  ${name}\\b`, "m"));
-    expect(stdout).toContain("Exit codes: 0 done; 1 a defect of the program; 2 wrong input or call; 3 done, but the answer is no; 4 a tool failed or is missing.");
+    expect(stdout).toContain(
+      "Exit codes: 0 done; 1 a defect of the program; 2 wrong input or call; 3 done, but the answer is no; 4 a tool failed or is missing.",
+    );
   });
 
   test("a call without arguments shows the same help", async () => {
     expect(await call()).toEqual(await call("--help"));
   });
 
-  test.each(commands.map(({ name }) => name))("'%s --help' has two examples of itself and the options every command takes", async (name) => {
-    const { code, stdout } = await call(name, "--help");
-    expect(code).toBe(0);
-    expect(stdout.match(new RegExp(`^  \\$ dragledger ${name}`, "gm"))?.length).toBe(2);
-    for (const option of ["--json", "--quiet", "--no-color", "--help"]) expect(stdout).toContain(option);
-    expect(await call("help", name)).toEqual({ code, stdout, stderr: "" });
-  });
+  test.each(commands.map(({ name }) => name))(
+    "'%s --help' has two examples of itself and the options every command takes",
+    async (name) => {
+      const { code, stdout } = await call(name, "--help");
+      expect(code).toBe(0);
+      expect(stdout.match(new RegExp(`^  \\$ dragledger ${name}`, "gm"))?.length).toBe(2);
+      for (const option of ["--json", "--quiet", "--no-color", "--help"]) expect(stdout).toContain(option);
+      expect(await call("help", name)).toEqual({ code, stdout, stderr: "" });
+    },
+  );
 });
 
 describe("a wrong call", () => {

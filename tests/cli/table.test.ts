@@ -14,12 +14,21 @@ describe("tables", () => {
   });
 
   test("CSV quotes what needs it and disarms what a spreadsheet would run (RFC 4180)", () => {
-    expect(csv(["part", "Cd"], [['a "b", c', 0.25], ["=1+1", null], ["-wing", Number.NaN]])).toBe(
-      'part,Cd\r\n"a ""b"", c",0.25\r\n\'=1+1,\r\n\'-wing,\r\n',
-    );
+    expect(
+      csv(
+        ["part", "Cd"],
+        [
+          ['a "b", c', 0.25],
+          ["=1+1", null],
+          ["-wing", Number.NaN],
+        ],
+      ),
+    ).toBe('part,Cd\r\n"a ""b"", c",0.25\r\n\'=1+1,\r\n\'-wing,\r\n');
   });
 
   test("Markdown escapes bars", () => {
-    expect(markdown([{ title: "part" }, { title: "Cd", align: "right" }], [["a|b", "0.1"]])).toBe("| part | Cd |\n| :-- | --: |\n| a\\|b | 0.1 |\n");
+    expect(markdown([{ title: "part" }, { title: "Cd", align: "right" }], [["a|b", "0.1"]])).toBe(
+      "| part | Cd |\n| :-- | --: |\n| a\\|b | 0.1 |\n",
+    );
   });
 });
