@@ -64,7 +64,7 @@ function sameValues(a: Float64Array, b: Float64Array): boolean {
 function holdsAll(whole: PartSeries, objects: PartSeries[]): boolean {
   const own = new Set(whole.patches ?? []);
   const others = objects.filter((each) => each !== whole);
-  return own.size > 0 && others.every((each) => each.patches !== null && each.patches.every((patch) => own.has(patch)));
+  return own.size > 0 && others.every((each) => each.patches?.every((patch) => own.has(patch)) === true);
 }
 
 function isSumOf(whole: PartSeries, parts: PartSeries[]): boolean {
