@@ -95,12 +95,15 @@ function partLines(survey: Survey): string[] {
   ];
 }
 
-/** The shortest pattern `start*` that matches all names and none of the others; null when there is none worth having. */
+/**
+ * A pattern `start*` that matches all names and none of the others; null when there is none that is safe: a start that does not
+ * speak of wheels (`front-*`) would take along parts that a later variant brings.
+ */
 function commonPattern(names: string[], others: string[]): string | null {
   if (names.length === 1) return null;
   let start = names[0]!;
   for (const name of names) while (!name.startsWith(start)) start = start.slice(0, -1);
-  if (start.length < 3 || start.includes("*")) return null;
+  if (!/wheel|tyre|tire/i.test(start) || start.includes("*")) return null;
   const pattern = `${start}*`;
   return others.some((other) => matchesPattern(pattern, other)) ? null : pattern;
 }

@@ -66,7 +66,7 @@ function valueFault(issue: z.core.$ZodIssue, document: unknown): Fault {
   if (entry === null) throw new Error(`study key ${keyText(path)} has no entry`);
   const name = `Key '${keyText(path)}'`;
   const value = valueAt(document, path);
-  const expects = typeof path.at(-1) === "number" ? `in the list ${expectedIn(entry)}` : entry.expects;
+  const expects = typeof path.at(-1) === "number" && !entry.quantity ? "a text" : entry.expects;
   const remedy = remedyFor(entry);
   if (value === undefined)
     return { path, at: "key", code: "study-missing-key", message: `${name} is missing; expected ${expects}.`, remedy };
@@ -81,11 +81,17 @@ function valueFault(issue: z.core.$ZodIssue, document: unknown): Fault {
       remedy: `Write ${lastWord(entry)}: ${entry.choices![0]}, or remove the key.`,
     };
   if (issue.code === "custom") return { path, at: "value", code: "study-value", message: `${name} ${issue.message}.`, remedy };
+  if ((typeof value === "number" || typeof value === "boolean") && !entry.quantity && !entry.choices)
+    return {
+      path,
+      at: "value",
+      code: "study-value",
+      message: `${name} is ${shownValue(value)}, which YAML reads as a ${typeof value}; expected ${expects}.`,
+      remedy: `Put it in quotes if it is meant: "${shownValue(value)}".`,
+    };
   const found = isEmpty(value) ? "is empty" : (tooMany(issue) ?? `is ${kindOf(value)}`);
   return { path, at: "value", code: "study-value", message: `${name} ${found}; expected ${expects}.`, remedy };
 }
-
-const expectedIn = (entry: StudyKey): string => (entry.quantity ? entry.expects : "a text");
 
 const isEmpty = (value: unknown): boolean => value === "" || (Array.isArray(value) && value.length === 0);
 

@@ -150,6 +150,12 @@ stop: { drag: 1 count, lift: 3 counts, confidence: 95 % }   # half-widths; 1 cou
     expect(rotatingParts(parseStudy(text, "/s/a.yaml").parts, ["wheel-arch", ...wheels])).toEqual(wheels);
   });
 
+  test("lists the wheels by name where what they share does not speak of wheels", () => {
+    const wheels = ["front-wheel", "front-spare"];
+    const text = draftStudy({ name: "a", files: ["a.stl"], survey: survey(["body", ...wheels], wheels) });
+    expect(text).toContain("  wheels: { match: [front-wheel, front-spare], rotating: true }");
+  });
+
   test("reads back whatever the names: files as given, and just the wheels turn", () => {
     const name = fc.oneof(
       fc.string({ unit: fc.constantFrom(..."wheel-rodyab*.:#'\"\\{}[],&!|>%@`~? \n\té字\u2028"), minLength: 1, maxLength: 12 }),

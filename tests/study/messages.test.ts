@@ -217,8 +217,12 @@ describe("messages about quantities, word for word", () => {
     expect(found.where).toMatch(new RegExp(`^nose\\.yaml:5:[0-9]+ \\(${key.replaceAll(".", "\\.")}\\)$`));
   });
 
-  test("the way out: the default, or an example", async () => {
+  test("the way out: quotes, the default, or an example", async () => {
     expect((await problem(`${least}mesh: { half: yes }\n`)).remedy).toBe("Correct it, or remove the key to have auto.");
+    expect(await problem(`study: true\n${speed}${variants}`)).toMatchObject({
+      message: "Key 'study' is true, which YAML reads as a boolean; expected a name of letters, digits, blanks and - _ . +.",
+      remedy: 'Put it in quotes if it is meant: "true".',
+    });
     expect((await problem(`${name}speed: 30 kg\n${variants}`)).remedy).toBe("Write, for example, speed: 30 m/s.");
     expect((await problem(`${least}mesh:\n`)).remedy).toBe("Write, for example, mesh: { cells: 1.5 million }, or remove the key.");
   });
@@ -243,7 +247,7 @@ describe("messages about variants, word for word", () => {
       message: `Key 'variants.blunt.files' is "blunt.stl"; expected a list of paths such as [geometry/body.stl, geometry/wheels.stl].`,
     });
     expect(await problem(`${name}${speed}variants:\n  blunt: { files: [3] }\n`)).toMatchObject({
-      message: "Key 'variants.blunt.files[0]' is 3; expected in the list a text.",
+      message: "Key 'variants.blunt.files[0]' is 3, which YAML reads as a number; expected a text.",
     });
   });
 
@@ -309,7 +313,7 @@ describe("messages about names, word for word", () => {
     ["''", `Key 'study' is "", which is empty.`],
     ["x".repeat(61), `Key 'study' is "${"x".repeat(56)}..., which has 61 characters; 60 is the most.`],
     ["車体", `Key 'study' is "車体", which has no letter a-z and no digit that a folder could be named by.`],
-    ["2024", "Key 'study' is 2024; expected a name of letters, digits, blanks and - _ . +."],
+    ["2024", "Key 'study' is 2024, which YAML reads as a number; expected a name of letters, digits, blanks and - _ . +."],
   ])("study: %s", async (text, message) => {
     expect(await problem(`study: ${text}\n${speed}${variants}`)).toMatchObject({ message, where: "nose.yaml:1:8 (study)" });
   });
