@@ -7,6 +7,8 @@ import type { Box, Vector3 } from "./vector.js";
 /** How a body and a plane across one axis of the file belong together. Mesh unit. */
 export interface Mirror {
   kind: "whole" | "half" | "none";
+  /** How the cut of a half looks; null for the others. */
+  cut: "open" | "lid" | null;
   /** Coordinate of the plane on that axis. */
   plane: number;
   /** whole and none: greatest distance of a mirrored vertex to the surface, over the sampled vertices; half: of the cut from its plane. */
@@ -21,19 +23,37 @@ const IN_PLANE = 1e-4;
 /** A cut is open over half the length at least, or closed by a lid of most of the side view. */
 const CUT_LENGTH = 0.5;
 const LID_SHARE = 0.7;
+const FLAT_SHARE = 0.5;
 
 /**
  * Whether the body is symmetrical about the plane half-way between its bounds on `axis` (0, 1, 2), or is one half of such a body,
- * cut by the plane at one of these bounds: the cut is open along half the body's greatest extent, or closed by a lid that fills most
- * of the side view. The grid, not chance, chooses the vertices that are tried: the result is the same every time.
+ * cut by the plane at one of these bounds: the cut is open along half the body's greatest extent, or the body is not symmetrical and
+ * the cut is closed by a lid that fills most of the side view, while the other side is not as flat (a truck's is). The grid, not
+ * chance, chooses the vertices that are tried: the result is the same every time.
  */
 export function mirrorOf(mesh: SurfaceMesh, bounds: Box, axis: number): Mirror {
   const length = Math.max(...bounds.max.map((value, k) => value - bounds.min[k]));
   const plane = (bounds.min[axis] + bounds.max[axis]) / 2;
-  if (!(length > 0)) return { kind: "none", plane, deviation: 0 };
+  if (!(length > 0)) return { kind: "none", cut: null, plane, deviation: 0 };
+  const cuts = [bounds.min[axis], bounds.max[axis]].map((at): Cut => cutAt(mesh, axis, at, IN_PLANE * length));
+  const open = cuts.filter((cut) => cut.openSpan >= CUT_LENGTH * length);
+  if (open.length === 1) return { kind: "half", cut: "open", plane: open[0].plane, deviation: open[0].deviation };
   const deviation = mirrorDistance(mesh, bounds, axis, plane, length);
-  if (deviation <= SAME * length) return { kind: "whole", plane, deviation };
-  return halfOf(mesh, bounds, axis, length) ?? { kind: "none", plane, deviation };
+  if (deviation <= SAME * length) return { kind: "whole", cut: null, plane, deviation };
+  const [lid, other] = cuts[0].lid > cuts[1].lid ? [0, 1] : [1, 0];
+  const isLid =
+    cuts[lid].lid > 0 &&
+    cuts[lid].lid >= LID_SHARE * sideArea(mesh, axis) &&
+    flatArea(mesh, axis, other) < FLAT_SHARE * cuts[lid].lid;
+  return isLid
+    ? { kind: "half", cut: "lid", plane: cuts[lid].plane, deviation: cuts[lid].deviation }
+    : { kind: "none", cut: null, plane, deviation };
+}
+
+function sideArea(mesh: SurfaceMesh, axis: number): number {
+  const direction: Vector3 = [0, 0, 0];
+  direction[axis] = 1;
+  return silhouette(mesh, direction).area;
 }
 
 function mirrorDistance(mesh: SurfaceMesh, bounds: Box, axis: number, plane: number, length: number): number {
@@ -78,26 +98,18 @@ function samples(vertices: Float32Array, [x0, y0, z0]: Vector3, length: number):
   }
 }
 
-function halfOf(mesh: SurfaceMesh, bounds: Box, axis: number, length: number): Mirror | null {
-  const sides = [bounds.min[axis], bounds.max[axis]].map((plane) => ({ plane, ...cutAt(mesh, axis, plane, IN_PLANE * length) }));
-  const open = sides.filter((side) => side.openSpan >= CUT_LENGTH * length);
-  if (open.length === 1) return { kind: "half", plane: open[0].plane, deviation: open[0].deviation };
-  const lids = sides.filter((side) => side.lid > 0);
-  if (lids.length !== 1) return null;
-  const direction: Vector3 = [0, 0, 0];
-  direction[axis] = 1;
-  return lids[0].lid >= LID_SHARE * silhouette(mesh, direction).area
-    ? { kind: "half", plane: lids[0].plane, deviation: lids[0].deviation }
-    : null;
+/** What lies in a plane across the axis. */
+interface Cut {
+  plane: number;
+  /** Diagonal of the box about the open edges. */
+  openSpan: number;
+  /** Area of the triangles. */
+  lid: number;
+  /** How far the open edges stray from the plane. */
+  deviation: number;
 }
 
-/** What lies in a plane: the diagonal of the box about the open edges, the area of the triangles, and how far both stray from it. */
-function cutAt(
-  { vertices, corners, ring }: SurfaceMesh,
-  axis: number,
-  plane: number,
-  tolerance: number,
-): { openSpan: number; lid: number; deviation: number } {
+function cutAt({ vertices, corners, ring }: SurfaceMesh, axis: number, plane: number, tolerance: number): Cut {
   const off = (h: number): number => Math.abs(vertices[3 * corners[h] + axis] - plane);
   const low: Vector3 = [Infinity, Infinity, Infinity];
   const high: Vector3 = [-Infinity, -Infinity, -Infinity];
@@ -115,12 +127,25 @@ function cutAt(
           high[k] = Math.max(high[k], vertices[3 * corners[end] + k]);
         }
       }
-    if (h % 3 === 0 && off(h + 2) <= tolerance) lid += areaAcross(vertices, corners, h, axis);
+    if (h % 3 === 0 && off(h + 2) <= tolerance) lid += Math.abs(areaAcross(vertices, corners, h, axis));
   }
-  return { openSpan: low[0] > high[0] ? 0 : Math.hypot(...low.map((value, k) => high[k] - value)), lid, deviation };
+  return { plane, openSpan: low[0] > high[0] ? 0 : Math.hypot(...low.map((value, k) => high[k] - value)), lid, deviation };
 }
 
-/** Area of the triangle of half-edge `h`, seen along `axis`. */
+/** Area of the triangles that lie across the axis, whatever plane they are in, and face its low (0) or high (1) end. */
+function flatArea({ vertices, corners }: SurfaceMesh, axis: number, end: number): number {
+  let sum = 0;
+  for (let h = 0; h < corners.length; h += 3) {
+    const [a, b, c] = [0, 1, 2].map((k) => vertices[3 * corners[h + k] + axis]);
+    const area = areaAcross(vertices, corners, h, axis);
+    const facing = end === 1 ? area > 0 : area < 0;
+    // A quarter of a degree over the triangle's own size is flat.
+    if (facing && Math.max(a, b, c) - Math.min(a, b, c) < 0.005 * Math.sqrt(Math.abs(area))) sum += Math.abs(area);
+  }
+  return sum;
+}
+
+/** Area of the triangle of half-edge `h`, seen along `axis`; negative where it faces the axis' low end. */
 function areaAcross(vertices: Float32Array, corners: Uint32Array, h: number, axis: number): number {
   const u = (axis + 1) % 3;
   const v = (axis + 2) % 3;
@@ -128,5 +153,5 @@ function areaAcross(vertices: Float32Array, corners: Uint32Array, h: number, axi
   const cross =
     (vertices[b + u] - vertices[a + u]) * (vertices[c + v] - vertices[a + v]) -
     (vertices[b + v] - vertices[a + v]) * (vertices[c + u] - vertices[a + u]);
-  return Math.abs(cross) / 2;
+  return cross / 2;
 }

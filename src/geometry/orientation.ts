@@ -11,8 +11,8 @@ export interface AxesEvidence {
   measures: Measures[];
   /** Part numbers of wheels. */
   wheels: number[];
-  /** Whether the body is symmetrical about, or cut at, a plane across this axis (0, 1, 2). Asked only where it matters. */
-  mirrored: (axis: number) => boolean;
+  /** Whether the body is symmetrical about, or cut open by, a plane across this axis (0, 1, 2). Asked only where it matters. */
+  mirrored: (axis: number) => "whole" | "cut" | "no";
 }
 
 export interface AxesGuess {
@@ -98,9 +98,14 @@ function lateralLine(evidence: AxesEvidence, free: number[], travelIsFree: boole
   // A body is not as wide as it is long: the longest free axis is out, unless it has been taken out already.
   const byLength = free.slice().sort((p, q) => extent(bounds, q) - extent(bounds, p));
   const candidates = travelIsFree && byLength.length === 3 ? byLength.slice(1) : byLength;
-  const mirrored = candidates.filter(evidence.mirrored);
+  const kinds = candidates.map(evidence.mirrored);
+  const mirrored = candidates.filter((_, k) => kinds[k] === "whole");
   if (mirrored.length === 1)
     return { axis: mirrored[0], reason: `the two sides are alike across ${LETTERS[mirrored[0]]}`, certain: true };
+  // A floor that is missing looks like a cut as well, so a cut counts only where nothing is alike.
+  const cut = candidates.filter((_, k) => kinds[k] === "cut");
+  if (mirrored.length === 0 && cut.length === 1)
+    return { axis: cut[0], reason: `the body is a half, cut across ${LETTERS[cut[0]]}`, certain: true };
   if (candidates.includes(1) && candidates.includes(2) && mirrored.length !== 0)
     return { axis: 1, reason: "nothing tells width from height, z was taken as the vertical", certain: false };
   const [wide, low] = candidates;

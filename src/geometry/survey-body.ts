@@ -45,7 +45,7 @@ export function surveyBody(set: TriangleSet, asked: Partial<Orientation> & { whe
       names: parts.map((part) => part.name),
       measures: inUnit.groups,
       wheels: wheelParts,
-      mirrored: (axis) => mirror(axis).kind !== "none",
+      mirrored: (axis) => (mirror(axis).kind === "whole" ? "whole" : mirror(axis).cut === "open" ? "cut" : "no"),
     },
     asked,
   );

@@ -1,4 +1,5 @@
-import { type Circle, outerCircle } from "./circle.js";
+import { outerCircle } from "./circle.js";
+import { type Frame, revolutionAxis } from "./revolution-axis.js";
 import type { SurfaceMesh } from "./surface-mesh.js";
 import type { Vector3 } from "./vector.js";
 import { type WheelPiece, wheelPieces } from "./wheel-pieces.js";
@@ -17,8 +18,9 @@ export interface WheelFit {
   width: number;
   /** Root mean square deviation of the outermost ring from the circle. */
   fitError: number;
-  /** Share of the full circle that the ring covers. */
+  /** Share of the full circle that the ring covers, and how many corners it has. */
   covered: number;
+  corners: number;
 }
 
 export interface VehicleAxes {
@@ -27,25 +29,24 @@ export interface VehicleAxes {
   up: Vector3;
 }
 
-/** Sections across the width that are looked at for the tilt of the axis. */
-const SECTIONS = 15;
-/** A section belongs to the tread when it is a circle this good and nearly as large as the largest. */
-const ROUND = 0.02;
-const NEAR_LARGEST = 0.8;
 const NO_WHEEL = 0.03;
 const LEAST_COVERED = 0.66;
-/** Camber and toe stay below this slope (8 degrees); more comes from sections that do not belong together. */
+/** Fewer corners on the outermost ring make a box or a bolt, not a wheel. */
+const LEAST_CORNERS = 8;
+/** Least gain in roundness, in radii, that makes a tilt credible: a twentieth of a degree on a usual wheel. */
+const ROUNDER = 3e-5;
+/** Camber and toe stay below this slope (8 degrees). */
 const STEEPEST = 0.14;
 
 /**
  * Fits an axis, a centre and a radius to every wheel in the given parts. A part may hold several (left and right, or all four): its
  * connected pieces are put together where their boxes overlap.
  *
- * The axis begins as the vehicle's lateral direction. Sections across it give circles through their outermost points; the line
- * through the centres of those that are round is the next axis, until it stands still. Radius and centre come from the outermost
- * ring seen along the axis. Flats and bulges where the tyre meets the ground do not count (see `outerCircle`).
+ * The axis begins as the vehicle's lateral direction and is tilted to where the normals of the tread meet (see `revolutionAxis`), if
+ * the wheel is clearly rounder for it. Radius and centre come from the outermost ring seen along the axis. Flats and bulges where the
+ * tyre meets the ground do not count (see `outerCircle`).
  *
- * `fit` is null where a piece is no wheel: not round within 3 %, or less than two thirds of a circle.
+ * `fit` is null where a piece is no wheel: not round within 3 %, less than two thirds of a circle, or of fewer than eight corners.
  */
 export function fitWheels(
   mesh: SurfaceMesh,
@@ -61,19 +62,18 @@ export function fitWheels(
 }
 
 function fitWheel(piece: WheelPiece, part: number, axes: VehicleAxes): WheelFit | null {
-  const straight = fitAbout(piece, part, axes.right, axes.up);
-  if (straight === null) return null;
-  let axis = axes.right;
-  for (let round = 0; round < 8; round++) {
-    const next = tiltedAxis(piece, axis, axes.up);
-    const turned = Math.hypot(next[0] - axis[0], next[1] - axis[1], next[2] - axis[2]);
-    axis = next;
-    if (turned < 1e-6) break;
+  let best = fitAbout(piece, part, axes.right, axes.up);
+  if (best === null) return null;
+  for (let round = 0; round < 4; round++) {
+    const frame = frameAbout(best.axis, axes.up);
+    const axis = revolutionAxis(piece, frame, { x: dot(best.centre, frame.u), y: dot(best.centre, frame.v) }, best.radius);
+    if (Math.hypot(...cross(axis, axes.right)) > STEEPEST) break;
+    const next: WheelFit | null = fitAbout(piece, part, axis, axes.up);
+    // Spokes, lugs and coarse facets can make a tilt up: it is believed only when the ring is clearly rounder for it.
+    if (next === null || next.fitError > 0.8 * best.fitError || best.fitError - next.fitError < ROUNDER * best.radius) break;
+    best = next;
   }
-  const tilted = fitAbout(piece, part, axis, axes.up);
-  // A tilt is believed only when the ring is clearly rounder for it: a balloon tyre or spokes can make one up.
-  const best = tilted !== null && tilted.fitError < 0.8 * straight.fitError ? tilted : straight;
-  return best.fitError <= NO_WHEEL * best.radius && best.covered >= LEAST_COVERED ? best : null;
+  return best.fitError <= NO_WHEEL * best.radius && best.covered >= LEAST_COVERED && best.corners >= LEAST_CORNERS ? best : null;
 }
 
 function fitAbout(piece: WheelPiece, part: number, axis: Vector3, up: Vector3): WheelFit | null {
@@ -88,39 +88,21 @@ function fitAbout(piece: WheelPiece, part: number, axis: Vector3, up: Vector3): 
   if (circle === null) return null;
   const along = (low + high) / 2;
   const centre = [0, 1, 2].map((k) => circle.x * frame.u[k] + circle.y * frame.v[k] + along * axis[k]) as Vector3;
-  return { part, centre, axis, radius: circle.reach, width: high - low, fitError: circle.deviation, covered: circle.covered };
-}
-
-interface Frame {
-  u: Vector3;
-  v: Vector3;
-  w: Vector3;
+  return {
+    part,
+    centre,
+    axis,
+    radius: circle.reach,
+    width: high - low,
+    fitError: circle.deviation,
+    covered: circle.covered,
+    corners: circle.kept,
+  };
 }
 
 function frameAbout(w: Vector3, up: Vector3): Frame {
   const u = normalised(cross(up, w));
   return { u, v: cross(w, u), w };
-}
-
-/** The axis through the centres of the round sections; the given one where fewer than two are round. */
-function tiltedAxis(piece: WheelPiece, axis: Vector3, up: Vector3): Vector3 {
-  const frame = frameAbout(axis, up);
-  const tread: { at: number; circle: Circle }[] = [];
-  for (const { at, points } of sections(piece, frame)) {
-    const circle = outerCircle(points);
-    if (circle !== null && circle.deviation < ROUND * circle.radius && circle.covered > LEAST_COVERED) tread.push({ at, circle });
-  }
-  const largest = Math.max(...tread.map(({ circle }) => circle.radius));
-  const kept = tread.filter(({ circle }) => circle.radius > NEAR_LARGEST * largest);
-  if (kept.length < 2) return axis;
-  const mean = (value: (item: { at: number; circle: Circle }) => number): number =>
-    kept.reduce((sum, item) => sum + value(item), 0) / kept.length;
-  const middle = mean((item) => item.at);
-  const spread = mean((item) => (item.at - middle) ** 2);
-  const slopeX = mean((item) => (item.at - middle) * item.circle.x) / spread;
-  const slopeY = mean((item) => (item.at - middle) * item.circle.y) / spread;
-  if (Math.hypot(slopeX, slopeY) > STEEPEST) return axis;
-  return normalised([0, 1, 2].map((k) => axis[k] + slopeX * frame.u[k] + slopeY * frame.v[k]) as Vector3);
 }
 
 /** The piece's corners in the frame (3 per vertex that a triangle uses: across, up, along) and their range along the axis. */
@@ -143,35 +125,6 @@ function seenAlong({ vertices, corners }: WheelPiece, { u, v, w }: Frame): { poi
   return { points, low, high };
 }
 
-/** Where the triangles' edges cross evenly spaced planes across the axis: 2 per crossing. */
-function sections({ vertices, corners }: WheelPiece, { u, v, w }: Frame): { at: number; points: Float64Array }[] {
-  const along = new Float64Array(vertices.length / 3);
-  for (let k = 0; k < along.length; k++) along[k] = dotAt(vertices, 3 * k, w);
-  let low = Infinity;
-  let high = -Infinity;
-  for (const vertex of corners) {
-    low = Math.min(low, along[vertex]);
-    high = Math.max(high, along[vertex]);
-  }
-  const step = (high - low) / SECTIONS;
-  const found: number[][] = Array.from({ length: SECTIONS }, () => []);
-  // The section of a height: planes lie half a step in from either side.
-  const index = (height: number): number => Math.ceil((height - low) / step - 0.5);
-  for (let h = 0; step > 0 && h < corners.length; h++) {
-    const a = corners[h];
-    const b = corners[h % 3 === 2 ? h - 2 : h + 1];
-    const first = Math.max(0, index(Math.min(along[a], along[b])));
-    const last = Math.min(SECTIONS, index(Math.max(along[a], along[b])));
-    for (let k = first; k < last; k++) {
-      const share = (low + (k + 0.5) * step - along[a]) / (along[b] - along[a]);
-      const x = dotAt(vertices, 3 * a, u);
-      const y = dotAt(vertices, 3 * a, v);
-      found[k].push(x + share * (dotAt(vertices, 3 * b, u) - x), y + share * (dotAt(vertices, 3 * b, v) - y));
-    }
-  }
-  return found.map((points, k) => ({ at: low + (k + 0.5) * step, points: Float64Array.from(points) }));
-}
-
 function middleOf({ vertices, corners }: WheelPiece): Vector3 {
   const low: Vector3 = [Infinity, Infinity, Infinity];
   const high: Vector3 = [-Infinity, -Infinity, -Infinity];
@@ -186,6 +139,8 @@ function middleOf({ vertices, corners }: WheelPiece): Vector3 {
 
 const dotAt = (vertices: Float64Array, at: number, a: Vector3): number =>
   vertices[at] * a[0] + vertices[at + 1] * a[1] + vertices[at + 2] * a[2];
+
+const dot = (a: Vector3, b: Vector3): number => a[0] * b[0] + a[1] * b[1] + a[2] * b[2];
 
 const cross = (a: Vector3, b: Vector3): Vector3 => [
   a[1] * b[2] - a[2] * b[1],
