@@ -19,7 +19,13 @@ export function estimate(quantity: Estimate | null | undefined, decimals: number
   if (!quantity) return "-";
   return quantity.halfWidth === null
     ? `${fixed(quantity.value, decimals)} ± ?`
-    : `${fixed(quantity.value, decimals)} ± ${fixed(quantity.halfWidth, decimals)}`;
+    : `${fixed(quantity.value, decimals)} ± ${halfWidthText(quantity.halfWidth, decimals)}`;
+}
+
+/** A half-width that is there but rounds to zero is said to be below the last digit. */
+function halfWidthText(halfWidth: number, decimals: number): string {
+  const text = fixed(halfWidth, decimals);
+  return halfWidth > 0 && Number(text) === 0 ? `<${(10 ** -decimals).toFixed(decimals)}` : text;
 }
 
 /** Four significant digits for anything, from 1e-6 to 1e9, without exponent where that stays short. */

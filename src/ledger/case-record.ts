@@ -13,6 +13,7 @@ import type { Reference } from "./ledger.js";
 import { type Directions, directionsOf, type PartSeries, type RunReference, seriesOf } from "./part-series.js";
 import { type FileReference, type ReferenceOverrides, referenceOf } from "./reference.js";
 import { type WholeAndParts, wholeAndParts } from "./whole-and-parts.js";
+import { densityFromTables } from "./written-density.js";
 
 export type { ReferenceOverrides } from "./reference.js";
 
@@ -52,13 +53,14 @@ export async function readCaseRecord(path: string, options: ReferenceOverrides =
         ? "Run it first: dragledger run."
         : "Give a case whose postProcessing folder holds the output of a forces or forceCoeffs object.",
     });
-  const reference = referenceOf(card, fileReference(objects, dictionaries), options, path);
   const { axes, findings } = directionsFor(card, objects);
+  const inferred = card ? null : densityFromTables(objects, axes);
+  const reference = referenceOf(card, fileReference(objects, dictionaries, inferred), options, path);
   requireReference(objects, reference, path);
   const run: RunReference = {
     reference,
     axes,
-    writtenDensity: card?.reference.density ?? dictionaries.density ?? reference.density,
+    writtenDensity: card?.reference.density ?? inferred ?? dictionaries.density ?? reference.density,
   };
   const found = card ? ownParts(card, objects, run, path) : foreignParts(objects, run, path);
   if (!card && dictionaries.symmetryPlane && options.half === undefined)
@@ -87,7 +89,7 @@ export async function readCaseRecord(path: string, options: ReferenceOverrides =
   };
 }
 
-function fileReference(objects: ForceObject[], { density }: CaseDictionaries): FileReference {
+function fileReference(objects: ForceObject[], { density }: CaseDictionaries, inferred: number | null): FileReference {
   const table = objects.find((object) => object.coefficients)?.coefficients;
   return {
     area: table?.header.area,
@@ -95,8 +97,8 @@ function fileReference(objects: ForceObject[], { density }: CaseDictionaries): F
     speed: table?.header.speed,
     centre: table?.header.centre ?? objects.find((object) => object.moments?.centre)?.moments?.centre ?? undefined,
     header: table ? `header of ${table.file}` : "header of the moment table",
-    density,
-    densitySource: "rhoInf in system/controlDict",
+    density: inferred ?? density,
+    densitySource: inferred === null ? "rhoInf in system/controlDict" : "ratio of a force table to a coefficient table",
   };
 }
 

@@ -10,24 +10,24 @@ export interface WholeAndParts {
 /** Agreement of a sum with the whole at which the objects count as its parts: far above print precision, far below any real part. */
 const sameSum = 1e-4;
 
+/** Names that people give to the object over all of the body. */
+const wholeName = /(^|[^a-z])(total|whole|all|body|vehicle|car)([^a-z]|$)/i;
+
 /**
  * Which of the recorded objects is the whole vehicle, when no run card says it: the one whose patches hold all others', else the one
- * whose values are the sum of all others', else the only one, else the sum of all (with a finding). Objects that record the same patches
- * or the same values twice count once.
+ * whose values are the sum of all others', else the one that is called so, else the only one, else the sum of all (with a finding). Where
+ * the others do not make up the whole, what is left is a part called `rest`. Objects that record the same patches or values twice count once.
  */
 export function wholeAndParts(recorded: PartSeries[]): WholeAndParts {
   const objects = withoutTwins(recorded);
   if (objects.length === 1) return { whole: objects[0]!, parts: [], findings: [] };
+  const others = (whole: PartSeries) => objects.filter((each) => each !== whole);
+  const bySum = objects.find((each) => isSumOf(each, others(each)));
+  if (bySum) return { whole: bySum, parts: others(bySum), findings: [] };
   const byPatches = objects.find((each) => holdsAll(each, objects));
-  const bySum =
-    byPatches ??
-    objects.find((each) =>
-      isSumOf(
-        each,
-        objects.filter((other) => other !== each),
-      ),
-    );
-  if (bySum) return { whole: bySum, parts: objects.filter((each) => each !== bySum), findings: [] };
+  const named = objects.filter((each) => wholeName.test(each.name.replaceAll("_", " ").replace(/([a-z])([A-Z])/g, "$1 $2")));
+  const whole = byPatches ?? (named.length === 1 ? named[0]! : null);
+  if (whole) return withRest(whole, others(whole), byPatches !== undefined);
   return {
     whole: sumOf(objects),
     parts: objects,
@@ -37,6 +37,35 @@ export function wholeAndParts(recorded: PartSeries[]): WholeAndParts {
         "warning",
         `None of the ${objects.length} force objects is the whole of the others: the whole is taken as their sum, which counts a patch twice if two of them share it.`,
         "Record one force object over all of the body.",
+      ),
+    ],
+  };
+}
+
+function withRest(whole: PartSeries, parts: PartSeries[], known: boolean): WholeAndParts {
+  const sum = sumOf(parts);
+  const minus = (a: Float64Array | null, b: Float64Array | null) => a && b && a.map((value, row) => value - b[row]!);
+  const rest: PartSeries = {
+    name: "rest",
+    patches: null,
+    time: whole.time,
+    cd: minus(whole.cd, sum.cd)!,
+    cl: minus(whole.cl, sum.cl)!,
+    cs: minus(whole.cs, sum.cs),
+    cm: minus(whole.cm, sum.cm),
+    cdPressure: minus(whole.cdPressure, sum.cdPressure),
+    cdFriction: minus(whole.cdFriction, sum.cdFriction),
+  };
+  const why = known ? "it holds the patches of all others" : "its name says so";
+  return {
+    whole,
+    parts: [...parts, rest],
+    findings: [
+      finding(
+        "rest-not-recorded",
+        "warning",
+        `${whole.name} is taken as the whole (${why}); the other objects do not add up to it, and what is left is the part called rest.`,
+        known ? "Record the missing patches as parts of their own." : "If it is not the whole, leave its table out.",
       ),
     ],
   };
