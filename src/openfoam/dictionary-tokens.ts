@@ -13,6 +13,12 @@ export interface DictionaryToken {
 const punctuation = new Set(["{", "}", "(", ")", "[", "]", ";"]);
 const decimal = /^[+-]?(?:\d+\.?\d*|\.\d+)(?:[eE][+-]?\d+)?$/;
 
+const newline = 10;
+/** Every control character counts as a blank. */
+const isBlank = (code: number): boolean => code <= 32 || code === 0xa0;
+/** What ends a word, besides blanks and brackets. */
+const endsWord = new Set([...'";{}[]'].map((character) => character.charCodeAt(0)));
+
 /** Splits a dictionary into tokens; comments are passed over. */
 export function tokensOf(text: string, name: string): DictionaryToken[] {
   const tokens: DictionaryToken[] = [];
@@ -29,7 +35,7 @@ export function tokensOf(text: string, name: string): DictionaryToken[] {
       remedy: "Correct the dictionary; the solver would stop at the same place.",
     });
   const countLines = (from: number, to: number): void => {
-    for (let each = text.indexOf("\n", from); each >= 0 && each < to; each = text.indexOf("\n", each + 1)) line += 1;
+    for (let each = from; each < to; each += 1) if (text.charCodeAt(each) === newline) line += 1;
   };
 
   while (at < text.length) {
@@ -37,7 +43,7 @@ export function tokensOf(text: string, name: string): DictionaryToken[] {
     if (character === "\n") {
       line += 1;
       at += 1;
-    } else if (/\s/.test(character)) at += 1;
+    } else if (isBlank(text.charCodeAt(at))) at += 1;
     else if (text.startsWith("//", at)) {
       const end = text.indexOf("\n", at);
       at = end < 0 ? text.length : end;
@@ -100,14 +106,15 @@ function wordEnd(text: string, start: number): number {
     const character = text[at]!;
     if (character === "(") {
       // A list with its count in front: `3(1 2 3)`.
-      if (decimal.test(text.slice(start, at))) break;
+      if (round === 0 && at - start < 25 && decimal.test(text.slice(start, at))) break;
       round += 1;
     } else if (character === ")") {
       if (round === 0) break;
       round -= 1;
     } else if (character === "{" && text[at - 1] === "$") curly += 1;
     else if (character === "}" && curly > 0) curly -= 1;
-    else if (/[\s;"{}[\]]/.test(character) || text.startsWith("//", at) || text.startsWith("/*", at)) break;
+    else if (isBlank(text.charCodeAt(at)) || endsWord.has(text.charCodeAt(at))) break;
+    else if (character === "/" && (text[at + 1] === "/" || text[at + 1] === "*")) break;
   }
   return Math.max(at, start + 1);
 }

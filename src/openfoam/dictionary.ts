@@ -35,7 +35,7 @@ export interface Dictionary {
 /** Deeper nesting is an attack, not a case. */
 const deepest = 100;
 /** Values that `$name` may copy in one file; a few lines could otherwise grow without bound. */
-const mostCopied = 1_000_000;
+const mostCopied = 200_000;
 /** Boundary files of thousands of patches stay far below. */
 const mostCharacters = 64 * 1024 * 1024;
 
@@ -208,14 +208,16 @@ class Parser {
   }
 
   /** A value of its own, so that later merging does not reach the one it came from. */
-  private copy(value: DictionaryValue): DictionaryValue {
+  private copy(value: DictionaryValue, depth = 0): DictionaryValue {
     this.copied += 1;
     if (this.copied > mostCopied) throw this.broken(`$ references copy more than ${mostCopied} values`);
+    this.guard(depth);
     if (typeof value === "number") return value;
-    if (value.kind === "list") return { kind: "list", items: value.items.map((item) => this.copy(item)) };
+    const inside = (values: DictionaryValue[]): DictionaryValue[] => values.map((each) => this.copy(each, depth + 1));
+    if (value.kind === "list") return { kind: "list", items: inside(value.items) };
     if (value.kind !== "dictionary") return { ...value };
-    const entries = new Map([...value.entries].map(([key, values]) => [key, values.map((each) => this.copy(each))]));
-    return { ...value, entries, patterns: new Set(value.patterns), loose: value.loose.map((each) => this.copy(each)) };
+    const entries = new Map([...value.entries].map(([key, values]) => [key, inside(values)]));
+    return { ...value, entries, patterns: new Set(value.patterns), loose: inside(value.loose), directives: [...value.directives] };
   }
 
   private guard(depth: number): void {

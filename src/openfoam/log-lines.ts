@@ -1,12 +1,14 @@
 import { textBytes } from "./table-bytes.js";
 
 const newline = 10;
+/** No line of the solver says more; longer ones (a progress bar, a damaged file) are cut. */
+const longest = 4000;
 /** Colour codes of terminals, which some programs write into their logs. */
 // biome-ignore lint/suspicious/noControlCharactersInRegex: the escape character is what is looked for
 const colours = /\u001b\[[0-9;?]*[A-Za-z]/g;
 
 export interface LogLine {
-  /** without colour codes, carriage returns, rank prefix and trailing blanks */
+  /** without colour codes, carriage returns, rank prefix and trailing blanks; its first 4000 bytes */
   text: string;
   /** from 1 */
   number: number;
@@ -25,7 +27,7 @@ export function* logLines(log: Uint8Array | string, name: string): Generator<Log
     const found = buffer.indexOf(newline, at);
     const end = found < 0 ? buffer.length : found;
     number += 1;
-    let text = buffer.toString("utf8", at, end);
+    let text = buffer.toString("utf8", at, Math.min(end, at + longest));
     if (text.includes("\u001b")) text = text.replace(colours, "");
     // A carriage return overwrites what stood before it on the screen.
     text = text.trimEnd();

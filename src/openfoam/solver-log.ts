@@ -34,7 +34,7 @@ export interface SolverLog {
 }
 
 const banner = /OpenFOAM: The Open Source CFD Toolbox/;
-const solve = /Solving for ([^,]+), Initial residual = (\S+), Final residual = (\S+), No Iterations/;
+const solve = /^Solving for ([^,]{1,200}), Initial residual = (\S+), Final residual = (\S+), No Iterations/;
 const clock = /^ExecutionTime = (\S+)(?: s)?\s+ClockTime = (\S+)/;
 const trapLine = /sigFpe::sigHandler|^Floating point exception(?!.*trapping)|Signal: Floating point exception/;
 
@@ -95,7 +95,7 @@ class Run {
   }
 
   private solved(text: string): void {
-    const found = solve.exec(text);
+    const found = solve.exec(text.slice(text.indexOf("Solving for ")));
     if (found === null) return;
     const [initial, final] = [numberOf(found[2]!) ?? Number.NaN, numberOf(found[3]!) ?? Number.NaN];
     if (!Number.isFinite(initial) || !Number.isFinite(final)) this.notFinite = true;
@@ -124,12 +124,15 @@ class Run {
       this.convergedAfter = Number(/converged in (\d+)/.exec(text)?.[1] ?? Number.NaN);
     else if (text.includes("Cannot find any patch or group names matching")) this.unmatched.add(text.split("matching")[1]!.trim());
     else if (text.includes("Unknown function type")) this.unknownTypes.add(/Unknown function type (\S+)/.exec(text)?.[1] ?? "?");
-    else if (/negative.*(?:cell )?volume/i.test(text)) this.negativeVolumes += 1;
+    else if (/negative/i.test(text) && /volume/i.test(text)) this.negativeVolumes += 1;
     else if (trapLine.test(text)) this.trapped = true;
     else if (this.trapped && this.trapPlace === "" && /^#\d+\s+Foam::/.test(text)) {
-      this.trapPlace = /^#\d+\s+((?:[\w~]+(?:<[^(]*>)?::)*[\w~]+)/.exec(text)?.[1] ?? "";
+      this.trapPlace = text
+        .split("(")[0]!
+        .replace(/^#\d+\s+/, "")
+        .slice(0, 200);
     } else if (this.ending === null) {
-      for (const { pattern, reason } of endings) if (pattern.test(text)) this.ending = reason;
+      this.ending = endings.find(({ pattern }) => pattern.test(text))?.reason ?? null;
     }
   }
 }

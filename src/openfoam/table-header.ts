@@ -12,7 +12,6 @@ export interface TableHeader {
 }
 
 const columnLine = /^#\s*Time(?:\s+(.*))?$/;
-const valueLine = /^#\s*([^:]+?)\s*:\s*(.*)$/;
 
 /** Reads comment lines (each starting with `#`, without line end). The last `# Time` line names the columns. */
 export function parseHeader(lines: readonly string[]): TableHeader {
@@ -24,8 +23,9 @@ export function parseHeader(lines: readonly string[]): TableHeader {
       header.columnText = columns[1] ?? "";
       continue;
     }
-    const value = valueLine.exec(text);
-    if (value !== null) header.values[value[1]!] = headerValue(value[2]!);
+    const colon = text.indexOf(":");
+    const key = text.slice(1, Math.max(1, colon)).trim();
+    if (key !== "") header.values[key] = headerValue(text.slice(colon + 1).trim());
     else if (header.title === "" && header.columnText === null) header.title = text.replace(/^#\s*/, "");
   }
   return header;
@@ -48,7 +48,8 @@ function headerValue(text: string): number | string | Vector3 {
 export function columnNames(columnText: string): { names: string[]; twice: boolean } {
   const names: string[] = [];
   for (const [cell] of columnText.matchAll(/(?:[^\s()]+|\([^()]*\))+/g)) {
-    const vector = /^([^()]*)\(([^()]*\s[^()]*)\)$/.exec(cell);
+    const inside = /^([^()]*)\(([^()]*)\)$/.exec(cell);
+    const vector = inside !== null && /\s/.test(inside[2]!.trim()) ? inside : null;
     const glued = /^([^()]+\(f\))([^()]+\(r\))$/.exec(cell);
     if (vector !== null) for (const inner of vector[2]!.trim().split(/\s+/)) names.push(vector[1]! + inner);
     else if (glued !== null) names.push(glued[1]!, glued[2]!);

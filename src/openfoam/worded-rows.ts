@@ -193,24 +193,24 @@ function solverGroups(cells: readonly string[]): Group[] | null {
 
 /** The only order-keeping way to put the shorter list of groups into the longer one so that shapes agree; null when there is none or more. */
 function placing(groups: readonly Group[], named: readonly NamedGroup[]): [NamedGroup, Group][] | null {
-  const few = Math.min(groups.length, named.length);
-  let found: [NamedGroup, Group][] | null = null;
-  let ways = 0;
-  const extend = (group: number, name: number, pairs: [NamedGroup, Group][]): void => {
-    if (pairs.length === few) {
-      ways += 1;
-      found = pairs;
-      return;
+  const [few, many] = groups.length <= named.length ? [groups, named] : [named, groups];
+  // ways[i][j]: ways (0, 1, or 2 for more) to place the few from i on into the many from j on.
+  const ways = Array.from({ length: few.length + 1 }, () => new Uint8Array(many.length + 1));
+  ways[few.length]!.fill(1);
+  const alike = (i: number, j: number): boolean => few[i]!.numbers.length === many[j]!.numbers.length;
+  for (let i = few.length - 1; i >= 0; i -= 1) {
+    for (let j = many.length - 1; j >= 0; j -= 1) {
+      ways[i]![j] = Math.min(2, ways[i]![j + 1]! + (alike(i, j) ? ways[i + 1]![j + 1]! : 0));
     }
-    if (ways > 1 || group === groups.length || name === named.length) return;
-    if (groups[group]!.numbers.length === named[name]!.numbers.length) {
-      extend(group + 1, name + 1, [...pairs, [named[name]!, groups[group]!]]);
-    }
-    if (groups.length - group > few - pairs.length) extend(group + 1, name, pairs);
-    if (named.length - name > few - pairs.length) extend(group, name + 1, pairs);
-  };
-  extend(0, 0, []);
-  return ways === 1 ? found : null;
+  }
+  if (ways[0]![0] !== 1) return null;
+  const pairs: [NamedGroup, Group][] = [];
+  for (let i = 0, j = 0; i < few.length; j += 1) {
+    if (!alike(i, j) || ways[i + 1]![j + 1] === 0) continue;
+    pairs.push(few === groups ? [many[j] as NamedGroup, few[i] as Group] : [few[i] as NamedGroup, many[j] as Group]);
+    i += 1;
+  }
+  return pairs;
 }
 
 /**
