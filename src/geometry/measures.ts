@@ -31,15 +31,15 @@ export function measures(
 ): { whole: Measures; groups: Measures[] } {
   const { vertices, corners } = mesh;
   const triangles = corners.length / 3;
-  const boxes = boundsOf(vertices, corners, groupOf, groups);
+  const { boxes, largest } = looked(vertices, corners, groupOf, groups);
   const whole = joined(boxes);
   const middle = middleOf(whole);
   const [x0, y0, z0] = middle;
   const reach = Math.max(whole.max[0] - whole.min[0], whole.max[1] - whole.min[1], whole.max[2] - whole.min[2]);
-  // Quantities of one dimension share a shifter: with two edges of at most √3 · reach, no term is above the bound.
-  const vectors = new SteadySums(4 * (groups + 1), 2 * reach ** 2, 4 * triangles);
-  const moments = new SteadySums(4 * (groups + 1), 2 * reach ** 3, 4 * triangles);
-  const volumes = new SteadySums(3 * (groups + 1), 2 * reach ** 4, 3 * triangles);
+  // Quantities of one dimension share the bound of their terms. Corners are at most √3/2 · reach from the middle.
+  const vectors = new SteadySums(4 * (groups + 1), largest, 4 * triangles);
+  const moments = new SteadySums(4 * (groups + 1), largest * reach, 4 * triangles);
+  const volumes = new SteadySums(3 * (groups + 1), largest * reach ** 2, 3 * triangles);
   const counts = new Uint32Array(groups + 1);
   for (let t = 0; t < triangles; t++) {
     const a = 3 * corners[3 * t];
@@ -54,12 +54,12 @@ export function measures(
     const cx = vertices[c] - x0;
     const cy = vertices[c + 1] - y0;
     const cz = vertices[c + 2] - z0;
-    const ux = bx - ax;
-    const uy = by - ay;
-    const uz = bz - az;
-    const vx = cx - ax;
-    const vy = cy - ay;
-    const vz = cz - az;
+    const ux = vertices[b] - vertices[a];
+    const uy = vertices[b + 1] - vertices[a + 1];
+    const uz = vertices[b + 2] - vertices[a + 2];
+    const vx = vertices[c] - vertices[a];
+    const vy = vertices[c + 1] - vertices[a + 1];
+    const vz = vertices[c + 2] - vertices[a + 2];
     const nx = uy * vz - uz * vy;
     const ny = uz * vx - ux * vz;
     const nz = ux * vy - uy * vx;
@@ -128,23 +128,51 @@ function joined(boxes: Box[]): Box {
   return boundsOrZero(all);
 }
 
-/** Bounds of each group, and last those of the triangles of no group; infinite and reversed where there are none. */
-function boundsOf(vertices: Float32Array, corners: Uint32Array, groupOf: Uint16Array | Uint32Array, groups: number): Box[] {
+/**
+ * Bounds of each group, and last those of the triangles of no group, infinite and reversed where there are none; and the largest area
+ * of a triangle, twice for good measure.
+ */
+function looked(
+  vertices: Float32Array,
+  corners: Uint32Array,
+  groupOf: Uint16Array | Uint32Array,
+  groups: number,
+): { boxes: Box[]; largest: number } {
   const low = new Float64Array(3 * (groups + 1)).fill(Infinity);
   const high = new Float64Array(3 * (groups + 1)).fill(-Infinity);
-  for (let h = 0, t = 0; h < corners.length; t++) {
+  let square = 0;
+  for (let h = 0, t = 0; h < corners.length; h += 3, t++) {
     const at = 3 * Math.min(groupOf[t], groups);
-    for (let k = 0; k < 3; k++, h++) {
-      const v = 3 * corners[h];
-      for (let axis = 0; axis < 3; axis++) {
-        const value = vertices[v + axis];
-        if (value < low[at + axis]) low[at + axis] = value;
-        if (value > high[at + axis]) high[at + axis] = value;
-      }
+    const a = 3 * corners[h];
+    const b = 3 * corners[h + 1];
+    const c = 3 * corners[h + 2];
+    for (let axis = 0; axis < 3; axis++) {
+      const p = vertices[a + axis];
+      const q = vertices[b + axis];
+      const r = vertices[c + axis];
+      const least = p < q ? Math.min(p, r) : Math.min(q, r);
+      const most = p > q ? Math.max(p, r) : Math.max(q, r);
+      if (least < low[at + axis]) low[at + axis] = least;
+      if (most > high[at + axis]) high[at + axis] = most;
     }
+    const ux = vertices[b] - vertices[a];
+    const uy = vertices[b + 1] - vertices[a + 1];
+    const uz = vertices[b + 2] - vertices[a + 2];
+    const vx = vertices[c] - vertices[a];
+    const vy = vertices[c + 1] - vertices[a + 1];
+    const vz = vertices[c + 2] - vertices[a + 2];
+    const nx = uy * vz - uz * vy;
+    const ny = uz * vx - ux * vz;
+    const nz = ux * vy - uy * vx;
+    const size = nx * nx + ny * ny + nz * nz;
+    if (size > square) square = size;
   }
-  return Array.from({ length: groups + 1 }, (_, group) => ({
-    min: [low[3 * group], low[3 * group + 1], low[3 * group + 2]],
-    max: [high[3 * group], high[3 * group + 1], high[3 * group + 2]],
-  }));
+  const boxes = Array.from(
+    { length: groups + 1 },
+    (_, group): Box => ({
+      min: [low[3 * group], low[3 * group + 1], low[3 * group + 2]],
+      max: [high[3 * group], high[3 * group + 1], high[3 * group + 2]],
+    }),
+  );
+  return { boxes, largest: Math.sqrt(square) };
 }
