@@ -9,6 +9,7 @@ import { readSurfaces } from "../../src/geometry/read.js";
 import { surveyBody } from "../../src/geometry/survey-body.js";
 import { buildLedger } from "../../src/ledger/build.js";
 import { readCaseRecord } from "../../src/ledger/case-record.js";
+import { duration, fixed, shortPath, thousands } from "../../src/number-text.js";
 import { findSolver, howToGetSolver } from "../../src/openfoam/environment.js";
 import { packageFile } from "../../src/package-files.js";
 import { writeStudyReport } from "../../src/report/study-report.js";
@@ -18,7 +19,6 @@ import { readStudy } from "../../src/study/read.js";
 import type { CommandModule } from "../command.js";
 import { type ExitCode, exitCode } from "../context.js";
 import { printComparison } from "../print/comparison.js";
-import { duration, fixed, shortPath, thousands } from "../print/format.js";
 import { printLedger } from "../print/ledger.js";
 import { progress } from "../print/progress.js";
 

@@ -1,7 +1,7 @@
+import { bytes } from "../../src/number-text.js";
 import { surveyEnvironment } from "../../src/openfoam/environment.js";
 import type { CommandModule } from "../command.js";
 import { exitCode } from "../context.js";
-import { bytes } from "../print/format.js";
 
 export const command: CommandModule = {
   arguments: "",

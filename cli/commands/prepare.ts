@@ -1,10 +1,10 @@
 import { listPlan } from "../../src/case/list-plan.js";
 import type { PlannedNumber } from "../../src/case/plan.js";
 import { planStudy, prepareStudy } from "../../src/case/prepare.js";
+import { shortPath, significant, thousands } from "../../src/number-text.js";
 import { readStudy } from "../../src/study/read.js";
 import type { CommandModule } from "../command.js";
 import { exitCode } from "../context.js";
-import { shortPath, significant, thousands } from "../print/format.js";
 import type { Printer } from "../print/printer.js";
 import { table } from "../print/table.js";
 

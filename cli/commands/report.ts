@@ -1,10 +1,10 @@
 import { join, resolve } from "node:path";
 import { namedCases } from "../../src/case/case-paths.js";
 import { readCaseRecord } from "../../src/ledger/case-record.js";
+import { shortPath, thousands } from "../../src/number-text.js";
 import { writeStudyReport } from "../../src/report/study-report.js";
 import type { CommandModule } from "../command.js";
 import { exitCode } from "../context.js";
-import { shortPath, thousands } from "../print/format.js";
 import { addReferenceOptions, overridesOf, type ReferenceOptions } from "../reference-options.js";
 
 interface Options extends ReferenceOptions {

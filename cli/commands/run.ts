@@ -1,11 +1,11 @@
 import { availableParallelism } from "node:os";
 import { namedCases } from "../../src/case/case-paths.js";
 import { prepareStudy } from "../../src/case/prepare.js";
+import { duration, shortPath } from "../../src/number-text.js";
 import type { CaseOutcome } from "../../src/run/events.js";
 import { runCases } from "../../src/run/run-cases.js";
 import type { CommandModule } from "../command.js";
 import { type ExitCode, exitCode } from "../context.js";
-import { duration, shortPath } from "../print/format.js";
 import { progress } from "../print/progress.js";
 import { table } from "../print/table.js";
 import { positiveInteger } from "../values.js";

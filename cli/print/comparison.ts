@@ -1,6 +1,6 @@
 import type { Comparison, Difference } from "../../src/compare/comparison.js";
+import { fixed, signed } from "../../src/number-text.js";
 import { printFindings } from "./findings.js";
-import { fixed, signed } from "./format.js";
 import { countNote } from "./ledger.js";
 import type { Printer } from "./printer.js";
 import { table } from "./table.js";

@@ -1,7 +1,7 @@
 import type { History } from "../../src/history/history.js";
 import type { HistorySummary } from "../../src/history/last-rows.js";
+import { significant } from "../../src/number-text.js";
 import { printFindings } from "./findings.js";
-import { significant } from "./format.js";
 import type { Printer } from "./printer.js";
 import { csv, table } from "./table.js";
 

@@ -1,6 +1,6 @@
 import type { Entry, LedgerRun } from "../../src/ledger/ledger.js";
+import { estimate, fixed } from "../../src/number-text.js";
 import { printFindings } from "./findings.js";
-import { estimate, fixed } from "./format.js";
 import type { Printer } from "./printer.js";
 import { csv, markdown, type TableColumn, table } from "./table.js";
 

@@ -1,6 +1,6 @@
 import { MultiBar, type SingleBar } from "cli-progress";
+import { duration, fixed } from "../../src/number-text.js";
 import type { RunEvent } from "../../src/run/events.js";
-import { duration, fixed } from "./format.js";
 import type { Printer } from "./printer.js";
 
 /** Shows the events of a run: one bar per case on a terminal, one plain line per step and now and then per iteration elsewhere. */

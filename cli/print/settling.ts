@@ -1,6 +1,6 @@
 import type { ConvergedCase } from "../../src/ledger/converged.js";
+import { fixed } from "../../src/number-text.js";
 import { printFindings } from "./findings.js";
-import { fixed } from "./format.js";
 import { countNote } from "./ledger.js";
 import type { Printer } from "./printer.js";
 import { table } from "./table.js";

@@ -1,7 +1,7 @@
 import type { Survey } from "../../src/geometry/survey.js";
 import type { Box } from "../../src/geometry/vector.js";
+import { fixed, thousands } from "../../src/number-text.js";
 import { printFindings } from "./findings.js";
-import { fixed, thousands } from "./format.js";
 import type { Printer } from "./printer.js";
 import { table } from "./table.js";
 

@@ -17,6 +17,11 @@ export async function call(...argv: string[]): Promise<Called> {
         done();
       },
     });
-  const code = await run(argv, { stdout: stream("stdout"), stderr: stream("stderr"), env: {}, signal: new AbortController().signal });
+  const code = await run(argv, {
+    stdout: stream("stdout"),
+    stderr: stream("stderr"),
+    env: {},
+    signal: new AbortController().signal,
+  });
   return { code, ...text };
 }

@@ -1,4 +1,4 @@
-import type { Estimate } from "../../src/ledger/ledger.js";
+import type { Estimate } from "./ledger/ledger.js";
 
 /** A number with a fixed count of decimals; a dash where there is none. A minus zero is a zero. */
 export function fixed(value: number | null | undefined, decimals: number): string {

@@ -1,5 +1,5 @@
 import { describe, expect, test } from "vitest";
-import { bytes, duration, estimate, fixed, signed, significant, thousands } from "../../cli/print/format.js";
+import { bytes, duration, estimate, fixed, signed, significant, thousands } from "../src/number-text.js";
 
 describe("numbers for people", () => {
   test("a minus zero is a zero, a missing number a dash", () => {
