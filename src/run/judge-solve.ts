@@ -18,10 +18,12 @@ export interface Solved {
   watching: Watching;
   result: ProgramResult;
   watched: Watched;
+  /** Iteration that it went on from. */
+  from: number;
 }
 
 /** The state that a solver's end brings the case to, with the reason. Reads the log; tells what it warns of. */
-export async function judgeSolve({ run, step, follower, watching, result, watched }: Solved): Promise<Phase> {
+export async function judgeSolve({ run, step, follower, watching, result, watched, from }: Solved): Promise<Phase> {
   const bytes = await readFile(join(run.path, step.log)).catch(() => Buffer.alloc(0));
   const log = readLog(bytes, step.log);
   const last = lastSolved(bytes.subarray(-65_536).toString("latin1"));
@@ -41,7 +43,8 @@ export async function judgeSolve({ run, step, follower, watching, result, watche
   if (result.exitCode !== 0) return endWith("failed", await run.failure(step, result));
   if (log?.end !== "ended")
     return endWith("failed", `${step.name} stopped without saying why (its log has no line End); log: ${step.log}`);
-  if (follower.rows === 0) return endWith("failed", `${step.name} ended but wrote no history of coefficients; log: ${step.log}`);
+  if (follower.iteration <= from)
+    return endWith("failed", `${step.name} ended but wrote no history of coefficients; log: ${step.log}`);
   const own = log.convergedAfter;
   const reason =
     own === null ? `the limit of ${run.most} iterations is reached` : `the solver's residual control ended it at iteration ${own}`;

@@ -92,7 +92,7 @@ async function runSolver(run: CaseRun, step: Step, inputs: Hashes, follower: His
   await rotateLog(run.path, step.log);
   try {
     const { result, watched } = await watchSolver(run, step, inputs, follower, new Watcher(watching), from);
-    return await judgeSolve({ run, step, follower, watching, result, watched });
+    return await judgeSolve({ run, step, follower, watching, result, watched, from });
   } finally {
     await restoreControlDict(run);
   }

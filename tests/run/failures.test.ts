@@ -23,6 +23,11 @@ describe("how a case can fail", () => {
       reason: /^floating point trap after iteration 25; last solved k, initial residual 0\.25; log: log\.simpleFoam$/,
     },
     {
+      solver: "bare-trap",
+      state: "diverged",
+      reason: /^floating point trap after iteration 25; last solved k, initial residual 0\.25; log: log\.simpleFoam$/,
+    },
+    {
       solver: "fatal",
       state: "failed",
       reason:

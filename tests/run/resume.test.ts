@@ -27,6 +27,24 @@ describe("going on after an interruption", () => {
     expect(again.events.filter((event) => event.event === "step-end" && event.skipped)).toHaveLength(5);
   });
 
+  test("rows past the last written time do not count for the run that goes on from there", async () => {
+    const made = await standIn();
+    const path = await standInCase();
+    made.behave({ STAND_IN_SOLVER: "hang" });
+    const abort = new AbortController();
+    const told = listener((event) => event.event === "iteration" && event.iteration === 25 && abort.abort());
+    await runCases([path], quick(made, { signal: abort.signal }), told.tell);
+    made.behave({ STAND_IN_SOLVER: "no-table" });
+    const again = listener();
+    const [outcome] = await runCases([path], quick(made), again.tell);
+    expect(outcome).toMatchObject({
+      state: "failed",
+      iterations: 20,
+      reason: "simpleFoam ended but wrote no history of coefficients; log: log.simpleFoam",
+    });
+    expect(again.events.some((event) => event.event === "iteration")).toBe(false);
+  });
+
   test("a program that does not listen is ended by force", async () => {
     const made = await standIn();
     const path = await standInCase();
@@ -91,20 +109,23 @@ describe("going on after an interruption", () => {
     expect((await starts(path)).at(-1)).toBe(`80 140 latestTime ${path}`);
   });
 
-  test("interrupted in the mesher: the mesh is made again from its first step", async () => {
+  test.each([
+    { hangs: "snappyHexMesh", behaviour: { STAND_IN_MESHER: "hang" }, again: "blockMesh" },
+    { hangs: "renumberMesh", behaviour: { STAND_IN_HANGS: "renumberMesh" }, again: "blockMesh" },
+    { hangs: "checkMesh", behaviour: { STAND_IN_HANGS: "checkMesh" }, again: "checkMesh" },
+  ])("interrupted in $hangs: the next run begins with $again", async ({ hangs, behaviour, again }) => {
     const made = await standIn();
     const path = await standInCase();
-    made.behave({ STAND_IN_MESHER: "hang" });
+    made.behave(behaviour);
     const abort = new AbortController();
-    const told = listener(
-      (event) => event.event === "step-start" && event.step === "snappyHexMesh" && setTimeout(() => abort.abort(), 50),
-    );
+    const told = listener((event) => event.event === "step-start" && event.step === hangs && setTimeout(() => abort.abort(), 50));
     const [outcome] = await runCases([path], quick(made, { signal: abort.signal }), told.tell);
-    expect(outcome).toMatchObject({ state: "interrupted", reason: "interrupted in snappyHexMesh" });
-    made.behave({ STAND_IN_MESHER: "", STAND_IN_SOLVER: "wander" });
-    const again = listener();
-    await runCases([path], quick(made), again.tell);
-    expect(again.events.flatMap((event) => (event.event === "step-start" ? [event.step] : []))[0]).toBe("blockMesh");
+    expect(outcome).toMatchObject({ state: "interrupted", reason: `interrupted in ${hangs}` });
+    made.behave({ STAND_IN_MESHER: "", STAND_IN_HANGS: "", STAND_IN_SOLVER: "wander" });
+    const next = listener();
+    const [second] = await runCases([path], quick(made), next.tell);
+    expect(second!.state).toBe("stopped-at-limit");
+    expect(next.events.flatMap((event) => (event.event === "step-start" ? [event.step] : []))[0]).toBe(again);
   });
 
   test("a changed surface makes the mesh again and sets the old histories aside", async () => {

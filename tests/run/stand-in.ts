@@ -33,8 +33,9 @@ patch() { echo "  $1 { type wall; inGroups 1(wall); nFaces $2; startFace 10; }";
   echo ')'
 } > constant/polyMesh/boundary
 echo 'Finished meshing without any errors'`,
-  renumberMesh: "true",
-  checkMesh: `[ -n "$STAND_IN_CHECKS" ] && echo "Failed $STAND_IN_CHECKS mesh checks." || echo 'Mesh OK.'`,
+  renumberMesh: `[ "$STAND_IN_HANGS" = renumberMesh ] && exec sleep 60 || true`,
+  checkMesh: `[ "$STAND_IN_HANGS" = checkMesh ] && exec sleep 60
+[ -n "$STAND_IN_CHECKS" ] && echo "Failed $STAND_IN_CHECKS mesh checks." || echo 'Mesh OK.'`,
   decomposePar: `
 ranks=$(sed -n 's/numberOfSubdomains \\([0-9]*\\);/\\1/p' system/decomposition)
 latest=$(ls -d [0-9]* | sort -n | tail -1)
@@ -91,6 +92,7 @@ const step = (time) => {
   if (table) fs.appendFileSync(table, time + "\\t" + cd + "\\t0\\t" + cl + "\\n");
   if (time === 25) {
     if (behaviour === "trap") { print("#0  Foam::error::printStack(Foam::Ostream&) at ??:?\\n#1  Foam::sigFpe::sigHandler(int) at ??:?"); process.kill(process.pid, "SIGFPE"); pause(5000); }
+    if (behaviour === "bare-trap") { process.kill(process.pid, "SIGFPE"); pause(5000); }
     if (behaviour === "killed") { process.kill(process.pid, "SIGKILL"); pause(5000); }
     if (behaviour === "fatal") { print("\\n--> FOAM FATAL IO ERROR: \\nEntry 'div(phi,k)' not found in dictionary \\"system/fvSchemes.divSchemes\\"\\n\\nfile: system/fvSchemes.divSchemes at line 9.\\n\\n    From function entry\\n\\nFOAM exiting\\n"); process.exit(1); }
     if (behaviour === "silent") process.exit(0);
