@@ -52,7 +52,7 @@ export function splice(object: string, table: string, pieces: readonly Piece[], 
   const leaf = taking.findLast((node) => node.root === newest);
   const chain: Node[] = [];
   for (let node = leaf ?? null; node !== null; node = node.parent) chain.unshift(node);
-  if (newest !== undefined) nameOtherRuns(taking, newest, findings);
+  if (newest !== undefined) nameOtherRuns(taking, newest, chain, findings);
 
   const used = new Map<Node, Table>();
   chain.forEach((node, index) => {
@@ -104,9 +104,11 @@ export function splice(object: string, table: string, pieces: readonly Piece[], 
 function place(piece: Piece, before: readonly Node[], all: readonly Piece[], findings: Finding[]): Node {
   const node: Node = { piece, parent: null, root: null as unknown as Node, reason: "", excluded: false };
   node.root = node;
-  if (piece.table.rows === 0) return { ...node, excluded: true, reason: "no complete row" };
-  if (writtenAfterwards(piece, all)) {
-    return { ...node, excluded: true, reason: "written afterwards from stored fields (-postProcess), not by the run" };
+  if (piece.table.rows === 0) node.reason = "no complete row";
+  else if (writtenAfterwards(piece, all)) node.reason = "written afterwards from stored fields (-postProcess), not by the run";
+  if (node.reason !== "") {
+    node.excluded = true;
+    return node;
   }
   const reached = before.filter(
     (other) => !other.excluded && other.piece.folderTime < piece.folderTime && reaches(other.piece, piece),
@@ -268,40 +270,33 @@ function chainReason(node: Node, next: Node | undefined, skipped: number, replac
   return parts.join("; ");
 }
 
-function nameOtherRuns(nodes: readonly Node[], newest: Node, findings: Finding[]): void {
-  const others = nodes.filter((node) => node.root !== newest);
-  for (const node of others) {
-    node.reason =
-      node.parent === null ? "another run, older than the one used" : `continues ${node.parent.piece.file}, an older run`;
-    if (node.piece.folderTime > newest.piece.folderTime) node.reason += ", although its folder is later";
+function nameOtherRuns(nodes: readonly Node[], newest: Node, chain: readonly Node[], findings: Finding[]): void {
+  const left = nodes.filter((node) => !chain.includes(node));
+  for (const node of left) {
+    if (node.root === newest) node.reason = "a branch of the run that was given up: a later start took over";
+    else {
+      node.reason =
+        node.parent === null ? "another run, older than the one used" : `continues ${node.parent.piece.file}, an older run`;
+      if (node.piece.folderTime > newest.piece.folderTime) node.reason += ", although its folder is later";
+    }
   }
-  for (const node of nodes) {
-    if (node.root === newest && node.reason === "") node.reason = "replaced: a later start took over from here";
-  }
-  if (others.length > 0) {
+  if (left.length > 0) {
     findings.push(
       finding(
         "several-runs",
         "warning",
-        `${others.length} of ${nodes.length} files belong to other runs and were left out; the newest run starts with ${newest.piece.file}`,
+        `${left.length} of ${nodes.length} files belong to other runs and were left out; the newest run starts with ${newest.piece.file}`,
         "Check that this is the run you mean; to read another one give its file to `dragledger history`.",
-        { count: others.length },
+        { count: left.length },
       ),
     );
   }
 }
 
-const remarkSeverity: Record<string, Finding["severity"]> = { "cut-last-line": "warning", "no-rows": "warning" };
-
 /** What was odd about a file, as findings. */
 export function tableFindings(piece: Piece): Finding[] {
   const found = piece.table.remarks.map(({ code, message }) =>
-    finding(
-      code,
-      remarkSeverity[code] ?? "warning",
-      `${piece.file}: ${message}`,
-      "Look at the file; results from the other rows stand.",
-    ),
+    finding(code, "warning", `${piece.file}: ${message}`, "Look at the file; results from the other rows stand."),
   );
   if (piece.remark !== "") {
     found.push(finding("time-order", "note", `${piece.file}: ${piece.remark}`, "Keep each run in its own file."));
