@@ -21,6 +21,8 @@ export interface PlannedPart {
   patch: string;
   /** refinement level of the surface */
   level: number;
+  /** outermost layer, relative to the cells of this level */
+  finalLayer: number;
   /** Set when the part turns with the road: centre and right-pointing axis in case axes, metres; radius in metres; rad/s. */
   wheel: { centre: Vector3; axis: Vector3; radius: number; omega: number } | null;
 }

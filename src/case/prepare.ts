@@ -1,66 +1,103 @@
-import { relative } from "node:path";
 import { inputProblem } from "../errors.js";
-import { keepParts } from "../geometry/keep-parts.js";
-import { place } from "../geometry/place.js";
+import { type Finding, finding } from "../finding.js";
 import { readSurfaces } from "../geometry/read.js";
 import { surveyBody } from "../geometry/survey-body.js";
-import { asciiStl } from "../geometry/write-stl.js";
-import { packageVersion } from "../package-files.js";
+import { conditionsOf } from "../study/conditions.js";
 import { requireMatches, rotatingParts } from "../study/part-rules.js";
 import type { Study, Variant } from "../study/study.js";
+import { caseContent } from "./case-content.js";
 import { sha256OfFile } from "./hash.js";
-import { listPlan } from "./list-plan.js";
 import type { CasePlan } from "./plan.js";
 import { planCase } from "./plan-case.js";
-import { type CaseFile, renderCase, templatesHash } from "./render.js";
 import { studyCases } from "./study-cases.js";
-import { caseBounds, frameOf, type VariantBody } from "./study-frame.js";
-import { type CaseContent, writeCase } from "./write-case.js";
+import { frameOf, predictedFor, type StudyFrame, type VariantBody } from "./study-frame.js";
+import { fitVariant } from "./variant-fit.js";
+import { wheelFindings } from "./wheels.js";
+import { writeCase } from "./write-case.js";
 
 export interface PlannedCase {
+  /** absolute path of the case folder */
   path: string;
   variant: string;
   /** name of the condition */
   condition: string;
   plan: CasePlan;
-  body: VariantBody;
+  /** What is odd about this variant in this domain; what the body itself has is in its survey. */
+  findings: Finding[];
 }
 
-export interface PreparedCase extends Omit<PlannedCase, "body"> {
+export interface PreparedCase extends PlannedCase {
+  /** false: the folder was as planned and was not touched */
   changed: boolean;
+  /** What happened to the folder beside writing it, for people: results kept aside, files edited by hand and left. */
+  remarks: string[];
+}
+
+export interface PrepareOptions {
+  /** go on with a body that the survey calls not fit */
+  accept?: boolean;
+  /** set up changed cases again although they hold results, which are kept aside, or files edited by hand, which are lost */
+  again?: boolean;
 }
 
 /**
- * Reads and surveys the bodies of a study and plans all of its cases; writes nothing. Throws an input problem for a body that is not
- * fit to mesh (unless `accept`) and for variants that cannot share a frame.
+ * Reads and surveys the bodies of a study once and plans all of its cases, the baseline first; writes nothing.
+ *
+ * @throws Problem(input) `not-fit` unless accepted; `rule-without-part`; as `readSurfaces`, `frameOf`, `fitVariant`, `turningWheels`.
  */
-export async function planStudy(study: Study, options: { accept?: boolean } = {}): Promise<PlannedCase[]> {
-  const bodies = new Map<string, VariantBody>();
-  for (const variant of study.variants) bodies.set(variant.name, await readBody(study, variant));
-  const all = [...bodies.values()];
-  requireMatches(
-    study.parts,
-    all.flatMap(({ set }) => set.parts.map(({ name }) => name)),
-    study.path,
+export async function planStudy(study: Study, options: Pick<PrepareOptions, "accept"> = {}): Promise<PlannedCase[]> {
+  return planBodies(study, await readBodies(study, options));
+}
+
+/**
+ * Plans the cases of a study and writes those that are new or have changed. Nothing is written before all of them are planned.
+ *
+ * @throws Problem(input) as `planStudy` and `writeCase`.
+ */
+export async function prepareStudy(study: Study, options: PrepareOptions = {}): Promise<PreparedCase[]> {
+  const bodies = await readBodies(study, options);
+  const planned = planBodies(study, bodies);
+  const inputs = new Map<string, string>();
+  for (const path of new Set(study.variants.flatMap(({ files }) => files))) inputs.set(path, await sha256OfFile(path));
+  const prepared: PreparedCase[] = [];
+  for (const each of planned) {
+    const body = bodies.find(({ variant }) => variant === each.variant)!;
+    const content = caseContent(study, each.plan, body, inputs);
+    const { changed, remarks } = await writeCase(each.path, content, { again: options.again === true });
+    prepared.push({ ...each, changed, remarks });
+  }
+  return prepared;
+}
+
+function planBodies(study: Study, bodies: VariantBody[]): PlannedCase[] {
+  const frame = frameOf(study, bodies, conditionsOf(study));
+  const stands = new Map(
+    bodies.map((body) => [body.variant, { body, findings: fitVariant(study, frame, body), ...predictedFor(study, frame, body) }]),
   );
-  if (!options.accept) for (const body of all) requireFit(body);
-  const frame = frameOf(study, all);
   return studyCases(study).map(({ path, variant, condition }) => {
-    const body = bodies.get(variant.name)!;
-    return { path, variant: variant.name, condition: condition.name, plan: planCase(study, frame, body, condition), body };
+    const { body, findings, cells, exposed } = stands.get(variant.name)!;
+    const plan = planCase({ study, frame, body, cells, condition });
+    return {
+      path,
+      variant: variant.name,
+      condition: condition.name,
+      plan,
+      findings: [
+        ...findings,
+        ...hiddenParts(plan, frame, exposed),
+        ...wheelFindings(study, body.survey, frame.placement, condition),
+      ],
+    };
   });
 }
 
-/** Plans the cases of a study and writes those that are new or changed. Errors as in `planStudy` and `writeCase`. */
-export async function prepareStudy(study: Study, options: { accept?: boolean; again?: boolean } = {}): Promise<PreparedCase[]> {
-  const planned = await planStudy(study, options);
-  const hashes = await inputHashes(study);
-  const prepared: PreparedCase[] = [];
-  for (const { body, ...each } of planned) {
-    const { changed } = await writeCase(each.path, caseContent(study, each.plan, body, hashes), { again: options.again === true });
-    prepared.push({ ...each, changed: changed.length > 0 });
-  }
-  return prepared;
+async function readBodies(study: Study, { accept = false }: Pick<PrepareOptions, "accept">): Promise<VariantBody[]> {
+  const bodies: VariantBody[] = [];
+  for (const variant of study.variants) bodies.push(await readBody(study, variant));
+  const names = bodies.flatMap(({ set }) => set.parts.map(({ name }) => name));
+  requireMatches(study.parts, names, study.path);
+  if (!accept) for (const body of bodies) requireFit(body);
+  return bodies;
 }
 
 async function readBody(study: Study, variant: Variant): Promise<VariantBody> {
@@ -70,74 +107,34 @@ async function readBody(study: Study, variant: Variant): Promise<VariantBody> {
     set.parts.map(({ name }) => name),
   );
   const { unit, travel, up } = study.body;
+  // Without a rule the survey tells wheels by their names.
   const survey = surveyBody(set, { unit, travel, up, ...(wheelParts.length > 0 ? { wheelParts } : {}) });
   return { variant: variant.name, set, survey };
 }
 
 function requireFit({ variant, survey }: VariantBody): void {
   if (survey.verdict !== "not-fit") return;
-  const errors = survey.findings.filter((found) => found.severity === "error");
+  const errors = survey.findings.filter(({ severity }) => severity === "error");
   throw inputProblem({
     code: "not-fit",
-    message: `The body of variant '${variant}' is not fit to mesh: ${errors.map((found) => found.message).join(" ")}`,
-    where: survey.files.map((file) => file.path).join(", "),
-    remedy: "Mend the body (dragledger inspect shows where), or prepare with --accept to go on as it is.",
+    message: `The body of variant '${variant}' is not fit to mesh: ${errors.map(({ message }) => message).join(" ")}`,
+    where: survey.files.map(({ path }) => path).join(", "),
+    remedy: "Mend the body (dragledger inspect shows the places), or prepare with --accept to go on with it as it is.",
   });
 }
 
-async function inputHashes(study: Study): Promise<Map<string, string>> {
-  const hashes = new Map<string, string>();
-  for (const path of new Set(study.variants.flatMap(({ files }) => files))) hashes.set(path, await sha256OfFile(path));
-  return hashes;
-}
-
-/** The files of one case and its run card. Pure but for the package's templates. */
-export function caseContent(study: Study, plan: CasePlan, body: VariantBody, inputHash: Map<string, string>): CaseContent {
-  const inside = new Set(plan.parts.map(({ patch }) => patch));
-  const surface: CaseFile = {
-    path: "constant/triSurface/body.stl",
-    content: asciiStl(
-      place(
-        keepParts(body.set, (patch) => inside.has(patch)),
-        plan.placement,
-      ),
+/** Parts that the air hardly reaches get no faces in the mesh, and no entry in the ledger. */
+function hiddenParts({ parts }: CasePlan, { grid }: StudyFrame, exposed: ReadonlyMap<string, number>): Finding[] {
+  const hidden = parts.filter(({ patch, level }) => (exposed.get(patch) ?? 0) < (grid.domain.baseCell / 2 ** level) ** 2);
+  if (hidden.length === 0) return [];
+  const names = hidden.map(({ name }) => name);
+  return [
+    finding(
+      "part-hidden",
+      "warning",
+      `${hidden.length} ${hidden.length === 1 ? "part has" : "parts have"} less than one cell's face in the air (${names.slice(0, 5).join(", ")}${names.length > 5 ? ", ..." : ""}): hidden in other parts, doubled, or too small for these cells. The mesh may lose ${hidden.length === 1 ? "it" : "them"}.`,
+      "Leave such parts out, or ask for more cells.",
+      { count: hidden.length, part: hidden.length === 1 ? names[0]! : null },
     ),
-    executable: false,
-  };
-  const variant = study.variants.find(({ name }) => name === plan.variant)!;
-  const card: CaseContent["card"] = {
-    schema: "dragledger/run-card/1",
-    tool: { name: "dragledger", version: packageVersion },
-    study: { name: study.name, question: study.question, baseline: study.baseline },
-    variant: plan.variant,
-    condition: plan.condition,
-    reference: {
-      area: plan.reference.area.value,
-      length: plan.reference.length.value,
-      centre: plan.reference.centre.value,
-      speed: plan.flow.speed.value,
-      density: plan.air.density.value,
-      symmetryFactor: plan.half.value ? 2 : 1,
-    },
-    wheelbase: plan.reference.wheelbase?.value ?? null,
-    parts: plan.parts.map(({ name, patch }) => ({ name, patch })),
-    placement: plan.placement,
-    body: { bounds: caseBounds(body.survey.bounds, plan.placement), frontalArea: body.survey.frontalArea.value },
-    mesh: {
-      domain: { min: plan.domain.min.value, max: plan.domain.max.value },
-      baseCell: plan.domain.baseCell.value,
-      divisions: plan.domain.divisions.value,
-      surfaceLevel: plan.mesh.surfaceLevel.value,
-      boxes: plan.boxes.map(({ name, box, level }) => ({ name, box, level })),
-      predictedCells: plan.mesh.predictedCells.value,
-    },
-    stop: { drag: plan.stop.drag.value, lift: plan.stop.lift.value, confidence: plan.stop.confidence.value },
-    mostIterations: plan.iterations.most.value,
-    plan: listPlan(plan),
-    hashes: {
-      inputs: variant.files.map((path) => ({ path: relative(study.folder, path), sha256: inputHash.get(path)! })),
-      templates: templatesHash(),
-    },
-  };
-  return { files: [...renderCase(plan), surface], card };
+  ];
 }

@@ -34,6 +34,7 @@ const runCard = z.object({
   }),
   wheelbase: number.nullable(),
   parts: z.array(z.object({ name: z.string(), patch: z.string() })),
+  leftOut: z.array(z.string()).optional(),
   placement,
   body: z.object({ bounds: box, frontalArea: number }),
   mesh: z.object({

@@ -16,6 +16,8 @@ export interface RunCard {
   reference: { area: number; length: number; centre: Vector3; speed: number; density: number; symmetryFactor: 1 | 2 };
   wheelbase: number | null;
   parts: { name: string; patch: string }[];
+  /** Names of parts of the body that have no patch: those on the side that a half model leaves out. */
+  leftOut?: string[];
   placement: { orientation: Orientation; scale: number; rotation: [Vector3, Vector3, Vector3]; shift: Vector3 };
   body: { bounds: Box; frontalArea: number };
   mesh: {

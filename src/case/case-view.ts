@@ -1,0 +1,54 @@
+import type { CasePlan } from "./plan.js";
+import { label } from "./template-text.js";
+
+/** The cell limit of the mesher over the predicted count: cells inside the body are counted while it refines. */
+const limitOverPrediction = 4;
+
+/** What the templates see of a plan, as `it`. Numbers in SI and case axes. */
+export function caseView(plan: CasePlan) {
+  const { half, domain, mesh, flow, air, reference, parts, condition } = plan;
+  const final = mesh.finalLayer.value;
+  const expansion = mesh.layerExpansion.value;
+  const layers = mesh.layers.value;
+  // Relative thickness of all layers together: final (1 + 1/r + 1/r² + ...).
+  const thickness = final * Array.from({ length: layers }, (_, k) => expansion ** -k).reduce((sum, share) => sum + share, 0);
+  return {
+    studyLabel: label(plan.study),
+    variantLabel: label(plan.variant),
+    conditionLabel: label(condition.name),
+    half: half.value,
+    side: !half.value ? 0 : domain.max.value[1] === 0 ? -1 : 1,
+    movingGround: condition.ground === "moving",
+    speed: flow.speed.value,
+    velocity: [flow.speed.value, 0, 0],
+    k: flow.k.value,
+    omega: flow.omega.value,
+    nut: flow.nut.value,
+    density: air.density.value,
+    viscosity: air.kinematicViscosity.value,
+    areaInDomain: reference.area.value / (half.value ? 2 : 1),
+    referenceLength: reference.length.value,
+    min: domain.min.value,
+    max: domain.max.value,
+    divisions: domain.divisions.value,
+    baseCell: domain.baseCell.value,
+    keepPoint: domain.keepPoint.value,
+    surfaceLevel: mesh.surfaceLevel.value,
+    featureAngle: mesh.featureAngle.value,
+    cellsBetweenLevels: mesh.cellsBetweenLevels.value,
+    mostCells: Math.max(200_000, limitOverPrediction * mesh.predictedCells.value),
+    layers,
+    layerExpansion: expansion,
+    finalLayer: final,
+    /** Layers that end up thinner than this, relative to the cell, are left out: a tenth, or a quarter of thin ones. */
+    leastThickness: Number(Math.min(0.1, thickness / 4).toPrecision(3)),
+    boxes: plan.boxes,
+    parts,
+    finerParts: parts.filter((part) => part.level > mesh.surfaceLevel.value),
+    wheels: parts.filter((part) => part.wheel !== null),
+    mostIterations: plan.iterations.most.value,
+    writeEvery: plan.iterations.writeEvery.value,
+  };
+}
+
+export type CaseView = ReturnType<typeof caseView>;
