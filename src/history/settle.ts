@@ -3,6 +3,7 @@ import { mean, variance } from "./correlation.js";
 import { dominantPeriod, periodMeans } from "./period.js";
 import type { Settling, SettlingVerdict } from "./settling.js";
 import { type StartUp, startUp, startUpBatches } from "./start-up.js";
+import { studentQuantile } from "./student.js";
 import { bandOf, calmsDown, fewestSamples, mattering, type WindowMean, windowMean } from "./window-mean.js";
 
 export interface SettleOptions {
@@ -10,13 +11,23 @@ export interface SettleOptions {
   halfWidth?: number;
   /** Probability of the interval, 0.95 unless told otherwise. */
   confidence?: number;
-  /** A magnitude no healthy value reaches; the default fits coefficients and forces of vehicles. */
+  /** A magnitude that no healthy value reaches in the second half of a run; the default fits coefficients and forces of vehicles. */
   runaway?: number;
+}
+
+/** What every step of the judgement needs to know of the call. */
+interface Asked {
+  target: number | null;
+  confidence: number;
+  /** rows per value that is judged */
+  group: number;
 }
 
 /** Fewer rows than this hold no ten batches of five: nothing can be said. */
 export const fewestRows = 50;
 const defaultRunaway = 1e6;
+/** Longer histories are judged by means over a few rows: the interval hardly changes, the time does. */
+const mostRows = 16_384;
 
 /**
  * Whether the mean of a history is known, and how well. Rows are equally spaced (iterations or time steps of one size).
@@ -37,14 +48,14 @@ const defaultRunaway = 1e6;
  * @param values one per row, from the start of the run; missing cells (NaN) are allowed at the start only
  */
 export function settle(values: Float64Array, options: SettleOptions = {}): Settling {
-  const confidence = options.confidence ?? 0.95;
-  const target = options.halfWidth ?? null;
   const missing = values.findIndex((value) => !Number.isNaN(value));
   if (missing < 0)
     return withoutMean("no-data", values.length, "there is no value", "Check that the function object wrote this quantity.");
   const rows = values.length;
   const known = values.subarray(missing);
-  const spoilt = known.findIndex((value) => !(Math.abs(value) <= (options.runaway ?? defaultRunaway)));
+  const half = Math.floor(known.length / 2);
+  const most = options.runaway ?? defaultRunaway;
+  const spoilt = known.findIndex((value, row) => !Number.isFinite(value) || (row >= half && Math.abs(value) > most));
   if (spoilt >= 0) {
     const what = `row ${missing + spoilt + 1} holds ${known[spoilt]}`;
     return withoutMean("diverged", rows, `${what}: the run has diverged`, "Look at the mesh quality and the start of the run.");
@@ -58,9 +69,27 @@ export function settle(values: Float64Array, options: SettleOptions = {}): Settl
       stillNeeded: fewestRows - known.length,
     };
   }
-  const start = cutOf(known);
-  const settling = start.open ? lateStart(known, start.rows, target, confidence) : window(known, start.rows, target, confidence);
-  return { ...settling, startUp: settling.startUp + missing, firstRow: settling.firstRow + missing };
+  const group = Math.ceil(known.length / mostRows);
+  const asked: Asked = { target: options.halfWidth ?? null, confidence: options.confidence ?? 0.95, group };
+  const samples = group === 1 ? known : periodMeans(known, group);
+  const cut = cutOf(samples);
+  const settling = cut.open ? lateStart(samples, cut.rows, asked) : window(samples, cut.rows, asked);
+  return inRows(settling, values, group, samples.length * group);
+}
+
+/** A judgement of means over `group` rows, in rows of the whole history; the groups cover its last `covered` rows. */
+function inRows(settling: Settling, values: Float64Array, group: number, covered: number): Settling {
+  const firstRow = values.length - covered + settling.firstRow * group;
+  const rows = settling.rows * group;
+  return {
+    ...settling,
+    startUp: firstRow,
+    firstRow,
+    rows,
+    period: settling.period === null ? null : settling.period * group,
+    stillNeeded: settling.stillNeeded === null ? null : settling.stillNeeded * group,
+    standardDeviation: group === 1 ? settling.standardDeviation : Math.sqrt(variance(values.subarray(firstRow, firstRow + rows))),
+  };
 }
 
 /** The start-up by batches of five rows; where the second half repeats, by means over whole periods of at least five rows. */
@@ -96,35 +125,35 @@ function withoutIdleCut(values: Float64Array, cut: number, judged: WindowMean): 
 }
 
 /** The usual case: a start-up was found. */
-function window(values: Float64Array, cut: number, target: number | null, confidence: number): Settling {
-  let start = withoutIdleCut(values, cut, windowMean(values, cut, target, confidence));
-  let judged = windowMean(values, start, target, confidence);
+function window(values: Float64Array, cut: number, asked: Asked): Settling {
+  let start = withoutIdleCut(values, cut, windowMean(values, cut, asked.target, asked.confidence));
+  let judged = windowMean(values, start, asked.target, asked.confidence);
   // A slow tail that the start-up rule left in: cut a quarter at a time, never below a third of all rows.
   while (judged.drifts) {
     const next = start + Math.ceil((values.length - start) / 4);
     if (values.length - next < Math.max(fewestRows, values.length / 3)) break;
-    const later = windowMean(values, next, target, confidence);
+    const later = windowMean(values, next, asked.target, asked.confidence);
     start = next;
     judged = later;
   }
   if (judged.drifts) {
-    const last = windowMean(values, Math.floor(values.length / 2), target, confidence);
+    const last = windowMean(values, Math.floor(values.length / 2), asked.target, asked.confidence);
     return report(last, "drifting", [driftFinding(last)]);
   }
-  return verdictOf(judged, target, 0);
+  return verdictOf(judged, asked, 0);
 }
 
 /** The start-up rule found no steady stretch. A history that runs into a constant still counts when the rest of its way is below the target. */
-function lateStart(values: Float64Array, cut: number, target: number | null, confidence: number): Settling {
+function lateStart(values: Float64Array, cut: number, asked: Asked): Settling {
   const half = Math.floor(values.length / 2);
-  const last = windowMean(values, half, target, confidence);
+  const last = windowMean(values, half, asked.target, asked.confidence);
   const latest = values.length - Math.max(fewestRows, Math.ceil(values.length / 4));
   let best: { judged: WindowMean; band: number } | null = null;
   const steps = 8;
   for (let step = 0; step <= steps && latest >= half; step += 1) {
-    const judged = windowMean(values, half + Math.floor(((latest - half) * step) / steps), target, confidence);
+    const judged = windowMean(values, half + Math.floor(((latest - half) * step) / steps), asked.target, asked.confidence);
     const band = bandOf(judged);
-    if (calmsDown(judged.samples) && band <= mattering(target, judged.mean) && !(best !== null && best.band <= band))
+    if (calmsDown(judged.samples) && band <= mattering(asked.target, judged.mean) && !(best !== null && best.band <= band))
       best = { judged, band };
   }
   if (best !== null) {
@@ -132,15 +161,15 @@ function lateStart(values: Float64Array, cut: number, target: number | null, con
     const slow = finding(
       "slow-approach",
       "note",
-      `the rows from ${judged.firstRow + 1} on still approach their end value; the half-width covers the way seen and the way to go`,
+      "the window still approaches its end value; the half-width covers the way seen and the way to go",
       "Run on if a narrower interval is wanted.",
     );
-    const verdict = swings(judged, target) ? "oscillating" : "settled";
-    return report({ ...judged, halfWidth: band }, verdict, [...swingFindings(judged, target), slow]);
+    const verdict = swings(judged, asked) ? "oscillating" : "settled";
+    return report({ ...judged, halfWidth: band }, verdict, [...swingFindings(judged, asked), slow]);
   }
   // Noise alone puts the least criterion into the second half now and then: rows that look alike throughout have no start-up.
   const from = withoutIdleCut(values, half, last);
-  if (from < half / 2) return window(values, from, target, confidence);
+  if (from < half / 2) return window(values, from, asked);
   const open = finding(
     "start-up-open",
     "warning",
@@ -148,46 +177,43 @@ function lateStart(values: Float64Array, cut: number, target: number | null, con
     "Run on.",
   );
   if (last.drifts) return report(last, "drifting", [open, driftFinding(last)]);
-  return verdictOf(last, target, Math.max(5, 2 * cut - values.length), open);
+  return verdictOf(last, asked, Math.max(5, 2 * cut - values.length), open);
 }
 
 /** The history repeats with a swing that matters. */
-const swings = (judged: WindowMean, target: number | null): boolean =>
-  judged.period !== null && judged.standardDeviation * Math.SQRT2 > mattering(target, judged.mean);
+const swings = (judged: WindowMean, asked: Asked): boolean =>
+  judged.period !== null && judged.standardDeviation * Math.SQRT2 > mattering(asked.target, judged.mean);
 
-function swingFindings(judged: WindowMean, target: number | null): Finding[] {
-  if (judged.period === null || !swings(judged, target)) return [];
+function swingFindings(judged: WindowMean, asked: Asked): Finding[] {
+  if (judged.period === null || !swings(judged, asked)) return [];
   const swing = (judged.standardDeviation * Math.SQRT2).toPrecision(2);
-  if (judged.period.rows < 2.5) {
+  const length = judged.period.rows * asked.group;
+  if (length < 2.5) {
     const message = `the values alternate from row to row by ${swing}; the window holds an even number of rows`;
     return [finding("zig-zag", "note", message, "Lower relaxation factors damp it.")];
   }
-  const message = `the values repeat every ${judged.period.rows.toPrecision(3)} rows with a swing of ${swing}; the window holds whole periods`;
+  const message = `the values repeat every ${length.toPrecision(3)} rows with a swing of ${swing}; the window holds whole periods`;
   return [
     finding("limit-cycle", "note", message, "The flow has no steady state on this mesh; the mean over whole periods is used."),
   ];
 }
 
 function driftFinding(judged: WindowMean): Finding {
-  const last = judged.firstRow + judged.rows;
-  return finding(
-    "drift",
-    "warning",
-    `the mean still changes by ${judged.change.toPrecision(2)} over rows ${judged.firstRow + 1} to ${last}`,
-    "Run on until the drift has ended.",
-  );
+  const change = judged.change.toPrecision(2);
+  return finding("drift", "warning", `the mean still changes by ${change} over the window`, "Run on until the drift has ended.");
 }
 
 /** @param needed rows that are missing whatever the interval; more than 0 forbids `settled`, with the finding that says why */
-function verdictOf(judged: WindowMean, target: number | null, needed: number, open: Finding | null = null): Settling {
-  const findings = [...(open === null ? [] : [open]), ...swingFindings(judged, target)];
+function verdictOf(judged: WindowMean, asked: Asked, needed: number, open: Finding | null = null): Settling {
+  const findings = [...(open === null ? [] : [open]), ...swingFindings(judged, asked)];
   const enough = judged.effectiveSamples >= fewestSamples;
+  const { target } = asked;
   const narrow = target === null || judged.halfWidth <= target;
   const band = bandOf(judged);
-  const banded = band <= mattering(target, judged.mean);
+  const banded = band <= mattering(asked.target, judged.mean);
   if (needed === 0 && ((enough && narrow) || banded)) {
     const halfWidth = enough && narrow ? judged.halfWidth : band;
-    return report({ ...judged, halfWidth }, swings(judged, target) ? "oscillating" : "settled", findings);
+    return report({ ...judged, halfWidth }, swings(judged, asked) ? "oscillating" : "settled", findings);
   }
   if (!enough) {
     const samples = judged.effectiveSamples.toFixed(1);
@@ -195,15 +221,19 @@ function verdictOf(judged: WindowMean, target: number | null, needed: number, op
       finding(
         "few-samples",
         "warning",
-        `the window of ${judged.rows} rows is worth only ${samples} independent samples; ${fewestSamples} are needed`,
+        `the window of ${judged.rows * asked.group} rows is worth only ${samples} independent samples; ${fewestSamples} are needed`,
         "Run on.",
       ),
     );
   }
-  const forWidth = target === null ? 0 : judged.rows * (judged.halfWidth / target) ** 2 - judged.rows;
+  // With more samples the quantile shrinks too.
+  const quantile = (samples: number): number => studentQuantile(0.5 + asked.confidence / 2, samples - 1);
+  const shrink = quantile(Math.max(judged.effectiveSamples, fewestSamples)) / quantile(judged.effectiveSamples);
+  const forWidth = target === null ? 0 : judged.rows * ((judged.halfWidth * shrink) / target) ** 2 - judged.rows;
   const forSamples = enough ? 0 : judged.rows * (fewestSamples / judged.effectiveSamples) - judged.rows;
-  const more = Math.max(forWidth, forSamples, needed, 1);
-  return { ...report(judged, "not-yet", findings), stillNeeded: Number.isFinite(more) ? Math.ceil(more) : null };
+  // Without an interval only the samples can be extrapolated.
+  const more = Math.max(Number.isFinite(forWidth) ? forWidth : 0, forSamples, needed, 1);
+  return { ...report(judged, "not-yet", findings), stillNeeded: Math.ceil(more) };
 }
 
 function report(judged: WindowMean, verdict: SettlingVerdict, findings: Finding[]): Settling {

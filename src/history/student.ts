@@ -80,8 +80,8 @@ function studentInside(t: number, degreesOfFreedom: number): number {
   return incompleteBeta(square / sum, degreesOfFreedom / sum, 0.5, degreesOfFreedom / 2);
 }
 
-/** Above this the difference to the normal limit is below 1e-12 once the first terms of the expansion in 1/v are in. */
-const manyDegrees = 1e6;
+/** From here on four terms of the expansion in 1/v are closer than 1e-12, and the incomplete beta function no longer is. */
+const manyDegrees = 2e4;
 
 /**
  * Quantile of Student's distribution: t with P(T <= t) = p. Degrees of freedom may be fractional (effective samples).
@@ -102,8 +102,12 @@ export function studentQuantile(p: number, degreesOfFreedom: number): number {
   if (v === 1) return sign * (outside < 0.5 ? 1 / Math.tan((Math.PI * outside) / 2) : Math.tan((Math.PI * inside) / 2));
   if (v === 2) return sign * inside * Math.sqrt(2 / (outside * (2 - outside)));
   const z = normalQuantile(1 - outside / 2);
-  // First terms of the Cornish-Fisher expansion in 1/v.
-  const expanded = z + (z ** 3 + z) / (4 * v) + (5 * z ** 5 + 16 * z ** 3 + 3 * z) / (96 * v * v);
+  // Cornish and Fisher's expansion in 1/v (Abramowitz and Stegun 26.7.5).
+  const expanded =
+    z +
+    (z ** 3 + z) / (4 * v) +
+    (5 * z ** 5 + 16 * z ** 3 + 3 * z) / (96 * v ** 2) +
+    (3 * z ** 7 + 19 * z ** 5 + 17 * z ** 3 - 15 * z) / (384 * v ** 3);
   if (v > manyDegrees) return sign * expanded;
   // The smaller of the two probabilities is the one that keeps its digits.
   const excessAt = (t: number): number => (outside <= 0.5 ? studentTwoSided(t, v) - outside : inside - studentInside(t, v));
