@@ -1,3 +1,6 @@
+import { AreaSums, CrossedRun } from "./crossed-run.js";
+import { stripsOf } from "./strips.js";
+
 /** Directed straight pieces in a plane, each with the number of times it counts. All arrays have one entry per piece. */
 export interface Pieces {
   ax: Float64Array;
@@ -12,7 +15,7 @@ export interface Swept {
   area: number;
   /** Length of the border of that area. */
   border: number;
-  /** Places where pieces cross. */
+  /** Crossings that had to be looked at: those in the middle of the area cannot matter. */
   crossings: number;
 }
 
@@ -24,10 +27,19 @@ export interface Swept {
  * a slab are kept in their order from left to right; where that order differs between the slab's bottom and top, the run of pieces
  * that change places is swept alone between their crossings. Within a slab, areas are trapezoids, exact but for rounding. Nothing
  * is decided by comparing computed crossings with each other, so that rounding can only move area by what it moves a border, never
- * upset the sweep.
+ * upset the sweep. Chains in which a level line meets many pieces are swept strip by strip (see `stripsOf`).
  */
 export function sweep(pieces: Pieces): Swept {
-  return new Sweep(pieces).run();
+  const strips = stripsOf(pieces);
+  if (strips === null) return new Sweep(pieces).result();
+  const sums = new AreaSums();
+  let crossings = 0;
+  for (let strip = 0; strip < strips.count; strip++) {
+    const part = new Sweep(strips.pieces(strip)).result();
+    sums.add(part.area, part.border);
+    crossings += part.crossings;
+  }
+  return { area: sums.area, border: sums.border - 2 * strips.seams, crossings };
 }
 
 class Sweep {
@@ -36,6 +48,8 @@ class Sweep {
   private readonly bx: Float64Array;
   private readonly by: Float64Array;
   private readonly slope: Float64Array;
+  /** Length of a piece per height. */
+  private readonly slant: Float64Array;
   private readonly weight: Int32Array;
   /** Distinct heights of end points, ascending. */
   private readonly heights: Float64Array;
@@ -51,10 +65,8 @@ class Sweep {
   /** Scratch of a slab: the least position at the top from a piece on. */
   private least = new Float64Array(0);
 
-  private areaSum = 0;
-  private areaRest = 0;
-  private border = 0;
-  private crossings = 0;
+  private readonly sums = new AreaSums();
+  private readonly run: CrossedRun;
 
   constructor(pieces: Pieces) {
     const total = pieces.ax.length;
@@ -65,6 +77,7 @@ class Sweep {
     this.bx = new Float64Array(rising);
     this.by = new Float64Array(rising);
     this.slope = new Float64Array(rising);
+    this.slant = new Float64Array(rising);
     this.weight = new Int32Array(rising);
     let n = 0;
     for (let k = 0; k < total; k++) {
@@ -75,7 +88,9 @@ class Sweep {
       this.bx[n] = up > 0 ? pieces.bx[k] : pieces.ax[k];
       this.by[n] = up > 0 ? pieces.by[k] : pieces.ay[k];
       this.weight[n] = up > 0 ? -pieces.weight[k] : pieces.weight[k];
-      this.slope[n] = (this.bx[n] - this.ax[n]) / (this.by[n] - this.ay[n]);
+      const slope = (this.bx[n] - this.ax[n]) / (this.by[n] - this.ay[n]);
+      this.slope[n] = slope;
+      this.slant[n] = Math.sqrt(1 + slope * slope);
       n++;
     }
     const ends = new Float64Array(2 * rising);
@@ -95,15 +110,16 @@ class Sweep {
     this.active = new Int32Array(64);
     this.low = new Float64Array(64);
     this.high = new Float64Array(64);
+    this.run = new CrossedRun(this.weight, this.slant, this.sums);
   }
 
-  run(): Swept {
+  result(): Swept {
     for (let k = 0; k + 1 < this.heights.length; k++) {
       this.leave(this.heights[k]);
       this.enter(this.first[k], this.first[k + 1]);
       this.slab(this.heights[k], this.heights[k + 1]);
     }
-    return { area: Math.abs(this.areaSum + this.areaRest), border: this.border, crossings: this.crossings };
+    return { area: this.sums.area, border: this.sums.border, crossings: this.run.crossings };
   }
 
   /** Drops the pieces that end at `height`; the others begin the next slab where they ended the last. */
@@ -176,20 +192,20 @@ class Sweep {
       if (before === 0) {
         if (winding !== 0) {
           area -= low[i] + x;
-          border += slant(this.slope[piece]);
+          border += this.slant[piece];
         }
       } else if (winding === 0) {
         area += low[i] + x;
-        border += slant(this.slope[piece]);
+        border += this.slant[piece];
       }
     }
-    if (ordered) this.addStrip((area * height) / 2, border * height);
+    if (ordered) this.sums.add((area * height) / 2, border * height);
     else this.crossedSlab(height);
   }
 
   /** A slab in which pieces change places. Leaves `active` and `high` in the order of the top. */
   private crossedSlab(height: number): void {
-    const { active, low, high, weight, slope } = this;
+    const { active, low, high, weight, slant } = this;
     const { count } = this;
     if (this.least.length < count + 1) this.least = new Float64Array(2 * count + 1);
     const { least } = this;
@@ -203,122 +219,18 @@ class Sweep {
       if (greatest > least[i + 1]) continue;
       // Nothing in from..i changes places with anything outside.
       if (i > from) {
-        winding = this.sweepAlone(from, i + 1, height, winding);
+        winding = this.run.sweep(active, low, high, from, i + 1, height, winding);
       } else {
         const piece = active[i];
         const before = winding;
         winding += weight[piece];
         if ((before === 0) !== (winding === 0))
-          this.addStrip(((before === 0 ? -1 : 1) * (low[i] + high[i]) * height) / 2, slant(slope[piece]) * height);
+          this.sums.add(((before === 0 ? -1 : 1) * (low[i] + high[i]) * height) / 2, slant[piece] * height);
       }
       from = i + 1;
     }
   }
-
-  /** Sweeps the pieces from..to, which change places with each other, alone; returns the winding to their right. */
-  private sweepAlone(from: number, to: number, height: number, winding: number): number {
-    const { active, low, high, weight, slope } = this;
-    const count = to - from;
-    const run: Run = {
-      low: low.slice(from, to),
-      high: high.slice(from, to),
-      weight: Int32Array.from(active.subarray(from, to), (piece) => weight[piece]),
-      slant: Float64Array.from(active.subarray(from, to), (piece) => slant(slope[piece])),
-    };
-    this.sweepRun(run, order(count), 0, 1, height, winding, 0);
-    const atTop = order(count).sort((p, q) => run.high[p] - run.high[q] || p - q);
-    const pieces = active.slice(from, to);
-    let after = winding;
-    for (let i = 0; i < count; i++) {
-      active[from + i] = pieces[atTop[i]];
-      high[from + i] = run.high[atTop[i]];
-      after += run.weight[i];
-    }
-    return after;
-  }
-
-  /**
-   * The part of a run between the shares `begin` and `end` of the slab's height. `sorted`: its pieces from left to right at `begin`.
-   * Long runs are halved, so that most pairs need not be looked at.
-   */
-  private sweepRun(run: Run, sorted: number[], begin: number, end: number, height: number, winding: number, depth: number): void {
-    const at = (piece: number, share: number): number => run.low[piece] + (run.high[piece] - run.low[piece]) * share;
-    if (sorted.length > LONG_RUN && depth < 48) {
-      const half = (begin + end) / 2;
-      const middle = sorted.slice().sort((p, q) => at(p, half) - at(q, half));
-      this.sweepRuns(run, sorted, begin, half, height, winding, depth + 1);
-      this.sweepRuns(run, middle, half, end, height, winding, depth + 1);
-      return;
-    }
-    const shares = [begin, end];
-    for (let i = 0; i < sorted.length; i++)
-      for (let j = i + 1; j < sorted.length; j++) {
-        const before = at(sorted[j], begin) - at(sorted[i], begin);
-        const after = at(sorted[j], end) - at(sorted[i], end);
-        if (after >= 0) continue;
-        const share = begin + (end - begin) * (Math.max(before, 0) / (Math.max(before, 0) - after));
-        if (share > begin && share < end) shares.push(share);
-        this.crossings++;
-      }
-    shares.sort((p, q) => p - q);
-    const current = sorted.slice();
-    for (let k = 0; k + 1 < shares.length; k++) {
-      const step = shares[k + 1] - shares[k];
-      if (step === 0) continue;
-      const middle = (shares[k] + shares[k + 1]) / 2;
-      current.sort((p, q) => at(p, middle) - at(q, middle));
-      let now = winding;
-      for (const piece of current) {
-        const before = now;
-        now += run.weight[piece];
-        if ((before === 0) !== (now === 0))
-          this.addStrip((before === 0 ? -1 : 1) * at(piece, middle) * step * height, run.slant[piece] * step * height);
-      }
-    }
-  }
-
-  /** Takes the pieces apart into the shortest runs that change places among themselves only. */
-  private sweepRuns(run: Run, sorted: number[], begin: number, end: number, height: number, winding: number, depth: number): void {
-    const at = (piece: number): number => run.low[piece] + (run.high[piece] - run.low[piece]) * end;
-    const least = new Float64Array(sorted.length + 1);
-    least[sorted.length] = Infinity;
-    for (let i = sorted.length - 1; i >= 0; i--) least[i] = Math.min(least[i + 1], at(sorted[i]));
-    let now = winding;
-    let greatest = -Infinity;
-    let from = 0;
-    for (let i = 0; i < sorted.length; i++) {
-      greatest = Math.max(greatest, at(sorted[i]));
-      if (greatest > least[i + 1]) continue;
-      const part = sorted.slice(from, i + 1);
-      this.sweepRun(run, part, begin, end, height, now, depth);
-      for (const piece of part) now += run.weight[piece];
-      from = i + 1;
-    }
-  }
-
-  /** Adds to the area (compensated: Neumaier, 1974) and to the border. */
-  private addStrip(area: number, border: number): void {
-    const sum = this.areaSum + area;
-    this.areaRest += Math.abs(this.areaSum) >= Math.abs(area) ? this.areaSum - sum + area : area - sum + this.areaSum;
-    this.areaSum = sum;
-    this.border += border;
-  }
 }
-
-/** Pieces of one slab that change places: positions at the slab's bottom and top. */
-interface Run {
-  low: Float64Array;
-  high: Float64Array;
-  weight: Int32Array;
-  /** Length of the piece per height. */
-  slant: Float64Array;
-}
-
-const LONG_RUN = 32;
-
-const slant = (slope: number): number => Math.sqrt(1 + slope * slope);
-
-const order = (count: number): number[] => Array.from({ length: count }, (_, k) => k);
 
 /** Index of `value` in ascending `values`, which hold it. */
 function indexOf(values: Float64Array, value: number): number {

@@ -4,6 +4,7 @@ import { measures } from "../../src/geometry/measures.js";
 import { silhouette } from "../../src/geometry/silhouette.js";
 import { surfaceMesh } from "../../src/geometry/surface-mesh.js";
 import type { Vector3 } from "../../src/geometry/vector.js";
+import { car } from "./car.js";
 import {
   bodyOf,
   box,
@@ -35,8 +36,8 @@ function near(value: number, truth: number, share: number): void {
 // Closed forms: projected areas of the smooth bodies; tolerances are what inscribed facets leave out.
 describe("closed forms", () => {
   it("sphere: pi r^2 from everywhere", () => {
-    const mesh = meshOf(sphere(1, 96));
-    for (const direction of directions(12)) near(silhouette(mesh, direction).area, Math.PI, 1e-3);
+    const mesh = meshOf(sphere(1, 64));
+    for (const direction of directions(12)) near(silhouette(mesh, direction).area, Math.PI, 2e-3);
   });
 
   it("ellipsoid: pi sqrt((bc nx)^2 + (ca ny)^2 + (ab nz)^2), also at 10 degrees of yaw", () => {
@@ -48,15 +49,15 @@ describe("closed forms", () => {
   });
 
   it("torus edge-on: 4 R r + pi r^2, where a sum over facets gives 2", () => {
-    const shape = torus(1, 0.25, 128);
+    const shape = torus(1, 0.25, 96);
     const mesh = meshOf(shape);
-    near(silhouette(mesh, [1, 0, 0]).area, 1.19634954, 4e-4);
-    near(silhouette(mesh, [0, 0, 1]).area, Math.PI, 4e-4);
+    near(silhouette(mesh, [1, 0, 0]).area, 1.19634954, 8e-4);
+    near(silhouette(mesh, [0, 0, 1]).area, Math.PI, 8e-4);
     expect(facetSum(shape, [1, 0, 0])).toBeCloseTo(2, 2);
   });
 
   it("capsule: pi r^2 + 2 r L sin t", () => {
-    const mesh = meshOf(capsule(0.3, 1.2, 48));
+    const mesh = meshOf(capsule(0.3, 1.2, 32));
     for (const t of [0, 30, 60, 90])
       near(
         silhouette(mesh, [Math.sin(t * deg), 0, Math.cos(t * deg)]).area,
@@ -160,8 +161,55 @@ describe("surfaces that are no skin of a solid", () => {
     }
   });
 
+  it("a large body whose triangles hardly share vertices, within the error it states", () => {
+    const { set } = car(40_000, 2);
+    const loose = new Int32Array(set.positions.slice().buffer);
+    const next = random(6);
+    // A few units in the last place, as files have them whose triangles were transformed one by one.
+    for (let k = 0; k < loose.length; k++) if (set.positions[k] !== 0) loose[k] += Math.floor(5 * next()) - 2;
+    const mesh = surfaceMesh({ ...set, positions: new Float32Array(loose.buffer) });
+    expect(mesh.vertices.length).toBeGreaterThan((2 * set.positions.length) / 3 / 3);
+    const reference = silhouette(surfaceMesh(set), [1, 0, 0]);
+    const found = silhouette(mesh, [1, 0, 0]);
+    expect(found.edges).toBeLessThan(20_000);
+    expect(Math.abs(found.area - reference.area)).toBeLessThan(found.error);
+    expect(found.error).toBeLessThan(1e-3);
+  });
+
   it("refuses a direction without a length", () => {
     expect(() => areaOf(box([0, 0, 0], [1, 1, 1]), [0, 0, 0])).toThrow("The direction of view (0 0 0) has no length.");
+  });
+});
+
+describe("strips", () => {
+  // Many bodies side by side and behind each other: a level line meets far more edges than are swept at once.
+  it("gives what adding up rows of boxes gives", () => {
+    const rows = Array.from({ length: 300 }, (_, k) =>
+      shifted(box([0, 0, 0], [1, 0.5, 0.75]), [k % 7, 0.75 * (k % 100), Math.floor(k / 100)]),
+    );
+    const body = joined(...rows);
+    // Each of 300 boxes is seen: 100 columns, 3 rows, none hides another along x.
+    expect(areaOf(body, [1, 0, 0])).toBeCloseTo(300 * 0.5 * 0.75, 9);
+    expect(silhouette(meshOf(body), [1, 0, 0]).outline).toBeCloseTo(300 * 2.5, 6);
+  });
+
+  it("gives what one sweep gives", () => {
+    const next = random(21);
+    const bodies = Array.from({ length: 120 }, () => sphere(0.05 + 0.2 * next(), 6, [next(), 4 * next(), 2 * next()]));
+    const all = surfaceMesh(bodyOf({ shape: joined(...bodies) }));
+    const { area, outline } = silhouette(all, [1, 0, 0]);
+    // Stretched along the sweep the same edges are met by fewer level lines; areas stretch exactly.
+    const stretched = silhouette(
+      meshOf(
+        joined(...bodies.map((body, k) => shifted(body, [0, 0, 0]).map((value, at) => (at % 3 === 2 ? value + 8 * k : value)))),
+      ),
+      [1, 0, 0],
+    );
+    const alone = bodies.reduce((sum, body) => sum + areaOf(body, [1, 0, 0]), 0);
+    expect(Math.abs(stretched.area - alone)).toBeLessThan(stretched.error);
+    expect(stretched.error).toBeLessThan(0.02);
+    expect(area).toBeLessThan(alone);
+    expect(outline).toBeLessThan(stretched.outline);
   });
 });
 
@@ -217,7 +265,7 @@ describe("properties", () => {
 
   it("measures the outline", () => {
     expect(silhouette(meshOf(box([0, 0, 0], [4, 2, 1])), [1, 0, 0]).outline).toBeCloseTo(6, 9);
-    near(silhouette(meshOf(sphere(1, 180)), [0.3, 0.4, 0.5]).outline, 2 * Math.PI, 1e-3);
+    near(silhouette(meshOf(sphere(1, 100)), [0.3, 0.4, 0.5]).outline, 2 * Math.PI, 1e-3);
   });
 });
 
