@@ -1,5 +1,5 @@
 import { nextInTriangle } from "./edges.js";
-import { nearestDistances } from "./nearest.js";
+import { nearestDistance, nearestDistances } from "./nearest.js";
 import { silhouette } from "./silhouette.js";
 import type { SurfaceMesh } from "./surface-mesh.js";
 import type { Box, Vector3 } from "./vector.js";
@@ -17,6 +17,8 @@ export interface Mirror {
 
 /** Vertices that are mirrored: one in each cell of a grid, so that fine and coarse regions count alike. */
 const MOST_SAMPLES = 6000;
+/** Images far from the surface whose distance is measured exactly. */
+const FARTHEST = 8;
 /** Shares of the body's greatest extent: a mirrored body may be off by this (2 mm on a car), a cut lies this close to its plane. */
 const SAME = 5e-4;
 const IN_PLANE = 1e-4;
@@ -57,26 +59,34 @@ function sideArea(mesh: SurfaceMesh, axis: number): number {
 }
 
 function mirrorDistance(mesh: SurfaceMesh, bounds: Box, axis: number, plane: number, length: number): number {
-  let points = samples(mesh.vertices, bounds.min, length);
-  for (let at = axis; at < points.length; at += 3) points[at] = 2 * plane - points[at];
-  let worst = 0;
-  for (const reach of [length / 200, length / 20, length / 3, 4 * length]) {
-    const distances = nearestDistances(mesh, points, reach);
-    const beyond: number[] = [];
-    distances.forEach((distance, k) => {
-      if (distance === Infinity) beyond.push(k);
-      else worst = Math.max(worst, distance);
-    });
-    if (beyond.length === 0) return worst;
-    // Far from the surface the grid cannot help; an even choice of the rest finds the greatest distance well enough.
-    const kept = beyond.filter((_, k) => k % Math.ceil(beyond.length / 200) === 0);
-    const next = new Float64Array(3 * kept.length);
-    kept.forEach((k, to) => {
-      next.set(points.subarray(3 * k, 3 * k + 3), 3 * to);
-    });
-    points = next;
-  }
-  return worst;
+  const vertices = samples(mesh.vertices, bounds.min, length);
+  const images = vertices.slice();
+  for (let at = axis; at < images.length; at += 3) images[at] = 2 * plane - images[at];
+  const distances = nearestDistances(mesh, images, length / 200);
+  const beyond: number[] = [];
+  distances.forEach((distance, k) => {
+    if (distance === Infinity) beyond.push(k);
+  });
+  if (beyond.length === 0) return distances.reduce((worst, distance) => Math.max(worst, distance), 0);
+  // Far off, the distance to the other samples tells which images are worth a look at every triangle.
+  const step = Math.ceil(beyond.length / 400);
+  const far = beyond
+    .filter((_, k) => k % step === 0)
+    .map((k) => ({ at: 3 * k, rough: roughDistance(vertices, images, 3 * k) }))
+    .sort((a, b) => b.rough - a.rough)
+    .slice(0, FARTHEST);
+  return far.reduce((worst, { at }) => Math.max(worst, nearestDistance(mesh, images, at)), 0);
+}
+
+/** Squared distance of the image at `at` to the nearest of the points. */
+function roughDistance(points: Float64Array, images: Float64Array, at: number): number {
+  let least = Infinity;
+  for (let k = 0; k < points.length; k += 3)
+    least = Math.min(
+      least,
+      (points[k] - images[at]) ** 2 + (points[k + 1] - images[at + 1]) ** 2 + (points[k + 2] - images[at + 2]) ** 2,
+    );
+  return least;
 }
 
 /** 3 per sample: the first vertex of each cell of a grid, coarse enough that there are few. */

@@ -40,6 +40,34 @@ export function nearestDistances(
   return squares.map((square) => (square <= reach * reach ? Math.sqrt(square) : Infinity));
 }
 
+/** Distance of the point at `points[at, at + 3)` to the nearest triangle, however far; looks at every triangle. Infinity without any. */
+export function nearestDistance(
+  { vertices, corners }: { vertices: Float32Array; corners: Uint32Array },
+  points: Float64Array,
+  at: number,
+): number {
+  let square = Infinity;
+  let distance = Infinity;
+  for (let h = 0; h < corners.length; h += 3) {
+    const a = 3 * corners[h];
+    const b = 3 * corners[h + 1];
+    const c = 3 * corners[h + 2];
+    // Farther off in one coordinate than the best so far: cannot be nearer.
+    let outside = false;
+    for (let axis = 0; axis < 3; axis++) {
+      const p = points[at + axis];
+      if (Math.max(vertices[a + axis], vertices[b + axis], vertices[c + axis]) < p - distance) outside = true;
+      if (Math.min(vertices[a + axis], vertices[b + axis], vertices[c + axis]) > p + distance) outside = true;
+    }
+    if (outside) continue;
+    const next = squaredDistance(points, at, vertices, a, b, c);
+    if (next >= square) continue;
+    square = next;
+    distance = Math.sqrt(square);
+  }
+  return distance;
+}
+
 interface Grid {
   cell: number;
   low: number[];

@@ -23,8 +23,11 @@ export function wheelPieces(mesh: SurfaceMesh, parts: number[]): WheelPiece[][] 
 /** Triangle numbers of each of the parts. */
 function trianglesOf({ partOf }: SurfaceMesh, parts: number[]): number[][] {
   const lists: number[][] = parts.map(() => []);
-  const listOf = new Map(parts.map((part, k) => [part, lists[k]]));
-  for (let t = 0; t < partOf.length; t++) listOf.get(partOf[t])?.push(t);
+  const listOf = new Int32Array(1 << 16).fill(-1);
+  parts.forEach((part, k) => {
+    listOf[part] = k;
+  });
+  for (let t = 0; t < partOf.length; t++) if (listOf[partOf[t]] >= 0) lists[listOf[partOf[t]]].push(t);
   return lists;
 }
 
