@@ -30,12 +30,7 @@ function transform(real: Float64Array, imaginary: Float64Array): void {
       [imaginary[index], imaginary[reversed]] = [imaginary[reversed]!, imaginary[index]!];
     }
   }
-  const cosines = new Float64Array(size / 2);
-  const sines = new Float64Array(size / 2);
-  for (let index = 0; index < size / 2; index += 1) {
-    cosines[index] = Math.cos((2 * Math.PI * index) / size);
-    sines[index] = -Math.sin((2 * Math.PI * index) / size);
-  }
+  const { cosines, sines } = circleOf(size);
   for (let half = 1; half < size; half *= 2) {
     const stride = size / (2 * half);
     for (let start = 0; start < size; start += 2 * half) {
@@ -53,4 +48,17 @@ function transform(real: Float64Array, imaginary: Float64Array): void {
       }
     }
   }
+}
+
+let lastCircle: { cosines: Float64Array; sines: Float64Array } = { cosines: new Float64Array(0), sines: new Float64Array(0) };
+
+/** cos and -sin of half a circle in `size / 2` steps. The last one is kept: one judgement transforms many series of one length. */
+function circleOf(size: number): typeof lastCircle {
+  if (lastCircle.cosines.length !== size / 2) {
+    lastCircle = {
+      cosines: Float64Array.from({ length: size / 2 }, (_, index) => Math.cos((2 * Math.PI * index) / size)),
+      sines: Float64Array.from({ length: size / 2 }, (_, index) => -Math.sin((2 * Math.PI * index) / size)),
+    };
+  }
+  return lastCircle;
 }

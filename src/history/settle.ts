@@ -25,6 +25,8 @@ interface Asked {
 
 /** Fewer rows than this hold no ten batches of five: nothing can be said. */
 export const fewestRows = 50;
+/** A history that wanders within this part of the target is as good as constant. */
+const farInside = 3;
 const defaultRunaway = 1e6;
 /** Longer histories are judged by means over a few rows: the interval hardly changes, the time does. */
 const mostRows = 16_384;
@@ -126,8 +128,9 @@ function withoutIdleCut(values: Float64Array, cut: number, judged: WindowMean): 
 
 /** The usual case: a start-up was found. */
 function window(values: Float64Array, cut: number, asked: Asked): Settling {
-  let start = withoutIdleCut(values, cut, windowMean(values, cut, asked.target, asked.confidence));
-  let judged = windowMean(values, start, asked.target, asked.confidence);
+  const first = windowMean(values, cut, asked.target, asked.confidence);
+  let start = withoutIdleCut(values, cut, first);
+  let judged = start === cut ? first : windowMean(values, start, asked.target, asked.confidence);
   // A slow tail that the start-up rule left in: cut a quarter at a time, never below a third of all rows.
   while (judged.drifts) {
     const next = start + Math.ceil((values.length - start) / 4);
@@ -153,8 +156,10 @@ function lateStart(values: Float64Array, cut: number, asked: Asked): Settling {
   for (let step = 0; step <= steps && latest >= half; step += 1) {
     const judged = windowMean(values, half + Math.floor(((latest - half) * step) / steps), asked.target, asked.confidence);
     const band = bandOf(judged);
-    if (calmsDown(judged.samples) && band <= mattering(asked.target, judged.mean) && !(best !== null && best.band <= band))
-      best = { judged, band };
+    const wanted = mattering(asked.target, judged.mean);
+    // One that wanders must stay far inside the target to count; one that calms down must only be inside.
+    const inside = band <= (calmsDown(judged.samples) ? wanted : wanted / farInside);
+    if (inside && !(best !== null && best.band <= band)) best = { judged, band };
   }
   if (best !== null) {
     const { judged, band } = best;

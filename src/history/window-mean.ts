@@ -57,6 +57,7 @@ export function windowMean(values: Float64Array, firstRow: number, target: numbe
   let effectiveSamples = longRun > 0 ? Math.min(count, (count * spread) / longRun) : count;
   // A few repetitions of a slow swing are no more evidence than their number.
   if (period !== null && samples === window) effectiveSamples = Math.min(effectiveSamples, count / period.rows);
+  effectiveSamples = Math.max(1, effectiveSamples);
   const trend = trendOf(samples);
   const change = trend.slope * (count - 1);
   const residuals = withoutTrend(samples);
@@ -104,7 +105,7 @@ function longRunVariance(values: Float64Array): number {
 /**
  * Bound for a history that approaches its end value (steady iterations near convergence): the largest distance of a sample from the mean
  * plus the way still to go, taken from the means of three thirds: a change that shrinks from third to third by a factor q goes on as the
- * geometric series q / (1 - q). Infinity when the change does not shrink.
+ * geometric series q / (1 - q), but at most at its rate for one more window. Infinity for fewer than three samples.
  */
 export function bandOf({ samples, mean: centre }: WindowMean): number {
   let farthest = 0;
@@ -117,7 +118,8 @@ export function bandOf({ samples, mean: centre }: WindowMean): number {
   const [before, now] = [second - first, last - second];
   if (now === 0 || before * now < 0) return farthest + Math.abs(now);
   const factor = now / before;
-  return factor < 1 ? farthest + (Math.abs(now) * factor) / (1 - factor) : Number.POSITIVE_INFINITY;
+  const toGo = factor < 1 ? factor / (1 - factor) : Number.POSITIVE_INFINITY;
+  return farthest + Math.abs(now) * Math.min(3, toGo);
 }
 
 /** The spread of the second half is at most half that of the first: a history on its way to a constant, not one that wanders. */
