@@ -33,7 +33,8 @@ export function textBytes(bytes: Uint8Array, name: string): Uint8Array {
       remedy: "Read the suffixed file beside it if there is one, or run the case again.",
     });
   }
-  const nul = text.indexOf(0);
+  // Of a Buffer, because its search is many times quicker than that of a plain byte array.
+  const nul = Buffer.from(text.buffer, text.byteOffset, text.length).indexOf(0);
   if (nul >= 0) {
     throw inputProblem({
       code: "nul-bytes",
