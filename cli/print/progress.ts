@@ -16,9 +16,12 @@ export function progress(print: Printer): Progress {
 
 const label = (path: string): string => path.split("/").at(-1) ?? path;
 
+/** A half-width as large as the mean itself tells nothing yet. */
+const tellingWidth = (cd: number, halfWidth: number | null): string =>
+  halfWidth === null || halfWidth > Math.abs(cd) ? "" : ` ± ${fixed(halfWidth, 4)}`;
+
 function iterationText(event: Extract<RunEvent, { event: "iteration" }>): string {
-  const cd =
-    event.cd === null ? "" : `  Cd ${fixed(event.cd, 4)}${event.halfWidth === null ? "" : ` ± ${fixed(event.halfWidth, 4)}`}`;
+  const cd = event.cd === null ? "" : `  Cd ${fixed(event.cd, 4)}${tellingWidth(event.cd, event.halfWidth)}`;
   const left = event.secondsLeft === null ? "" : `  ${duration(event.secondsLeft)} left at most`;
   return `iteration ${event.iteration} of ${event.most}${cd}${left}`;
 }
