@@ -5,6 +5,8 @@ import type { History } from "./history.js";
 const runawayCoefficient = 1e3;
 /** Growth of the forces over the first half that only a diverged run shows. */
 const runawayGrowth = 1e6;
+/** Ratio of the largest to the smallest step that matters; printed times of few digits make small ones. */
+const unevenSteps = 1.5;
 /** References of a well-known example case of the platform; on another body they are left-overs. */
 const exampleReference = { magUInf: 20, lRef: 1.42, Aref: 0.75 };
 
@@ -14,7 +16,7 @@ export function checkHistory(history: History): Finding[] {
   if (history.layout !== "coefficients" && history.layout !== "forces" && history.layout !== "moments") return [];
   const findings = [...checkZeros(history), ...checkFinite(history), ...checkRunaway(history)];
   if (findings.length > 0) return findings;
-  return [...checkIdentities(history), ...checkReference(history), ...checkSign(history)];
+  return [...checkIdentities(history), ...checkReference(history), ...checkSign(history), ...checkSteps(history)];
 }
 
 function checkZeros(history: History): Finding[] {
@@ -133,6 +135,27 @@ function checkSign(history: History): Finding[] {
       "warning",
       `the drag coefficient of ${history.object} is negative at the end (${(sum / tail.length).toPrecision(3)})`,
       "On a whole vehicle this means a wrong drag direction or a diverging run; on a single part it can be right.",
+    ),
+  ];
+}
+
+/** Means count rows; where the rows of the second half are unevenly spaced they are no means over time. */
+function checkSteps(history: History): Finding[] {
+  const time = history.columns[0]!.values;
+  let least = Number.POSITIVE_INFINITY;
+  let most = 0;
+  for (let row = Math.max(1, Math.floor(history.rows / 2)); row < history.rows; row += 1) {
+    const step = time[row]! - time[row - 1]!;
+    if (step < least) least = step;
+    if (step > most) most = step;
+  }
+  if (!(most > unevenSteps * least)) return [];
+  return [
+    finding(
+      "uneven-steps",
+      "note",
+      `the rows of ${history.object} are unevenly spaced (steps from ${least.toPrecision(3)} to ${most.toPrecision(3)}): means count rows, not time`,
+      "Write at a fixed interval if means over time are wanted.",
     ),
   ];
 }

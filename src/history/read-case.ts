@@ -3,6 +3,7 @@ import { readdir, realpath } from "node:fs/promises";
 import { join, relative, sep } from "node:path";
 import { inputProblem, Problem } from "../errors.js";
 import { readTables } from "../openfoam/read-table.js";
+import { shownText } from "../openfoam/table-bytes.js";
 import type { History } from "./history.js";
 import { type Piece, pieceOf } from "./pieces.js";
 import { readBytes, sharedTableName, tablePath } from "./read-file.js";
@@ -69,7 +70,7 @@ function moveRefused(groups: Map<string, { object: string; table: string; pieces
 /** `postProcessing/[region/]object/time/file` gives `[region/]object`; `object/time/file` gives `object`. */
 function objectName(path: string): string {
   const folders = path.split("/").slice(0, -2);
-  return (folders[0] === "postProcessing" ? folders.slice(1) : folders).join("/");
+  return shownText((folders[0] === "postProcessing" ? folders.slice(1) : folders).join("/"));
 }
 
 async function findTables(casePath: string): Promise<string[]> {

@@ -2,6 +2,7 @@ import { readFile } from "node:fs/promises";
 import { basename, dirname } from "node:path";
 import { inputProblem } from "../errors.js";
 import { readTables } from "../openfoam/read-table.js";
+import { shownText } from "../openfoam/table-bytes.js";
 import { checkHistory } from "./checks.js";
 import type { History } from "./history.js";
 import { type Piece, pieceOf } from "./pieces.js";
@@ -25,8 +26,8 @@ export function tablePath(path: string): TablePath {
   const isTime = timeName.test(folder);
   const name = tableFileName.exec(basename(path));
   return {
-    object: isTime ? basename(dirname(dirname(path))) : folder,
-    table: name?.[1] ?? basename(path),
+    object: shownText(isTime ? basename(dirname(dirname(path))) : folder),
+    table: shownText(name?.[1] ?? basename(path)),
     folderTime: isTime ? Number(folder) : Number.NaN,
     suffixed: name?.[2] !== undefined,
   };

@@ -1,4 +1,4 @@
-import { textBytes } from "./table-bytes.js";
+import { shownText, textBytes } from "./table-bytes.js";
 
 const newline = 10;
 /** No line of the solver says more; longer ones (a progress bar, a damaged file) are cut. */
@@ -34,7 +34,7 @@ export function* logLines(log: Uint8Array | string, name: string): Generator<Log
     const back = text.lastIndexOf("\r");
     if (back >= 0) text = text.slice(back + 1);
     if (text.startsWith("[")) text = text.replace(/^\[\d+\] ?/, "");
-    yield { text, number };
+    yield { text: shownText(text), number };
     at = end + 1;
   }
 }

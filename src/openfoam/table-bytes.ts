@@ -55,6 +55,13 @@ export function textBytes(bytes: Uint8Array, name: string): Uint8Array {
   return marked ? text.subarray(3) : text;
 }
 
-/** The text of `bytes[from..to)`. */
+/** Control characters other than tab and line ends: on a terminal they could move the cursor or change what was printed before. */
+// biome-ignore lint/suspicious/noControlCharactersInRegex: they are what is looked for
+const controls = /[\u0000-\u0008\u000b\u000c\u000e-\u001f\u007f-\u009f]/g;
+
+/** Text from outside that is going to be shown: every control character is replaced by a question mark in a box. */
+export const shownText = (text: string): string => text.replace(controls, "\ufffd");
+
+/** The text of `bytes[from..to)`, fit to be shown. */
 export const textLine = (bytes: Uint8Array, from: number, to: number): string =>
-  Buffer.from(bytes.buffer, bytes.byteOffset + from, to - from).toString("utf8");
+  shownText(Buffer.from(bytes.buffer, bytes.byteOffset + from, to - from).toString("utf8"));

@@ -72,6 +72,16 @@ describe("checks of the values", () => {
     expect(codes(checkHistory(history({ Cd: steady(-0.3) })))).toEqual(["warning negative-drag"]);
   });
 
+  test("rows at uneven steps: means count rows, not time", () => {
+    const uneven = history({ Cd: steady(0.3) });
+    uneven.columns[0]!.values.forEach((time, row, all) => {
+      all[row] = time ** 2;
+    });
+    const found = checkHistory(uneven);
+    expect(codes(found)).toEqual(["note uneven-steps"]);
+    expect(found[0]!.message).toBe("the rows of total are unevenly spaced (steps from 101 to 199): means count rows, not time");
+  });
+
   test("other tables are not judged by these rules", () => {
     expect(checkHistory(history({ Ux: steady(0) }, { layout: "residuals" }))).toEqual([]);
   });

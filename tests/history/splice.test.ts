@@ -230,7 +230,7 @@ describe("one file", () => {
 });
 
 describe("a known run, torn into pieces at random", () => {
-  test("restarts anywhere, with any overlap, give the known run", () => {
+  test("restarts anywhere, with any overlap, give the known run (seed 7)", () => {
     fc.assert(
       fc.property(
         fc.integer({ min: 60, max: 300 }),
@@ -249,11 +249,11 @@ describe("a known run, torn into pieces at random", () => {
           expect(history.findings).toEqual([]);
         },
       ),
-      { seed: 7, numRuns: 300 },
+      { seed: 7, numRuns: 150 },
     );
   });
 
-  test("a text cut anywhere and runs appended anywhere: the rows that remain are the known ones, and what was lost is named", () => {
+  test("a text cut anywhere and runs appended anywhere: the rows that remain are the known ones, and what was lost is named (seed 8)", () => {
     const header = "# Force and moment coefficients\n# Aref : 2.1\n# Time \tCd\tCl\n";
     const rows = (from: number, to: number): string =>
       range(from, to)

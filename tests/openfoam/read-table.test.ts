@@ -378,6 +378,12 @@ describe("damaged and unusual files", () => {
     expect(refusal(gzipSync(good).subarray(0, 40))).toMatchObject({ code: "damaged-gzip" });
   });
 
+  test("control characters in names and words cannot reach a terminal", () => {
+    const table = read("# y+ ()\n# note : \u001b[2Jgone\n# Time \tpatch\tmin\tmax\taverage\n1\tbo\u001b[31mdy\u009b\t1\t2\t3\n");
+    expect(table.words[0]!.values).toEqual(["bo\ufffd[31mdy\ufffd"]);
+    expect(table.header.note).toBe("\ufffd[2Jgone");
+  });
+
   test("hostile headers and rows take time that grows with their length", () => {
     const long = 100_000;
     const header = [
