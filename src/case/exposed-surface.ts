@@ -16,7 +16,7 @@ const SURFACE = 1;
 const AIR = 2;
 
 /** Bytes of the grid; finer cells tell no more than a prediction of cell counts needs. */
-const mostCells = 24_000_000;
+const mostCells = 8_000_000;
 /** Empty cells around the body that the air comes in through. */
 const margin = 2;
 /** Spacing of the points that a triangle is sampled with, in cells: no cell side is crossed unseen (see `exposedSurface`). */

@@ -30,19 +30,19 @@ export function halfOf(study: Study, bodies: VariantBody[], conditions: Conditio
       code: "half-with-yaw",
       message: `Half a body cannot be computed at yaw (condition ${yawed.name}): the flow has no plane of symmetry.`,
       where,
-      remedy: "Give whole bodies and set mesh.half to no, or set yaw to 0.",
+      remedy: "Give whole bodies and set mesh.half to false, or set yaw to 0.",
     });
   if (wish === true && crooked)
     throw inputProblem({
       code: "not-symmetric",
-      message: `mesh.half is yes, but variant '${crooked.variant}' is not mirror symmetric: the two sides differ by up to ${(1000 * crooked.survey.symmetry.deviation).toPrecision(2)} mm.`,
+      message: `mesh.half is true, but variant '${crooked.variant}' is not mirror symmetric: the two sides differ by up to ${(1000 * crooked.survey.symmetry.deviation).toPrecision(2)} mm.`,
       where,
-      remedy: "Compute the whole body (mesh.half: no), or make both sides alike.",
+      remedy: "Compute the whole body (mesh.half: false), or make both sides alike.",
     });
   if (wish === false && halves.length > 0)
     throw inputProblem({
       code: "half-body",
-      message: `mesh.half is no, but variant '${halves[0]!.variant}' is half a body: all of it lies on one side of a plane.`,
+      message: `mesh.half is false, but variant '${halves[0]!.variant}' is half a body: all of it lies on one side of a plane.`,
       where,
       remedy: "Set mesh.half to auto, or give the whole body.",
     });

@@ -65,7 +65,7 @@ function requirePlane(study: Study, frame: StudyFrame, { survey, variant }: Vari
       code: "variant-off-centre",
       message: `The mid-plane of variant '${variant}' lies ${millimetres(Math.abs(off))} beside the baseline's: half models would be cut at different places.`,
       where,
-      remedy: "Move the body onto the baseline's mid-plane, or set mesh.half to no.",
+      remedy: "Move the body onto the baseline's mid-plane, or set mesh.half to false.",
     });
   if (survey.symmetry.kind === "half" && Math.sign(min[1] + max[1]) !== frame.side)
     throw inputProblem({
