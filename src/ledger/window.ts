@@ -24,7 +24,8 @@ export function windowOf(record: CaseRecord): LedgerWindow {
   const drag = settle(whole.cd, { confidence, ...(card ? { halfWidth: card.stop.drag } : {}) });
   const lift = settle(whole.cl, { confidence, ...(card ? { halfWidth: card.stop.lift } : {}) });
   const total = whole.cd.length;
-  let first = Math.max(drag.firstRow, usable(lift) ? lift.firstRow : 0);
+  // A history that has not settled may still be in its start-up: the last half is the least that must be cut to.
+  let first = Math.max(drag.firstRow, usable(lift) ? lift.firstRow : 0, usable(drag) ? 0 : Math.floor(total / 2));
   if (first >= total) first = 0;
   if (drag.period !== null) first = total - Math.max(1, Math.round(Math.floor((total - first) / drag.period) * drag.period));
   first = Math.min(Math.max(0, first), Math.max(0, total - 1));

@@ -95,7 +95,7 @@ const cases: { what: string; args: string[]; message: string[] }[] = [
     message: [
       "error: Unknown key 'groud' (did you mean 'ground'?).",
       "  at key.yaml:3:1 (groud)",
-      "  Rename it to 'ground', or remove it.",
+      "  Keys possible here: study, question, air, speed, yaw, ground, baseline, variants, body, parts, mesh, solver, stop, floor.",
     ],
   },
   {
@@ -149,7 +149,7 @@ describe("a missing solver", () => {
       cwd: folder,
       env: { PATH: empty, WM_PROJECT_DIR: "", DRAGLEDGER_OPENFOAM: "" },
     });
-    expect(JSON.parse(stdout)).toMatchObject({ schema: "dragledger/error/1", code: "no-solver" });
+    expect(JSON.parse(stdout)).toMatchObject({ schema: "dragledger/error/1", code: "solver-missing" });
     expect(stdout).toContain("apt-get install openfoam");
     expect(stderr).not.toContain("error");
     expect(code).toBe(4);
