@@ -10,7 +10,10 @@ const unevenSteps = 1.5;
 /** References of a well-known example case of the platform; on another body they are left-overs. */
 const exampleReference = { magUInf: 20, lRef: 1.42, Aref: 0.75 };
 
-/** What is wrong or odd about the values of a history, each with a real case behind it. Findings of severity error make a mean meaningless. */
+/**
+ * What is wrong or odd about the values of a history, each with a real case behind it. Findings of severity error make a mean
+ * meaningless.
+ */
 export function checkHistory(history: History): Finding[] {
   if (history.rows === 0) return [];
   if (history.layout !== "coefficients" && history.layout !== "forces" && history.layout !== "moments") return [];
@@ -75,7 +78,9 @@ function largest(values: Float64Array): number {
   return most;
 }
 
-/** Cl(f) + Cl(r) = Cl, and total = pressure + viscous + porous, in the last row: fails when columns are not what they are called. */
+/**
+ * Cl(f) + Cl(r) = Cl, and total = pressure + viscous + porous, in the last row: fails when columns are not what they are called.
+ */
 function checkIdentities(history: History): Finding[] {
   const last = (name: string): number | undefined =>
     history.columns.find((column) => column.name === name)?.values[history.rows - 1];

@@ -54,8 +54,8 @@ export interface LongRunVariance {
 }
 
 /**
- * Long-run variance by the initial sequence of Geyer ("Practical Markov chain Monte Carlo", Statist. Sci. 7, 1992): sums of neighbouring
- * autocovariances are added until one is not positive; in the monotone variant none counts more than the one before.
+ * Long-run variance by the initial sequence of Geyer ("Practical Markov chain Monte Carlo", Statist. Sci. 7, 1992): sums of
+ * neighbouring autocovariances are added until one is not positive; in the monotone variant none counts more than the one before.
  *
  * @param covariances biased autocovariances from lag 0 on
  */
@@ -75,8 +75,8 @@ export function initialSequence(covariances: Float64Array, monotone = true): Lon
 }
 
 /**
- * Long-run variance by overlapping batch means (Meketon and Schmeiser 1984): n m / ((n - m)(n - m + 1)) times the sum of the squared
- * deviations of all n - m + 1 batch means from the mean.
+ * Long-run variance by overlapping batch means (Meketon and Schmeiser 1984): n m / ((n - m)(n - m + 1)) times the sum of the
+ * squared deviations of all n - m + 1 batch means from the mean.
  *
  * @param size rows per batch, 1 <= size < n
  */

@@ -1,6 +1,6 @@
 /**
- * Sums x_i x_{i+lag} for every lag 0 .. n - 1, through the power spectrum of the series padded with zeros to at least 2 n (Wiener and
- * Khinchin): O(n log n).
+ * Sums x_i x_{i+lag} for every lag 0 .. n - 1, through the power spectrum of the series padded with zeros to at least 2 n (Wiener
+ * and Khinchin): O(n log n).
  */
 export function powerCorrelation(values: Float64Array): Float64Array {
   let size = 1;

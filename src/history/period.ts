@@ -11,8 +11,8 @@ export interface Period {
 }
 
 /**
- * Dominant period of a series: the first autocorrelation peak above 0.5 after the first zero crossing, sharpened by a parabola and by
- * the peaks at its multiples. Null when the series does not repeat. A zig-zag of two rows is a period of 2.
+ * Dominant period of a series: the first autocorrelation peak above 0.5 after the first zero crossing, sharpened by a parabola
+ * and by the peaks at its multiples. Null when the series does not repeat. A zig-zag of two rows is a period of 2.
  */
 export function dominantPeriod(values: Float64Array): Period | null {
   const rows = values.length;
@@ -76,8 +76,8 @@ export function withoutTrend(values: Float64Array): Float64Array {
 }
 
 /**
- * Means over whole periods, back from the end; a period that is not whole takes its share of the rows at its edges. The rows left over
- * at the start are not used.
+ * Means over whole periods, back from the end; a period that is not whole takes its share of the rows at its edges. The rows left
+ * over at the start are not used.
  */
 export function periodMeans(values: Float64Array, period: number): Float64Array {
   const count = Math.floor(values.length / period);

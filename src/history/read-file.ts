@@ -38,8 +38,8 @@ export const sharedTableName = (table: string, layout: string, count: number): s
   count > 1 ? `${table} (${layout})` : table;
 
 /**
- * The tables of one file as they stand, each with its findings: one history, or two (forces, moments) for a `forces.dat`. All rows of
- * the file are kept, except a cut last line and rows that a later run inside the same file replaced.
+ * The tables of one file as they stand, each with its findings: one history, or two (forces, moments) for a `forces.dat`. All
+ * rows of the file are kept, except a cut last line and rows that a later run inside the same file replaced.
  *
  * @throws Problem (input) when the file is missing, damaged or no table
  */

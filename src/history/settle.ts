@@ -11,7 +11,9 @@ export interface SettleOptions {
   halfWidth?: number;
   /** Probability of the interval, 0.95 unless told otherwise. */
   confidence?: number;
-  /** A magnitude that no healthy value reaches in the second half of a run; the default fits coefficients and forces of vehicles. */
+  /**
+   * A magnitude that no healthy value reaches in the second half of a run; the default fits coefficients and forces of vehicles.
+   */
   runaway?: number;
 }
 
@@ -34,15 +36,22 @@ const mostRows = 16_384;
 /**
  * Whether the mean of a history is known, and how well. Rows are equally spaced (iterations or time steps of one size).
  *
- * 1. Start-up: MSER-5 (`startUp`), its batches made a multiple of the period where the history repeats.
+ * 1. Start-up: MSER-5 (`startUp`), on means over whole periods where the history repeats. A cut that the rows do not ask for (those
+ *    before it look like those after it) is taken back.
  * 2. Window: the rows after it, cut further while a significant trend remains; whole periods of a limit cycle or zig-zag.
- * 3. Interval: long-run variance, the larger of Geyer's initial monotone sequence and overlapping batch means; effective samples
- *    n_eff = n s2 / (long-run variance), at most n; Student's t with n_eff - 1 degrees of freedom. On a limit cycle the samples are
- *    the means over whole periods.
- * 4. Verdict. `settled`: no drift, at least ten effective samples, half-width within the target (without a target only the first two),
- *    or a band so narrow that no mean in it can be off by more than the target. `oscillating`: the same, on a limit cycle whose swing is larger
- *    than the target: the mean is good, the flow is not steady. `not-yet`, `drifting`: more rows are needed; the mean of the last half is given for
- *    orientation. `diverged`, `zero`, `too-short`, `no-data`: no mean.
+ * 3. Interval: `windowMean`; on a limit cycle the samples are the means over whole periods.
+ * 4. Verdict. `settled`: no drift, at least ten effective samples, half-width within the target (without a target only the first
+ *    two), or all samples so close together that the mean cannot be off by more than the target. `oscillating`: the same, on a
+ *    limit cycle whose swing is larger than the target: the mean is good, the flow is not steady. `not-yet`, `drifting`: more
+ *    rows are needed; the mean is given for orientation. `diverged`, `zero`, `too-short`, `no-data`: no mean.
+ *
+ * A steady run that creeps into a constant never leaves its start-up by the rule (each later cut has less spread). It is settled
+ * when a window of at least a quarter of the rows calms down and the way seen plus the way to go (`bandOf`) is within the target;
+ * that bound is then the half-width.
+ *
+ * Measured on made-up histories (AR(1), phi 0.9, 1000 rows, no target): intervals of 95 % held the mean in 94 % of 400. With
+ * fewer than about ten correlation times in the window the correlation is underestimated and a history can look settled too
+ * early.
  *
  * A drift that changes the mean by less than half the target over the window is no drift; half of it is added to the half-width.
  * `stillNeeded` extrapolates the half-width with 1/sqrt(rows).
@@ -106,8 +115,9 @@ function cutOf(values: Float64Array): StartUp {
 }
 
 /**
- * Takes back what was cut by chance: the start-up rule follows the noise, and a window chosen for its small spread gives an interval that is too narrow. Rows
- * before the cut that look like those after it (mean within the noise, spread no larger) are no start-up.
+ * Takes back what was cut by chance: the start-up rule follows the noise, and a window chosen for its small spread gives an
+ * interval that is too narrow. Rows before the cut that look like those after it (mean within the noise, spread no larger) are no
+ * start-up.
  */
 function withoutIdleCut(values: Float64Array, cut: number, judged: WindowMean): number {
   // On a limit cycle the swing hides whether its mean still moves.
@@ -146,7 +156,10 @@ function window(values: Float64Array, cut: number, asked: Asked): Settling {
   return verdictOf(judged, asked, 0);
 }
 
-/** The start-up rule found no steady stretch. A history that runs into a constant still counts when the rest of its way is below the target. */
+/**
+ * The start-up rule found no steady stretch. A history that runs into a constant still counts when the rest of its way is below
+ * the target.
+ */
 function lateStart(values: Float64Array, cut: number, asked: Asked): Settling {
   const half = Math.floor(values.length / 2);
   const last = windowMean(values, half, asked.target, asked.confidence);

@@ -2,7 +2,10 @@ import type { Finding } from "../finding.js";
 
 export type SettlingVerdict = "settled" | "not-yet" | "drifting" | "oscillating" | "diverged" | "zero" | "too-short" | "no-data";
 
-/** What is known of the mean of one quantity. `settled` and `oscillating` (a limit cycle averaged over whole periods) have a usable mean. */
+/**
+ * What is known of the mean of one quantity. `settled` and `oscillating` (a limit cycle averaged over whole periods) have a
+ * usable mean.
+ */
 export interface Settling {
   verdict: SettlingVerdict;
   /** Mean over the window; NaN without a usable window. */

@@ -12,7 +12,9 @@ export interface RefusedFile {
 
 /** Layouts whose columns and reference values must agree before two files are one history. */
 const physical = new Set<TableLayout>(["coefficients", "forces", "moments", "bins"]);
-/** Two files are a jump apart when the first row of the later differs from the earlier by this share of the earlier's whole range. */
+/**
+ * Two files are a jump apart when the first row of the later differs from the earlier by this share of the earlier's whole range.
+ */
 const jump = 0.5;
 /** Relative difference of two header values that only comes from printing them with another precision. */
 const printing = 2e-6;
@@ -28,9 +30,9 @@ interface Node {
 
 /**
  * Joins all files of one table into one history. Folders count by their number; of two files in one folder the suffixed one is the
- * newer run. A file continues the run that reaches its first row and whose values it takes up, if columns and reference values agree;
- * where times overlap the later start wins. A run that starts anew (from the initial field, or with another reference) is not joined: the
- * newest run is the history, the others are left out and named.
+ * newer run. A file continues the run that reaches its first row and whose values it takes up, if columns and reference values
+ * agree; where times overlap the later start wins. A run that starts anew (from the initial field, or with another reference) is
+ * not joined: the newest run is the history, the others are left out and named.
  *
  * @param pieces all files of the table, in any order
  * @param refused files that could not be read
@@ -206,9 +208,9 @@ function rowsBefore(node: Node, time: number): number {
 }
 
 /**
- * How far the first row of a piece lies from the run it might continue: the median over the columns of the difference to the row before
- * (or at) that time, as a share of the column's range over that run. A continued run is near 0; one that starts anew from the initial
- * field is near 1, because the start-up spans the range.
+ * How far the first row of a piece lies from the run it might continue: the median over the columns of the difference to the row
+ * before (or at) that time, as a share of the column's range over that run. A continued run is near 0; one that starts anew from
+ * the initial field is near 1, because the start-up spans the range.
  */
 function distanceAtJoint(node: Node, piece: Piece): number {
   if (!physical.has(piece.table.layout)) return 0;

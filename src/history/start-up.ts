@@ -14,8 +14,8 @@ export interface StartUp {
 
 /**
  * Length of the start-up by MSER-5 (White 1997; White, Cobb and Spratt 2000): of all cuts d the one with the least
- * sum of squares of the batches after d divided by (k - d)^2, with batches of five rows. When that lies in the second half the rule says that
- * there are too few rows.
+ * sum of squares of the batches after d divided by (k - d)^2, with batches of five rows. When that lies in the second half the
+ * rule says that there are too few rows.
  */
 export function startUp(values: Float64Array): StartUp {
   const batches = Math.floor(values.length / batchRows);

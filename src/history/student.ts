@@ -1,6 +1,6 @@
 /**
- * Logarithm of the gamma function for x > 0, to about 1e-15 relative: Stirling's series (Abramowitz and Stegun 1964, 6.1.40) after the
- * argument has been raised above 10 by the recurrence.
+ * Logarithm of the gamma function for x > 0, to about 1e-15 relative: Stirling's series (Abramowitz and Stegun 1964, 6.1.40)
+ * after the argument has been raised above 10 by the recurrence.
  */
 export function logGamma(x: number): number {
   let shift = 0;
@@ -36,7 +36,10 @@ export function incompleteBeta(x: number, complement: number, a: number, b: numb
   return 1 - (front * betaFraction(complement, b, a)) / b;
 }
 
-/** ln B(a, b); where one argument is 1/2 and the other large the ratio of gamma functions comes from its own series (DLMF 5.11.13). */
+/**
+ * ln B(a, b); where one argument is 1/2 and the other large the ratio of gamma functions comes from its own series (DLMF
+ * 5.11.13).
+ */
 function logBeta(a: number, b: number): number {
   const [large, small] = a > b ? [a, b] : [b, a];
   if (small !== 0.5 || large < 20) return logGamma(a) + logGamma(b) - logGamma(a + b);

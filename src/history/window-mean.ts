@@ -32,11 +32,12 @@ export const mattering = (target: number | null, centre: number): number => targ
 /**
  * Mean of the rows from `firstRow` on with its interval.
  *
- * Where the rows repeat, the window is cut at its start to whole periods, and from ten periods on their means are the samples: the swing inside a
- * period says nothing about the mean. The long-run variance is the larger of Geyer's initial monotone sequence and overlapping batch means;
- * effective samples n_eff = n s2 / (long-run variance), at most n (so negative correlation never narrows the interval); half-width
- * t(n_eff - 1) sqrt(long-run variance / n). A trend is tested by least squares, its error from the long-run variance of the residuals
- * (12 S / n^3). A significant trend too small to matter adds half its change to the half-width.
+ * Where the rows repeat, the window is cut at its start to whole periods, and from ten periods on their means are the samples:
+ * the swing inside a period says nothing about the mean. The long-run variance is the larger of Geyer's initial monotone sequence
+ * and overlapping batch means; effective samples n_eff = n s2 / (long-run variance), at most n (so negative correlation never
+ * narrows the interval); half-width t(n_eff - 1) sqrt(long-run variance / n). A trend is tested by least squares, its error from
+ * the long-run variance of the residuals (12 S / n^3). A significant trend too small to matter adds half its change to the
+ * half-width.
  *
  * @param target half-width wanted; null: none
  */
@@ -90,8 +91,9 @@ export function windowMean(values: Float64Array, firstRow: number, target: numbe
 const mostSpan = 0.9;
 
 /**
- * The larger of Geyer's and the overlapping-batch estimate, at least the variance. Deviations are taken from the estimated mean, which makes
- * every autocovariance too small by about (long-run variance) / n (Priestley 1981, 5.3.2); a sum over lags -K .. K is made whole by n / (n - 2K - 1).
+ * The larger of Geyer's and the overlapping-batch estimate, at least the variance. Deviations are taken from the estimated mean,
+ * which makes every autocovariance too small by about (long-run variance) / n (Priestley 1981, 5.3.2); a sum over lags -K .. K is
+ * made whole by n / (n - 2K - 1).
  */
 function longRunVariance(values: Float64Array): number {
   const count = values.length;
@@ -103,9 +105,10 @@ function longRunVariance(values: Float64Array): number {
 }
 
 /**
- * Bound for a history that approaches its end value (steady iterations near convergence): the largest distance of a sample from the mean
- * plus the way still to go, taken from the means of three thirds: a change that shrinks from third to third by a factor q goes on as the
- * geometric series q / (1 - q), but at most at its rate for one more window. Infinity for fewer than three samples.
+ * Bound for a history that approaches its end value (steady iterations near convergence): the largest distance of a sample from
+ * the mean plus the way still to go, taken from the means of three thirds: a change that shrinks from third to third by a factor
+ * q goes on as the geometric series q / (1 - q), but at most at its rate for one more window. Infinity for fewer than three
+ * samples.
  */
 export function bandOf({ samples, mean: centre }: WindowMean): number {
   let farthest = 0;

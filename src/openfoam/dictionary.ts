@@ -20,8 +20,9 @@ export type DictionaryValue = number | DictionaryText | DictionaryList | Diction
 export interface Dictionary {
   kind: "dictionary";
   /**
-   * Entries in order of the file; of a repeated key the last value stands, repeated sub-dictionaries are merged, as the solver does. A value
-   * has one or more items (`nu [0 2 -1 0 0 0 0] 1e-05;` has two). Keys that are patterns keep their quotes off and are named in `patterns`.
+   * Entries in order of the file; of a repeated key the last value stands, repeated sub-dictionaries are merged, as the solver
+   * does. A value has one or more items (`nu [0 2 -1 0 0 0 0] 1e-05;` has two). Keys that are patterns keep their quotes off and
+   * are named in `patterns`.
    */
   entries: Map<string, DictionaryValue[]>;
   /** Keys that were quoted: regular expressions of the solver. */
@@ -40,9 +41,9 @@ const mostCopied = 200_000;
 const mostCharacters = 64 * 1024 * 1024;
 
 /**
- * Parses the solver's dictionary syntax: comments, nested dictionaries, lists, quoted strings and patterns, dimensions, `$name` of the same
- * file (replaced by its value when it stands alone and was defined before; otherwise kept as text), directives and code blocks (kept as
- * text). Nothing is executed, no other file is read.
+ * Parses the solver's dictionary syntax: comments, nested dictionaries, lists, quoted strings and patterns, dimensions, `$name`
+ * of the same file (replaced by its value when it stands alone and was defined before; otherwise kept as text), directives and
+ * code blocks (kept as text). Nothing is executed, no other file is read.
  *
  * @param name file name for messages
  * @throws Problem (input) with the line where the syntax breaks

@@ -29,8 +29,8 @@ export function totalFirstNames(numbers: number): string[] | null {
 }
 
 /**
- * Columns total, pressure, viscous [, porous] made from the part columns of one block (3 per part, pressure first): `forces.dat` has
- * no total, it is the sum.
+ * Columns total, pressure, viscous [, porous] made from the part columns of one block (3 per part, pressure first): `forces.dat`
+ * has no total, it is the sum.
  */
 export function blockColumns(cells: readonly Float64Array[], prefix = ""): Column[] {
   const rows = cells[0]!.length;

@@ -65,8 +65,8 @@ const volumes = new RegExp(`Min volume = ${number}\\. Max volume = ${number}\\.\
 const orthogonality = new RegExp(`Mesh non-orthogonality Max: ${number} average: ${number}`);
 
 /**
- * Reads the log of the mesh checker. Several time blocks: the last one counts. `Mesh OK.` does not mean that the body is in the mesh; look at
- * the patches.
+ * Reads the log of the mesh checker. Several time blocks: the last one counts. `Mesh OK.` does not mean that the body is in the
+ * mesh; look at the patches.
  *
  * @throws Problem (input) for an empty file or bytes that are no text
  */
@@ -243,7 +243,10 @@ export function readMesherLog(log: Uint8Array | string, name: string): MesherLog
   return mesh;
 }
 
-/** `patch faces layers ...`: before, thickness asked; after, layers reached (newest versions: also the target), thickness in m and in percent. */
+/**
+ * `patch faces layers ...`: before, thickness asked; after, layers reached (newest versions: also the target), thickness in m and
+ * in percent.
+ */
 function layerRow(text: string, table: "wanted" | "reached", wanted: Map<string, number>, mesh: MesherLog): void {
   const cells = text.trim().split(/\s+/);
   const [patch, ...rest] = cells;

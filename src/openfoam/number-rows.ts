@@ -54,7 +54,8 @@ export interface NumberRows {
 }
 
 /**
- * One row at a time. The row has a method of its own because the engine compiles a method that is called often sooner than one long loop.
+ * One row at a time. The row has a method of its own because the engine compiles a method that is called often sooner than one
+ * long loop.
  */
 class RowScanner {
   /** one per cell of a row; all of one length */
@@ -77,8 +78,8 @@ class RowScanner {
   }
 
   /**
-   * Reads the row that starts at `start` into place `row` of the columns; there must be a line end behind it. Returns the place of that
-   * line end.
+   * Reads the row that starts at `start` into place `row` of the columns; there must be a line end behind it. Returns the place
+   * of that line end.
    */
   scan(start: number, row: number): number {
     const { bytes, width, columns, words } = this;

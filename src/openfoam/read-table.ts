@@ -25,8 +25,8 @@ type Remark = Table["remarks"][number];
 
 /**
  * Reads a table that a function object of the solver wrote: coefficients, forces, moments, residuals, solver information, y+, wall
- * shear, bins, or any other with a `# Time` line. The layout comes from the header text and the shape of the rows, never from a folder
- * or a version. gzip is accepted.
+ * shear, bins, or any other with a `# Time` line. The layout comes from the header text and the shape of the rows, never from a
+ * folder or a version. gzip is accepted.
  *
  * Forces and moments get the columns Time, total_x.. pressure_x.. viscous_x.. [porous_x..] in every dialect; a `forces.dat`, which
  * holds both, gives two tables, forces first. Units are the solver's (N, N m, or per unit density: nothing in the file tells).

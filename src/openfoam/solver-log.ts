@@ -144,8 +144,8 @@ function seconds(text: string): number | undefined {
 }
 
 /**
- * Reads a solver's log. False alarms are known: every healthy log says that floating-point trapping is on, and the letters `nan` stand in
- * `determinant`; only numbers, traces and error texts count.
+ * Reads a solver's log. False alarms are known: every healthy log says that floating-point trapping is on, and the letters `nan`
+ * stand in `determinant`; only numbers, traces and error texts count.
  *
  * @param name file name for messages
  * @throws Problem (input) for an empty file or bytes that are no text

@@ -7,8 +7,8 @@ const mostBytes = 2 ** 31 - 1;
 /**
  * The bytes of a text file of the solver, unpacked when they are gzip (found from their first two bytes, not from the name).
  *
- * Throws a Problem (input) for what cannot be a text of the solver: no bytes, NUL bytes, the pointer text of large-file storage, damaged
- * gzip.
+ * Throws a Problem (input) for what cannot be a text of the solver: no bytes, NUL bytes, the pointer text of large-file storage,
+ * damaged gzip.
  */
 export function textBytes(bytes: Uint8Array, name: string): Uint8Array {
   let text = bytes;

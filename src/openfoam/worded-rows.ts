@@ -2,7 +2,9 @@ import { cellsOf, numberOf } from "./number-rows.js";
 import type { Column, Table, TableLayout } from "./table.js";
 import { textLine } from "./table-bytes.js";
 
-/** Rows that hold words beside numbers: solver information, y+ and wall shear per patch, and tables this reader has no layout for. */
+/**
+ * Rows that hold words beside numbers: solver information, y+ and wall shear per patch, and tables this reader has no layout for.
+ */
 interface WordedTable {
   columns: Column[];
   words: Table["words"];
@@ -141,8 +143,8 @@ interface NamedGroup {
 
 /**
  * Solver information: the header is built once, but a row may hold more groups (a field that was not there when the header was
- * written) or fewer. Groups are read by their own shape and put to the header's by order; where that is not possible in exactly one way the
- * row stays empty instead of being guessed.
+ * written) or fewer. Groups are read by their own shape and put to the header's by order; where that is not possible in exactly
+ * one way the row stays empty instead of being guessed.
  */
 function solverRow(names: readonly string[]): (cells: string[], time: number) => Row | "unclear" | null {
   const named: NamedGroup[] = [];
@@ -191,7 +193,10 @@ function solverGroups(cells: readonly string[]): Group[] | null {
   return open === null && groups.every((group) => group.numbers.length % 3 === 0) ? groups : null;
 }
 
-/** The only order-keeping way to put the shorter list of groups into the longer one so that shapes agree; null when there is none or more. */
+/**
+ * The only order-keeping way to put the shorter list of groups into the longer one so that shapes agree; null when there is none
+ * or more.
+ */
 function placing(groups: readonly Group[], named: readonly NamedGroup[]): [NamedGroup, Group][] | null {
   const [few, many] = groups.length <= named.length ? [groups, named] : [named, groups];
   // ways[i][j]: ways (0, 1, or 2 for more) to place the few from i on into the many from j on.
@@ -214,8 +219,9 @@ function placing(groups: readonly Group[], named: readonly NamedGroup[]): [Named
 }
 
 /**
- * A residual row with cells `N/A`: up to Foundation 12 a vector that was not solved writes one N/A for all its components, so the row
- * is shorter than the header. Returns Time and one number per name (NaN for N/A); null when the cells cannot be put to the names.
+ * A residual row with cells `N/A`: up to Foundation 12 a vector that was not solved writes one N/A for all its components, so the
+ * row is shorter than the header. Returns Time and one number per name (NaN for N/A); null when the cells cannot be put to the
+ * names.
  */
 export function shortResidualRow(cells: readonly string[], names: readonly string[]): number[] | null {
   const time = numberOf(cells[0] ?? "");

@@ -1,6 +1,7 @@
 /**
- * Reading a long coefficient table (1 million rows, 13 columns): this project's reader against splitting lines and calling Number() on every
- * cell, in turns in one process so that both see the same machine. Prints medians of processor and wall time and their ratio.
+ * Reading a long coefficient table (1 million rows, 13 columns): this project's reader against splitting lines and calling
+ * Number() on every cell, in turns in one process so that both see the same machine. Prints medians of processor and wall time
+ * and their ratio.
  *
  *   npx tsx tests/bench/history.bench.ts [rows] [digits after the point]
  */

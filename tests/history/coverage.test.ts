@@ -16,8 +16,9 @@ function coverage(histories: number, make: (random: MinimalStandard) => Float64A
   return { share: held / settled, settled };
 }
 
-// With 400 histories a true coverage of 95 % shows between 92.3 % and 97.3 % in 99 of 100 trials. Cutting the start-up by the data's own noise and
-// estimating the correlation from a few dozen independent samples cost two to three points (measured); more is a defect.
+// With 400 histories a true coverage of 95 % shows between 92.3 % and 97.3 % in 99 of 100 trials. Cutting the start-up by the
+// data's own noise and estimating the correlation from a few dozen independent samples cost two to three points (measured); more
+// is a defect.
 test("intervals of 400 correlated histories hold the mean about as often as they say (seed 2024)", () => {
   const { share, settled } = coverage(400, (random) => autoregressive(random, 1000, 0.9).map((value) => 1 + 0.01 * value));
   expect(settled).toBeGreaterThan(380);

@@ -3,9 +3,9 @@ import { autocorrelation, mean, variance } from "../../src/history/correlation.j
 import { lastRows } from "../../src/history/last-rows.js";
 
 /**
- * NIST Statistical Reference Datasets, univariate summary statistics: NumAcc1 to NumAcc4, whose data follow from a rule. Certified mean,
- * sample standard deviation and lag-1 autocorrelation. They are made to break one-pass variance and careless autocorrelation; a coefficient
- * with a large offset is of the same kind.
+ * NIST Statistical Reference Datasets, univariate summary statistics: NumAcc1 to NumAcc4, whose data follow from a rule.
+ * Certified mean, sample standard deviation and lag-1 autocorrelation. They are made to break one-pass variance and careless
+ * autocorrelation; a coefficient with a large offset is of the same kind.
  */
 const sawtooth = (first: number, low: number, high: number): Float64Array =>
   Float64Array.from({ length: 1001 }, (_, row) => (row === 0 ? first : row % 2 === 1 ? low : high));
