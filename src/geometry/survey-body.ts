@@ -1,21 +1,23 @@
 import { inputProblem } from "../errors.js";
-import { type Finding, finding } from "../finding.js";
+import type { Finding } from "../finding.js";
 import { axlesOf, joinWheels, wheelbaseOf } from "./axles.js";
-import { type Measures, measures } from "./measures.js";
+import { findLeak, type Leak } from "./leak.js";
+import { measures } from "./measures.js";
 import { type Mirror, mirrorOf } from "./mirror.js";
-import { type AxesGuess, guessAxes } from "./orientation.js";
+import { guessAxes } from "./orientation.js";
 import { nameHints } from "./part-words.js";
 import { metresPer, vehicleAxes } from "./place.js";
 import { silhouette } from "./silhouette.js";
 import { surfaceMesh } from "./surface-mesh.js";
 import type { Orientation, Survey, Wheel } from "./survey.js";
+import { axesFindings, emptyParts, leakFindings, listedNames, sizeFindings, wheelFindings } from "./survey-findings.js";
 import { topologyOf } from "./topology.js";
 import { topologyFindings } from "./topology-findings.js";
 import type { Part, TriangleSet } from "./triangle-set.js";
-import { guessUnit, leastLength, mostLength, type UnitGuess } from "./unit-guess.js";
+import { guessUnit, type UnitGuess } from "./unit-guess.js";
 import type { Box, Vector3 } from "./vector.js";
 import { visibleShares } from "./visible-shares.js";
-import { fitWheels, type VehicleAxes, type WheelFit } from "./wheels.js";
+import { fitWheels } from "./wheels.js";
 
 /**
  * All that can be said of a body from its triangles. What is asked for (unit, travel, up, wheel parts by name) is taken as given, the
@@ -62,6 +64,10 @@ export function surveyBody(set: TriangleSet, asked: Partial<Orientation> & { whe
   const topology = topologyOf(mesh, parts.length);
   const lateral = vehicle.right.findIndex((value) => value !== 0);
   const symmetry = mirror(lateral);
+  const cut = symmetry.kind === "half" ? { axis: lateral, plane: symmetry.plane } : null;
+  // A surface without open edges cannot leak.
+  const found = topology.open.count > 0 ? findLeak(mesh, inUnit.whole.bounds, cut) : { cell: 0, reached: false, holes: [] };
+  const leak = found === null ? undefined : scaledLeak(found, scale);
   const along = (direction: Vector3): number => extents[direction.findIndex((value) => value !== 0)] * scale;
   const { whole } = inUnit;
   const findings: Finding[] = [
@@ -70,6 +76,7 @@ export function surveyBody(set: TriangleSet, asked: Partial<Orientation> & { whe
     ...axesFindings(axes),
     ...emptyParts(parts, inUnit.groups),
     ...topologyFindings(topology, parts, scale, symmetry),
+    ...leakFindings(leak),
     ...wheelFindings(parts, fitted, wheels, axles.length, vehicle, scale),
   ];
   return {
@@ -112,6 +119,7 @@ export function surveyBody(set: TriangleSet, asked: Partial<Orientation> & { whe
     ),
     wheelbase: wheelbase === null ? null : wheelbase * scale,
     symmetry: { kind: symmetry.kind, plane: symmetry.plane * scale, deviation: symmetry.deviation * scale },
+    leak,
     findings,
     verdict: findings.some(({ severity }) => severity === "error")
       ? "not-fit"
@@ -130,150 +138,15 @@ function wheelPartsOf(parts: Part[], named: string[] | undefined): number[] {
     if (at < 0)
       throw inputProblem({
         code: "unknown-wheel-part",
-        message: `No part is named "${name}"; there are ${listed(parts.map((part) => part.name))}.`,
+        message: `No part is named "${name}"; there are ${listedNames(parts.map((part) => part.name))}.`,
         remedy: "Name wheel parts as inspect lists them.",
       });
     return at;
   });
 }
 
-function listed(names: string[]): string {
-  const shown = names.slice(0, 12).join(", ");
-  return names.length > 12 ? `${shown} and ${names.length - 12} more` : shown || "none";
-}
-
-function sizeFindings(set: TriangleSet, unit: UnitGuess, given: boolean, metres: number): Finding[] {
-  if (set.partOf.length === 0)
-    return [
-      finding(
-        "no-triangles",
-        "error",
-        "The surface has no triangles.",
-        "Export the surface again; nothing was written to the file.",
-      ),
-    ];
-  const text = Number(metres.toPrecision(4));
-  if (!(metres >= leastLength && metres <= mostLength))
-    return [
-      finding(
-        "size-implausible",
-        "error",
-        `The body's greatest extent is ${text} m with ${unit.value} ${given ? "given" : "taken"} as the unit; forces, Reynolds number and mesh would be off by powers of ten.`,
-        "Give the unit the file was drawn in.",
-      ),
-    ];
-  if (!given && !unit.certain)
-    return [
-      finding(
-        "unit-uncertain",
-        "warning",
-        `The unit is a guess: ${unit.basis}. A wrong unit changes every force and the mesh.`,
-        "Give the unit.",
-      ),
-    ];
-  return [];
-}
-
-function axesFindings(axes: AxesGuess): Finding[] {
-  const findings = axes.doubts.map((doubt) =>
-    finding(
-      "axes-doubtful",
-      "warning",
-      `Axes: ${doubt}. With wrong axes drag and lift change places or signs.`,
-      "Look at the parts' bounds and correct the direction of travel or up.",
-    ),
-  );
-  if (!axes.certain)
-    findings.push(
-      finding(
-        "axes-uncertain",
-        "warning",
-        `Travel ${axes.travel} and up ${axes.up} are a guess: ${axes.basis}. With wrong axes drag and lift change places or signs.`,
-        "Give the direction of travel and up, or name parts so that front and rear are plain (hood, tailgate, wheel-front-left).",
-      ),
-    );
-  return findings;
-}
-
-function emptyParts(parts: Part[], groups: Measures[]): Finding[] {
-  const empty = parts.filter((_, k) => groups[k].triangles === 0);
-  if (empty.length === 0 || empty.length === parts.length) return [];
-  return [
-    finding(
-      "empty-part",
-      "warning",
-      `${empty.length} parts have no triangles (${listed(empty.map((part) => part.name))}); they cannot appear in the mesh or the ledger.`,
-      "Export them again, or leave them out.",
-      { count: empty.length, part: empty.length === 1 ? empty[0].name : null },
-    ),
-  ];
-}
-
-function wheelFindings(
-  parts: Part[],
-  fitted: { part: number; fit: WheelFit | null; centre: Vector3 }[],
-  wheels: WheelFit[],
-  axles: number,
-  { rearward, up }: VehicleAxes,
-  scale: number,
-): Finding[] {
-  const findings: Finding[] = [];
-  const point = (at: Vector3): Vector3 => at.map((value) => value * scale) as Vector3;
-  for (const part of new Set(fitted.map((item) => item.part))) {
-    const own = fitted.filter((item) => item.part === part);
-    const round = wheels.filter((wheel) => wheel.part === part);
-    const { name } = parts[part];
-    if (round.length === 0)
-      findings.push(
-        finding(
-          "wheel-not-round",
-          "warning",
-          `Part "${name}" is named as a wheel, but nothing in it is round within 3 %; no axle was found for it.`,
-          "Name the parts that are wheels, or repair this one.",
-          { part: name, places: own.slice(0, 10).map(({ centre }) => point(centre)) },
-        ),
-      );
-    const apart = (a: WheelFit, b: WheelFit, axis: Vector3): number =>
-      Math.abs(a.centre.reduce((sum, value, k) => sum + (value - b.centre[k]) * axis[k], 0));
-    const far = round.some((wheel) => Math.max(apart(wheel, round[0], rearward), apart(wheel, round[0], up)) > 0.02 * wheel.radius);
-    if (far)
-      findings.push(
-        finding(
-          "several-axles-in-part",
-          "warning",
-          `Part "${name}" holds ${round.length} wheels on different axles; a part can turn about one axle only, so its wheels cannot all turn rightly.`,
-          "Split the part into one part per wheel, or per axle.",
-          { part: name, count: round.length, places: round.slice(0, 10).map(({ centre }) => point(centre)) },
-        ),
-      );
-  }
-  if (wheels.length === 0)
-    findings.push(
-      finding(
-        "no-wheels",
-        "note",
-        "No part is known to be a wheel: the wheelbase is unknown, and moments would use the overall length.",
-        "Name wheel parts so (wheel-front-left, tyre-rr), or say which parts are wheels.",
-      ),
-    );
-  else if (axles === 1)
-    findings.push(
-      finding(
-        "one-axle",
-        "warning",
-        "All wheels sit on one axle, so there is no wheelbase and no split of the lift between axles.",
-        "Say which parts are wheels.",
-      ),
-    );
-  else if (axles > 2)
-    findings.push(
-      finding(
-        "several-rear-axles",
-        "note",
-        `${axles} axles were found; the wheelbase runs from the first to the middle of the others.`,
-        "Give the wheelbase if another length is wanted.",
-        { count: axles },
-      ),
-    );
-  return findings;
-}
+const scaledLeak = ({ cell, reached, holes }: Leak, scale: number): Leak => ({
+  cell: cell * scale,
+  reached,
+  holes: holes.map(({ centre, width }) => ({ centre: centre.map((value) => value * scale) as Vector3, width: width * scale })),
+});

@@ -1,4 +1,5 @@
 import type { Finding } from "../finding.js";
+import type { Leak } from "./leak.js";
 import type { SurfaceFile } from "./triangle-set.js";
 import type { Box, Vector3 } from "./vector.js";
 
@@ -74,6 +75,11 @@ export interface Survey {
    * of a plane that it touches; none = neither. `deviation` in metres is the greatest mirror distance of a vertex.
    */
   symmetry: { kind: "whole" | "half" | "none"; plane: number; deviation: number };
+  /**
+   * Whether air gets into the inside through holes, and where, metres, file axes; holes narrower than `cell` count as closed. A
+   * surface without open edges cannot leak; absent where there was nothing to look at.
+   */
+  leak?: Leak;
   findings: Finding[];
   verdict: "fit" | "fit-with-warnings" | "not-fit";
 }

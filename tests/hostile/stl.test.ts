@@ -126,11 +126,14 @@ function sound(set: TriangleSet, size: number, factor: number, label: string): v
   expect(set.positions.buffer.byteLength + set.partOf.buffer.byteLength, label).toBeLessThanOrEqual(factor * size + SMALL_FILE);
 }
 
-describe("files broken at random", () => {
+/** Many files on a machine that does other things as well. */
+const PATIENCE = 120_000;
+
+describe("files broken at random", { timeout: PATIENCE }, () => {
   it.each<[string, number, string, Buffer, number]>([
-    ["text STL", 900, "text.stl", text, STL_FACTOR],
-    ["binary STL", 1200, "binary.stl", binary, STL_FACTOR],
-    ["OBJ", 900, "shape.obj", obj, OBJ_FACTOR],
+    ["text STL", 600, "text.stl", text, STL_FACTOR],
+    ["binary STL", 900, "binary.stl", binary, STL_FACTOR],
+    ["OBJ", 600, "shape.obj", obj, OBJ_FACTOR],
   ])("%s: %i of them", async (_, count, name, source, factor) => {
     let read = 0;
     for (let seed = 0; seed < count; seed++) {
@@ -143,12 +146,12 @@ describe("files broken at random", () => {
       sound(set, bytes.length, factor, label);
     }
     // Neither all refused nor all read: the changes do reach both ways.
-    expect(read).toBeGreaterThan(20);
-    expect(read).toBeLessThan(count - 20);
+    expect(read).toBeGreaterThan(12);
+    expect(read).toBeLessThan(count - 12);
   });
 
-  it("gzip: 300, packed before and after breaking", async () => {
-    for (let seed = 0; seed < 300; seed++) {
+  it("gzip: 200, packed before and after breaking", async () => {
+    for (let seed = 0; seed < 200; seed++) {
       const next = random(7000 + seed);
       const source = [text, binary, obj][seed % 3];
       const name = seed % 3 === 2 ? "x.obj.gz" : "x.stl.gz";
@@ -158,9 +161,9 @@ describe("files broken at random", () => {
     }
   });
 
-  it("what could be read can be surveyed: 150", async () => {
+  it("what could be read can be surveyed: 60", async () => {
     let surveyed = 0;
-    for (let seed = 0; surveyed < 150; seed++) {
+    for (let seed = 0; surveyed < 60; seed++) {
       const set = await tried("text.stl", broken([text, binary][seed % 2], random(9000 + seed)), `survey, seed ${seed}`);
       if (set === null) continue;
       surveyed++;
