@@ -1,10 +1,11 @@
 import { listPlan } from "../../src/case/list-plan.js";
 import type { PlannedNumber } from "../../src/case/plan.js";
-import { planStudy, prepareStudy } from "../../src/case/prepare.js";
+import { type PlannedCase, planStudy, prepareStudy } from "../../src/case/prepare.js";
 import { shortPath, significant, thousands } from "../../src/number-text.js";
 import { readStudy } from "../../src/study/read.js";
 import type { CommandModule } from "../command.js";
 import { exitCode } from "../context.js";
+import { printFindings } from "../print/findings.js";
 import type { Printer } from "../print/printer.js";
 import { table } from "../print/table.js";
 
@@ -42,10 +43,12 @@ export const command: CommandModule<Options> = {
           condition: each.condition,
           cells: each.plan.mesh.predictedCells.value,
           changed: false,
+          findings: each.findings,
         })),
         plan,
       });
       printPlan(print, plan);
+      for (const each of planned) printCaseFindings(print, each);
       return exitCode.done;
     }
     const prepared = await prepareStudy(study, { again: options.again === true, accept: options.accept === true });
@@ -57,6 +60,7 @@ export const command: CommandModule<Options> = {
         condition: each.condition,
         cells: each.plan.mesh.predictedCells.value,
         changed: each.changed,
+        findings: each.findings,
       })),
       plan: listPlan(prepared[0]!.plan),
     });
@@ -79,10 +83,17 @@ export const command: CommandModule<Options> = {
         print.colours.bold,
       ),
     );
+    for (const each of prepared) printCaseFindings(print, each);
     print.line(`next: dragledger run ${args[0]}`);
     return exitCode.done;
   },
 };
+
+function printCaseFindings(print: Printer, { variant, condition, findings }: PlannedCase): void {
+  if (findings.length === 0) return;
+  print.line(`${variant} ${condition}:`);
+  printFindings(print, findings);
+}
 
 const valueText = (value: PlannedNumber["value"]): string =>
   typeof value === "string"
