@@ -14,7 +14,7 @@ export interface Leak {
 
 /** Cells along the body's greatest extent, 3 cm on a car; fewer where that makes too many of them. */
 const CELLS = 160;
-const MOST_CELLS = 800_000;
+const MOST_CELLS = 400_000;
 /** Area of a body's surface, in squares of its greatest extent, above which it is rubble. */
 const MOST_AREA = 100;
 const MOST_HOLES = 6;
@@ -27,9 +27,8 @@ const FAR = 0xffff;
 
 /**
  * Floods the air around a body through its holes. A point is inside where the surface winds about it more than half a time, which
- * holes do not change much. Each cell gets the width of the widest way to it from outside (the least distance to a wall along the way
- * that keeps the greatest, found by flooding wide places first); for the inside that is reached by the widest way, the narrowest place
- * of that way is the hole. The hole is then filled, and the rest is tried again, six times at most.
+ * holes do not change much. Of all ways from outside to the inside the widest is found, and the narrowest place of that way is the hole.
+ * The hole is then filled, and the rest is tried again, six times at most.
  *
  * Null for a surface so much larger than its box that it cannot be a body's.
  *
@@ -48,13 +47,10 @@ export function findLeak(mesh: SurfaceMesh, bounds: Box, cut: { axis: number; pl
   const margin = marginOf(grid.size);
   const holes: Leak["holes"] = [];
   while (probes.length > 0 && holes.length < MOST_HOLES) {
-    const { way, narrowest } = widestWays(grid, clearance, margin);
-    let best = -1;
-    for (const probe of probes) if (way[probe] > 0 && (best < 0 || way[probe] > way[best])) best = probe;
-    if (best < 0) break;
-    const neck = narrowest[best];
-    holes.push({ centre: middleOf(grid, neck), width: (2 * way[best] - 1) * grid.cell });
-    mark(grid.size, grid.wall, neck, Math.ceil(1.5 * way[best]) + 1);
+    const way = widestWay(grid, clearance, margin, probes);
+    if (way === null) break;
+    holes.push({ centre: middleOf(grid, way.narrowest), width: (2 * way.width - 1) * grid.cell });
+    mark(grid.size, grid.wall, way.narrowest, Math.ceil(1.5 * way.width) + 1);
     clearance = clearances(grid);
   }
   return { cell: grid.cell, reached: holes.length > 0, holes };
@@ -80,8 +76,9 @@ function areaOf({ vertices, corners }: SurfaceMesh): number {
 /** Makes the grid's margin beyond the cut a wall. */
 function closeCut({ origin, size, cell, wall }: WallGrid, bounds: Box, { axis, plane }: { axis: number; plane: number }): void {
   const low = Math.abs(plane - bounds.min[axis]) < Math.abs(plane - bounds.max[axis]);
+  const stride = axis === 0 ? 1 : axis === 1 ? size[0] : size[0] * size[1];
   for (let at = 0; at < wall.length; at++) {
-    const middle = origin[axis] + (placeOf(size, at)[axis] + 0.5) * cell;
+    const middle = origin[axis] + ((Math.floor(at / stride) % size[axis]) + 0.5) * cell;
     if (low ? middle < plane : middle > plane) wall[at] = 1;
   }
 }
@@ -156,8 +153,8 @@ function clearances({ size, wall }: WallGrid): Uint16Array {
   const steps = neighbours(size);
   for (let head = 0; head < end; head++) {
     const at = queue[head];
-    for (const step of steps) {
-      const next = at + step;
+    for (let k = 0; k < 6; k++) {
+      const next = at + steps[k];
       if (next < 0 || next >= wall.length || clearance[next] !== FAR) continue;
       clearance[next] = clearance[at] + 1;
       queue[end++] = next;
@@ -167,41 +164,49 @@ function clearances({ size, wall }: WallGrid): Uint16Array {
 }
 
 /**
- * For each cell the clearance at the narrowest place of the widest way from outside (0: no way), and that place. Cells wait in lists
- * by the width of the way to them; the widest is taken first (Dijkstra, 1959, for the widest path).
+ * The widest way from beyond the body's box to any of the probes: the clearance at its narrowest place, and that place. Null where
+ * there is no way. Cells wait in lists by the width of the way to them, and the widest is taken first (Dijkstra, 1959, for the widest
+ * path), so the first probe that is taken ends the search.
  */
-function widestWays(
+function widestWay(
   { size, wall }: WallGrid,
   clearance: Uint16Array,
   margin: Uint8Array,
-): { way: Uint16Array; narrowest: Uint32Array } {
+  probes: number[],
+): { width: number; narrowest: number } | null {
+  const wanted = new Uint8Array(wall.length);
+  for (const probe of probes) wanted[probe] = 1;
   const way = new Uint16Array(wall.length);
   const narrowest = new Uint32Array(wall.length);
-  const done = new Uint8Array(wall.length);
-  const widest = clearance.reduce((most, value) => (value !== FAR && value > most ? value : most), 1);
+  let widest = 1;
+  for (let at = 0; at < wall.length; at++) if (clearance[at] !== FAR && clearance[at] > widest) widest = clearance[at];
   const waiting: number[][] = Array.from({ length: widest + 1 }, () => []);
-  // Beyond the body's box there is nothing to be narrow.
-  const width = (at: number): number => (margin[at] === 1 ? widest : Math.min(widest, clearance[at]));
-  const reach = (at: number, wide: number, neck: number): void => {
-    if (wide <= way[at]) return;
-    way[at] = wide;
-    narrowest[at] = neck;
-    waiting[wide].push(at);
-  };
-  for (let at = 0; at < wall.length; at++) if (wall[at] === 0 && margin[at] === 1) reach(at, widest, at);
+  for (let at = 0; at < wall.length; at++)
+    if (wall[at] === 0 && margin[at] === 1) {
+      way[at] = widest;
+      narrowest[at] = at;
+      waiting[widest].push(at);
+    }
   const steps = neighbours(size);
   for (let wide = widest; wide > 0; wide--)
     for (let at = waiting[wide].pop(); at !== undefined; at = waiting[wide].pop()) {
-      if (done[at] === 1) continue;
-      done[at] = 1;
-      for (const step of steps) {
-        const next = at + step;
+      // It may have been reached by a wider way since.
+      if (way[at] !== wide) continue;
+      if (wanted[at] === 1) return { width: wide, narrowest: narrowest[at] };
+      for (let k = 0; k < 6; k++) {
+        const next = at + steps[k];
         if (next < 0 || next >= wall.length || wall[next] === 1) continue;
-        const narrow = width(next) < wide;
-        reach(next, narrow ? width(next) : wide, narrow ? next : narrowest[at]);
+        // Beyond the body's box there is nothing to be narrow.
+        const clear = margin[next] === 1 ? widest : clearance[next];
+        const narrow = clear < wide;
+        const there = narrow ? clear : wide;
+        if (there <= way[next]) continue;
+        way[next] = there;
+        narrowest[next] = narrow ? next : narrowest[at];
+        waiting[there].push(next);
       }
     }
-  return { way, narrowest };
+  return null;
 }
 
 /** Sets the cells within `radius` of a cell to 1. */
