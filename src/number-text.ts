@@ -23,7 +23,7 @@ export function estimate(quantity: Estimate | null | undefined, decimals: number
 }
 
 /** A half-width that is there but rounds to zero is said to be below the last digit. */
-function halfWidthText(halfWidth: number, decimals: number): string {
+export function halfWidthText(halfWidth: number, decimals: number): string {
   const text = fixed(halfWidth, decimals);
   return halfWidth > 0 && Number(text) === 0 ? `<${(10 ** -decimals).toFixed(decimals)}` : text;
 }

@@ -1,5 +1,5 @@
 import type { Comparison, Difference } from "../../src/compare/comparison.js";
-import { fixed, signed } from "../../src/number-text.js";
+import { fixed, halfWidthText, signed } from "../../src/number-text.js";
 import { printFindings } from "./findings.js";
 import { countNote } from "./ledger.js";
 import type { Printer } from "./printer.js";
@@ -28,7 +28,7 @@ export function printComparison(print: Printer, comparison: Comparison): void {
       label,
       fixed(difference.a, decimals),
       fixed(difference.b, decimals),
-      `${signed(difference.delta, decimals)}${difference.halfWidth === null ? "" : ` ± ${fixed(difference.halfWidth, decimals)}`}`,
+      `${signed(difference.delta, decimals)} ± ${difference.halfWidth === null ? "?" : halfWidthText(difference.halfWidth, decimals)}`,
       difference.verdict,
     ];
   };

@@ -1,12 +1,11 @@
 import { type Finding, finding } from "../finding.js";
-import { settle } from "../history/settle.js";
 import { studentQuantile } from "../history/student.js";
-import { windowMean } from "../history/window-mean.js";
 import { axleLift } from "../ledger/axles.js";
 import type { CaseRecord } from "../ledger/case-record.js";
 import type { PartSeries } from "../ledger/part-series.js";
 import { forcePerCoefficient } from "../ledger/reference.js";
 import { windowOf } from "../ledger/window.js";
+import { estimateFrom } from "../ledger/window-estimate.js";
 import { comparability } from "./comparability.js";
 import type { Comparison, Difference } from "./comparison.js";
 import { differenceOf, type MeanWithError } from "./difference.js";
@@ -60,8 +59,8 @@ export function compareRuns(a: CaseRecord, b: CaseRecord): Comparison {
         ...compare(
           quantity,
           name,
-          one ? measure(one[quantity], windowA, null) : null,
-          other ? measure(other[quantity], windowB, null) : null,
+          one ? measure(one[quantity], windowA, targetOf(a, quantity)) : null,
+          other ? measure(other[quantity], windowB, targetOf(b, quantity)) : null,
         ),
       );
   }
@@ -77,13 +76,17 @@ export function compareRuns(a: CaseRecord, b: CaseRecord): Comparison {
   };
 }
 
+/** A part is known well enough when it is known as well as is asked of the whole. */
+const targetOf = ({ card }: CaseRecord, quantity: "cd" | "cl"): number | undefined =>
+  quantity === "cd" ? card?.stop.drag : card?.stop.lift;
+
 function quantitiesOf(whole: PartSeries, { reference, card }: CaseRecord, first: number): Map<string, Measured> {
   const found = new Map<string, Measured>();
-  const add = (name: string, values: Float64Array | null, target: number | null, factor = 1) => {
+  const add = (name: string, values: Float64Array | null, target: number | undefined, factor = 1) => {
     if (values)
       found.set(name, measure(factor === 1 ? values : values.map((value) => value * factor), first, target && target * factor));
   };
-  const { drag = null, lift = null } = card?.stop ?? {};
+  const { drag, lift } = card?.stop ?? {};
   const axles = axleLift(whole, reference);
   add("cd", whole.cd, drag);
   add("cl", whole.cl, lift);
@@ -99,24 +102,12 @@ function quantitiesOf(whole: PartSeries, { reference, card }: CaseRecord, first:
   return found;
 }
 
-/** Mean over the ledger's window; the standard error is taken back from the half-width, so that one estimate of correlation serves both. */
-function measure(values: Float64Array, first: number, target: number | null): Measured {
-  const window = windowMean(values.subarray(first), 0, target, confidence);
-  const degreesOfFreedom = Math.max(1, window.effectiveSamples - 1);
-  const { verdict } = settle(values, { confidence, ...(target === null ? {} : { halfWidth: target }) });
-  return {
-    mean: plainMean(values.subarray(first)),
-    standardError: window.halfWidth / studentQuantile(0.5 + confidence / 2, degreesOfFreedom),
-    degreesOfFreedom,
-    settled: verdict === "settled" || verdict === "oscillating",
-  };
-}
-
-function plainMean(values: Float64Array): number {
-  const origin = values[0] ?? Number.NaN;
-  let sum = 0;
-  for (const value of values) sum += value - origin;
-  return origin + sum / values.length;
+/** The standard error is taken back from the half-width, so that one estimate of correlation serves ledger and comparison. */
+function measure(values: Float64Array, first: number, target: number | undefined): Measured {
+  const { mean, halfWidth, degreesOfFreedom, usable } = estimateFrom(values, first, target);
+  const standardError =
+    halfWidth === null ? Number.POSITIVE_INFINITY : halfWidth / studentQuantile(0.5 + confidence / 2, degreesOfFreedom);
+  return { mean, standardError, degreesOfFreedom, settled: usable };
 }
 
 const partNames = (a: CaseRecord, b: CaseRecord): string[] => [...new Set([...a.parts, ...b.parts].map((part) => part.name))];

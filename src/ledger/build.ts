@@ -1,5 +1,4 @@
 import { type Finding, finding } from "../finding.js";
-import { windowMean } from "../history/window-mean.js";
 import { axleLift } from "./axles.js";
 import type { CaseRecord } from "./case-record.js";
 import { closingOf } from "./closing.js";
@@ -7,10 +6,7 @@ import type { Entry, Estimate, LedgerRun } from "./ledger.js";
 import type { PartSeries } from "./part-series.js";
 import { forcePerCoefficient } from "./reference.js";
 import { type LedgerWindow, windowOf } from "./window.js";
-
-const confidence = 0.95;
-/** Below this, Student's t makes the interval so wide that it says nothing: no interval is given. */
-const fewestSamplesForInterval = 3;
+import { estimateFrom } from "./window-estimate.js";
 
 /** The ledger of one run: means of the whole and of every part over one window, each with the half-width of its own history. */
 export function buildLedger(record: CaseRecord): LedgerRun {
@@ -30,19 +26,9 @@ export function buildLedger(record: CaseRecord): LedgerRun {
   };
 }
 
-/**
- * Mean over the window and half-width at 95 %. The mean is the plain one over the same rows for every quantity, so entries add up; the
- * half-width comes from the quantity's own correlation in those rows.
- */
-export function estimateOf(values: Float64Array, { first, rows }: Pick<LedgerWindow, "first" | "rows">): Estimate {
-  const inside = values.subarray(first, first + rows);
-  const origin = inside[0] ?? Number.NaN;
-  let sum = 0;
-  for (const value of inside) sum += value - origin;
-  const value = origin + sum / inside.length;
-  if (inside.length < 10 || !Number.isFinite(value)) return { value, halfWidth: null };
-  const { halfWidth, effectiveSamples } = windowMean(inside, 0, null, confidence);
-  return { value, halfWidth: effectiveSamples >= fewestSamplesForInterval && Number.isFinite(halfWidth) ? halfWidth : null };
+function estimateOf(values: Float64Array, { first }: LedgerWindow, target: number | undefined): Estimate {
+  const { mean, halfWidth } = estimateFrom(values, first, target);
+  return { value: mean, halfWidth };
 }
 
 const times = (estimate: Estimate | null, factor: number | null): Estimate | null =>
@@ -50,18 +36,20 @@ const times = (estimate: Estimate | null, factor: number | null): Estimate | nul
     ? null
     : { value: estimate.value * factor, halfWidth: estimate.halfWidth === null ? null : estimate.halfWidth * Math.abs(factor) };
 
-function entryOf(series: PartSeries, { reference }: CaseRecord, window: LedgerWindow): Entry {
-  const mean = (values: Float64Array | null) => values && estimateOf(values, window);
+function entryOf(series: PartSeries, { reference, card }: CaseRecord, window: LedgerWindow): Entry {
+  // A part is known well enough when it is known as well as is asked of the whole.
+  const mean = (values: Float64Array | null, target = card?.stop.drag) => values && estimateOf(values, window, target);
+  const lift = card?.stop.lift;
   const axles = axleLift(series, reference);
-  const [cd, cl, cs] = [estimateOf(series.cd, window), estimateOf(series.cl, window), mean(series.cs)];
+  const [cd, cl, cs] = [estimateOf(series.cd, window, card?.stop.drag), estimateOf(series.cl, window, lift), mean(series.cs, lift)];
   const newtons = forcePerCoefficient(reference);
   return {
     cd,
     cl,
     cs,
-    clFront: mean(axles?.front ?? null),
-    clRear: mean(axles?.rear ?? null),
-    cm: mean(series.cm),
+    clFront: mean(axles?.front ?? null, lift),
+    clRear: mean(axles?.rear ?? null, lift),
+    cm: mean(series.cm, lift),
     cdPressure: mean(series.cdPressure),
     cdFriction: mean(series.cdFriction),
     cda: times(cd, reference.area),

@@ -26,8 +26,8 @@ export interface ConvergedCase {
 const order: SettlingVerdict[] = ["settled", "oscillating", "not-yet", "too-short", "drifting", "no-data", "zero", "diverged"];
 
 /**
- * Settling of every quantity of the whole and of drag and lift of every part. The targets are those of the whole; parts are judged
- * without a target of their own, since a small part has small coefficients.
+ * Settling of every quantity of the whole and of drag and lift of every part. Parts are judged by the targets of the whole: a part is
+ * known well enough when it is known as well as is asked of the whole.
  */
 export function settleRecord(record: CaseRecord, targets: SettlingTargets = {}): ConvergedCase {
   const { card, whole, reference } = record;
@@ -46,8 +46,11 @@ export function settleRecord(record: CaseRecord, targets: SettlingTargets = {}):
     ...judge("clFront", null, axles?.front ?? null, lift),
     ...judge("clRear", null, axles?.rear ?? null, lift),
     ...judge("cs", null, whole.cs, lift),
-    ...judge("cm", null, whole.cm),
-    ...record.parts.flatMap((part: PartSeries) => [...judge("cd", part.name, part.cd), ...judge("cl", part.name, part.cl)]),
+    ...judge("cm", null, whole.cm, lift),
+    ...record.parts.flatMap((part: PartSeries) => [
+      ...judge("cd", part.name, part.cd, drag),
+      ...judge("cl", part.name, part.cl, lift),
+    ]),
   ];
   const deciding = quantities.filter(({ name, part }) => part === null && (name === "cd" || name === "cl"));
   const verdict = deciding.reduce<SettlingVerdict>(

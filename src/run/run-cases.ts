@@ -6,6 +6,7 @@ import PQueue from "p-queue";
 import { readRunCard } from "../case/read-run-card.js";
 import { type RunCard, runCardName } from "../case/run-card.js";
 import { inputProblem, Problem, toolProblem } from "../errors.js";
+import { fewestRows } from "../history/settle.js";
 import { findSolver, howToGetSolver, type SolverEnvironment, usableMemory } from "../openfoam/environment.js";
 import { type CaseLock, lockCase, refuseOrphan } from "./case-lock.js";
 import { CaseRun, endWith, type Phase, type RunSettings } from "./case-run.js";
@@ -108,7 +109,7 @@ async function runHeld(
     mostIterations: options.mostIterations,
     pollMilliseconds: options.pollMilliseconds ?? 500,
     testEvery: options.testEvery ?? 20,
-    minimumWindow: options.minimumWindow ?? 100,
+    minimumWindow: options.minimumWindow ?? fewestRows,
     graceMilliseconds: options.graceMilliseconds ?? 10_000,
   };
   const queue = new PQueue({ concurrency: atOnce });
