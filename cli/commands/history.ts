@@ -38,7 +38,7 @@ export const command: CommandModule<Options> = {
       const found = await stat(path).catch(() => null);
       if (found === null)
         throw inputProblem({
-          code: "missing-file",
+          code: "file-missing",
           message: "There is no such file or case folder.",
           where: path,
           remedy: "Check the path.",

@@ -69,6 +69,6 @@ describe("a wrong call", () => {
     const { code, stdout, stderr } = await call("inspect", "nothing.stl", "--json");
     expect(code).toBe(2);
     expect(stderr).toBe("");
-    expect(JSON.parse(stdout)).toMatchObject({ schema: "dragledger/error/1", code: "missing-file" });
+    expect(JSON.parse(stdout)).toMatchObject({ schema: "dragledger/error/1", code: "file-missing" });
   });
 });
