@@ -12,7 +12,7 @@ export function listPlan(plan: CasePlan): PlannedNumber[] {
       value: [...box.min, ...box.max],
       unit: "m",
       reason: `from corner to corner: cells of ${edgeAt(plan, level)} m (level ${level}), around the baseline for all variants`,
-      source: source.solver,
+      source: source.boxes,
     });
   for (const { name, level, wheel } of parts) {
     const finer = level > plan.mesh.surfaceLevel.value;

@@ -103,7 +103,12 @@ function flowOf(
       `on the overall length of the baseline, ${overall.toFixed(3)} m`,
       source.definition,
     ),
-    k: planned(inlet.k, "m2/s2", `turbulence intensity ${100 * inlet.intensity} % at the inlet`, source.solver),
+    k: planned(
+      inlet.k,
+      "m2/s2",
+      `turbulence intensity ${Number((100 * inlet.intensity).toPrecision(6))} % at the inlet`,
+      source.solver,
+    ),
     omega: planned(
       inlet.omega,
       "1/s",
@@ -121,18 +126,18 @@ function domainOf(frame: StudyFrame, frontalArea: number): CasePlan["domain"] {
   const away = (distance: number): string => `${distance.toFixed(1)} m (${(distance / length).toFixed(1)} lengths)`;
   const grown = domain.grown > 1 ? `, width and height ${domain.grown.toFixed(2)} times as large for the sake of blockage` : "";
   return {
-    min: planned(domain.min, "m", `the inlet ${away(ahead)} ahead of the baseline; ground at its lowest point`, source.solver),
+    min: planned(domain.min, "m", `the inlet ${away(ahead)} ahead of the baseline; ground at its lowest point`, source.domain),
     max: planned(
       domain.max,
       "m",
       `the outlet ${away(behind)} behind, the side ${away(side)} beside, the sky ${away(top)} above the baseline${grown}`,
-      source.solver,
+      source.domain,
     ),
     baseCell: planned(
       domain.baseCell,
       "m",
       `surface cell times 2^${surfaceLevel}, near a fifth of the length; all faces of the domain on its multiples, so all cells are cubes, the same for all variants`,
-      source.solver,
+      source.domain,
     ),
     divisions: planned(domain.divisions, "", "extent of the domain over the base cell", source.definition),
     blockage: planned(

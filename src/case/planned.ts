@@ -9,6 +9,9 @@ export const source = {
   solver: "measured with the solver (OpenFOAM v1912)",
   practice: "common practice",
   axes: "SAE J1594",
+  domain: "common practice; a bluff body settled in a smaller domain (measured with the solver, OpenFOAM v1912)",
+  boxes:
+    "scaled from the boxes of a bluff body that settled within 2 % of its published drag (measured with the solver, OpenFOAM v1912)",
   definition: "definition",
   cellCount: "cell count formula, within 7 % on 15 meshes of a bluff body (OpenFOAM v1912)",
 } as const;

@@ -35,7 +35,13 @@ export function wheelbaseOf(study: Study, baseline: Survey): Planned<number> | n
       where: `${study.path} (body.wheelbase)`,
       remedy: "Name the wheels in a rule with rotating: true, give the wheelbase as a length, or write wheelbase: none.",
     });
-  return planned(baseline.wheelbase, "m", "distance of the axles fitted to the wheels of the baseline", source.geometry);
+  // To a micrometre: finer digits are those of the file's numbers, not of the vehicle.
+  return planned(
+    Number(baseline.wheelbase.toFixed(6)),
+    "m",
+    "distance of the axles fitted to the wheels of the baseline",
+    source.geometry,
+  );
 }
 
 /** m: what moments are divided by. */

@@ -48,8 +48,8 @@ function turningAbout(wheels: Wheel[], placement: Placement, speed: number, part
   const inMetres = { ...placement, scale: 1 };
   const centres = wheels.map(({ centre }) => placePoint(centre, inMetres));
   const axis = unit(mean(wheels.map((wheel) => placeDirection(wheel.axis, placement))));
-  const centre = mean(centres);
-  const radius = Math.max(...wheels.map((wheel) => wheel.radius));
+  const centre = rounded(mean(centres));
+  const radius = Number(Math.max(...wheels.map((wheel) => wheel.radius)).toFixed(6));
   for (const other of centres)
     if (distanceFromLine(other, centre, axis) > sameAxle * radius)
       throw inputProblem({
@@ -114,6 +114,9 @@ export function wheelFindings(study: Study, survey: Survey, placement: Placement
     );
   return findings;
 }
+
+/** To a micrometre: finer digits are those of the file's numbers, not of the wheel. */
+const rounded = ([x, y, z]: Vector3): Vector3 => [Number(x.toFixed(6)), Number(y.toFixed(6)), Number(z.toFixed(6))];
 
 function mean(points: Vector3[]): Vector3 {
   const along = (k: number): number => points.reduce((sum, point) => sum + point[k], 0) / points.length;

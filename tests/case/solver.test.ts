@@ -1,0 +1,82 @@
+import { readFile } from "node:fs/promises";
+import { join } from "node:path";
+import { execa } from "execa";
+import { describe, expect, test } from "vitest";
+import { prepareStudy } from "../../src/case/prepare.js";
+import { readRunCard } from "../../src/case/read-run-card.js";
+import { boundaryPatches } from "../../src/openfoam/boundary.js";
+import { parseDictionary } from "../../src/openfoam/dictionary.js";
+import { findSolver } from "../../src/openfoam/environment.js";
+import { readCheckMesh } from "../../src/openfoam/mesh-log.js";
+import { readTable } from "../../src/openfoam/read-table.js";
+import { cartParts, cartStudy } from "./cart.js";
+
+// The real solver on a prepared case: a cart in about 6 000 cells, ten iterations.
+const solver = await findSolver();
+
+async function rowsOf(path: string, object: string): Promise<number[][]> {
+  const name = `postProcessing/${object}/0/force.dat`;
+  const table = readTable(await readFile(join(path, name)), name);
+  const column = (label: string) => table.columns.find((each) => each.name === label)!.values;
+  return ["total_x", "total_y", "total_z", "pressure_x", "viscous_x"].map((label) => [...column(label)]);
+}
+
+describe("a prepared case in the real solver", () => {
+  test("every dictionary is read; Allrun meshes and solves; every part has its patch and its entry; the parts add up", async (context) => {
+    if (solver === null) return context.skip("OpenFOAM is not installed");
+    const study = await cartStudy({
+      variants: { plain: cartParts },
+      keys: { mesh: "{ cells: 6 thousand, y-plus: 300, layers: 2 }", solver: "{ most-iterations: 10 }" },
+    });
+    const [{ path, plan }] = (await prepareStudy(study)) as [Awaited<ReturnType<typeof prepareStudy>>[number]];
+    const card = (await readRunCard(path))!;
+    const run = { cwd: path, env: { ...solver.env, PWD: path }, extendEnv: false };
+    const dictionaries = Object.keys(card.hashes.files).filter(
+      (file) => /^(0|constant|system)\//.test(file) && !file.endsWith(".stl"),
+    );
+    expect(dictionaries).toHaveLength(15);
+    for (const file of dictionaries) {
+      const { stdout } = await execa(join(solver.path, "foamDictionary"), ["-keywords", file], run);
+      expect([file, stdout]).toEqual([file, expect.stringContaining("FoamFile")]);
+    }
+
+    await execa("/bin/sh", ["./Allrun"], { ...run, env: { ...run.env, PATH: `${solver.path}:${run.env.PATH ?? ""}` } });
+    const boundary = join(path, "constant", "polyMesh", "boundary");
+    const patches = boundaryPatches(parseDictionary(await readFile(boundary, "latin1"), boundary), boundary);
+    expect(patches.filter(({ faces }) => faces > 0).map(({ name }) => name)).toEqual([
+      "inlet",
+      "outlet",
+      "ground",
+      "sky",
+      "symmetry",
+      "side",
+      ...plan.parts.map(({ patch }) => patch),
+    ]);
+    const mesh = readCheckMesh(await readFile(join(path, "log.checkMesh")), "log.checkMesh");
+    expect(mesh.failedChecks).toBe(0);
+    expect(Math.abs(mesh.cells! / plan.mesh.predictedCells.value - 1)).toBeLessThan(0.25);
+
+    const whole = await rowsOf(path, "whole");
+    const parts = await Promise.all(plan.parts.map(({ patch }) => rowsOf(path, `part-${patch}`)));
+    expect(whole[0]).toHaveLength(10);
+    whole.forEach((column, k) => {
+      column.forEach((value, row) => {
+        const scale = Math.hypot(...whole.slice(0, 3).map((each) => each[row]!));
+        expect(Math.abs(parts.reduce((sum, part) => sum + part[k]![row]!, 0) - value) / scale).toBeLessThan(1e-8);
+      });
+    });
+    const coefficients = readTable(
+      await readFile(join(path, "postProcessing/coefficients/0/coefficient.dat")),
+      "postProcessing/coefficients/0/coefficient.dat",
+    );
+    // Half a body on half of the area: the coefficient is the vehicle's.
+    const pressure = 0.5 * card.reference.density * card.reference.speed ** 2;
+    const cd = (2 * whole[0]!.at(-1)!) / (pressure * card.reference.area);
+    expect(coefficients.columns.find(({ name }) => name === "Cd")!.values.at(-1)! / cd).toBeCloseTo(1, 8);
+    // Written when the run ends: y+ and the body's surface.
+    expect(await readFile(join(path, "postProcessing/wall-distance/0/yPlus.dat"), "utf8")).toContain("hull");
+    const surface = await readFile(join(path, "postProcessing/surface/10/body.vtk"), "utf8");
+    expect(surface).toMatch(/^POLYGONS \d+ /m);
+    expect(surface).toMatch(/^wallShearStress 3 /m);
+  }, 120_000);
+});
