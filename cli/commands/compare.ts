@@ -6,6 +6,7 @@ import { readCaseRecord } from "../../src/ledger/case-record.js";
 import type { CommandModule } from "../command.js";
 import { exitCode } from "../context.js";
 import { printComparison } from "../print/comparison.js";
+import { countNote } from "../print/ledger.js";
 import { addReferenceOptions, overridesOf, type ReferenceOptions } from "../reference-options.js";
 
 interface Options extends ReferenceOptions {
@@ -41,6 +42,8 @@ export const command: CommandModule<Options> = {
     const comparisons = compareCases(records);
     print.document("compare", { ...comparisons[0], comparisons });
     for (const comparison of comparisons) printComparison(print, comparison);
+    print.line();
+    print.line(countNote);
     if (options.require === undefined) return exitCode.done;
     const name = options.require === true ? "cd" : options.require;
     const verdicts = comparisons.map((each) => each.differences.find((d) => d.part === null && d.name === name)?.verdict);

@@ -1,7 +1,6 @@
 import type { Comparison, Difference } from "../../src/compare/comparison.js";
 import { fixed, halfWidthText, signed } from "../../src/number-text.js";
 import { printFindings } from "./findings.js";
-import { countNote } from "./ledger.js";
 import type { Printer } from "./printer.js";
 import { table } from "./table.js";
 
@@ -49,5 +48,4 @@ export function printComparison(print: Printer, comparison: Comparison): void {
   if (comparison.smallestResolvable !== null)
     print.line(`smallest drag difference this pair can resolve: ${fixed(1000 * comparison.smallestResolvable, 1)} counts`);
   printFindings(print, comparison.findings);
-  print.line(countNote);
 }

@@ -1,6 +1,6 @@
 import type { History } from "../../src/history/history.js";
 import type { HistorySummary } from "../../src/history/last-rows.js";
-import { significant } from "../../src/number-text.js";
+import { shortPath, significant } from "../../src/number-text.js";
 import { printFindings } from "./findings.js";
 import type { Printer } from "./printer.js";
 import { csv, table } from "./table.js";
@@ -8,7 +8,7 @@ import { csv, table } from "./table.js";
 export function printHistories(print: Printer, summaries: HistorySummary[], last: number): void {
   for (const each of summaries) {
     print.heading(`${each.object}: ${each.layout}${each.dialect ? ` (layout ${each.dialect})` : ""}`);
-    print.line(`  ${each.path}`);
+    print.line(`  ${shortPath(each.path, process.cwd())}`);
     print.line(`  ${each.rows} rows, time ${each.from} to ${each.to}`);
     const header = Object.entries(each.header).map(
       ([key, value]) => `${key} ${Array.isArray(value) ? `(${value.join(" ")})` : value}`,
@@ -16,7 +16,11 @@ export function printHistories(print: Printer, summaries: HistorySummary[], last
     if (header.length > 0) print.line(`  header: ${header.join(", ")}`);
     if (each.segments.length > 1)
       for (const segment of each.segments)
-        print.line(print.colours.dim(`  ${segment.file}: ${segment.used} of ${segment.rows} rows: ${segment.reason}`));
+        print.line(
+          print.colours.dim(
+            `  ${shortPath(segment.file, process.cwd())}: ${segment.used} of ${segment.rows} rows: ${segment.reason}`,
+          ),
+        );
     print.line(
       table(
         [

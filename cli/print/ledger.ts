@@ -1,5 +1,5 @@
 import type { Entry, LedgerRun } from "../../src/ledger/ledger.js";
-import { estimate, fixed } from "../../src/number-text.js";
+import { estimate, fixed, shortPath } from "../../src/number-text.js";
 import { printFindings } from "./findings.js";
 import type { Printer } from "./printer.js";
 import { csv, markdown, type TableColumn, table } from "./table.js";
@@ -35,7 +35,7 @@ export function printLedger(print: Printer, runs: LedgerRun[]): void {
   for (const run of runs) {
     print.heading(`${run.variant}  ${run.condition}`);
     if (run.recorded) print.line(print.colours.yellow(`  recorded results: ${run.recorded}`));
-    print.line(`  ${run.path}`);
+    print.line(`  ${shortPath(run.path, process.cwd())}`);
     print.line(`  reference: ${referenceText(run)}`);
     print.line(
       `  window: ${run.window.from} to ${run.window.to}, ${run.window.rows} rows, ${fixed(run.window.effectiveSamples, 1)} effective samples`,

@@ -1,5 +1,5 @@
 import type { ConvergedCase } from "../../src/ledger/converged.js";
-import { fixed } from "../../src/number-text.js";
+import { fixed, shortPath } from "../../src/number-text.js";
 import { printFindings } from "./findings.js";
 import { countNote } from "./ledger.js";
 import type { Printer } from "./printer.js";
@@ -8,7 +8,7 @@ import { table } from "./table.js";
 export function printSettlings(print: Printer, cases: ConvergedCase[]): void {
   for (const each of cases) {
     const colour = each.verdict === "settled" || each.verdict === "oscillating" ? print.colours.green : print.colours.yellow;
-    print.heading(`${each.path}: ${colour(each.verdict)}`);
+    print.heading(`${shortPath(each.path, process.cwd())}: ${colour(each.verdict)}`);
     if (each.recorded) print.line(print.colours.yellow(`  recorded results: ${each.recorded}`));
     const titles = ["mean", "half-width", "start-up", "rows", "effective", "period", "still needed"];
     print.line(
@@ -37,7 +37,7 @@ export function printSettlings(print: Printer, cases: ConvergedCase[]): void {
     for (const segment of each.segments.filter((s) => s.used < s.rows || !s.reason.startsWith("start of the run")))
       print.line(
         print.colours.dim(
-          `  ${segment.file}: rows ${segment.used} of ${segment.rows} used, ${segment.from} to ${segment.to}: ${segment.reason}`,
+          `  ${shortPath(segment.file, process.cwd())}: rows ${segment.used} of ${segment.rows} used, ${segment.from} to ${segment.to}: ${segment.reason}`,
         ),
       );
     printFindings(print, each.findings);
