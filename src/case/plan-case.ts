@@ -1,3 +1,4 @@
+import { inputProblem } from "../errors.js";
 import { airProperties } from "../flow/air.js";
 import { inletTurbulence } from "../flow/inlet.js";
 import type { Vector3 } from "../geometry/vector.js";
@@ -15,7 +16,7 @@ import { turningWheels } from "./wheels.js";
  * Every number of one case. Pure. `frame` is what all cases of the study share, `body` the variant, `cells` what is predicted for it
  * in the grid of the frame.
  *
- * @throws Problem(input) as `turningWheels`.
+ * @throws Problem(input) `not-computed` at yaw; as `turningWheels`.
  */
 export function planCase(given: {
   study: Study;
@@ -25,6 +26,13 @@ export function planCase(given: {
   condition: Condition;
 }): CasePlan {
   const { study, frame, body, condition } = given;
+  if (condition.yaw !== 0)
+    throw inputProblem({
+      code: "not-computed",
+      message: `Condition ${condition.name} has a yaw of ${((180 / Math.PI) * condition.yaw).toPrecision(3)} deg; cases are written for air from straight ahead.`,
+      where: study.path,
+      remedy: "Set yaw to 0.",
+    });
   const { length: overall } = extentsOf(frame);
   const { kinematicViscosity, density } = airProperties(study.air);
   const air = `${(study.air.temperature - 273.15).toFixed(1)} degC, ${(study.air.pressure / 100).toFixed(2)} hPa, ${Number((100 * study.air.humidity).toFixed(1))} % humidity`;

@@ -77,8 +77,9 @@ export function predictedFor(
 function bodyForGrid({ set, survey }: VariantBody, placement: Placement, side: Side): BodyForGrid {
   const placed = place(set, placement);
   const { openEdges, nonManifoldEdges, flippedEdges } = survey.topology;
-  // Where triangles do not bound closed shells, their outer side is not known, and a sheet has air on both.
-  const bothSides = openEdges + nonManifoldEdges + flippedEdges > 0;
+  // Where triangles do not bound closed shells that face outwards, their outer side is not known, and a sheet has air on both.
+  const insideOut = survey.volume < 0 || survey.findings.some(({ code }) => code === "inside-out");
+  const bothSides = insideOut || openEdges + nonManifoldEdges + flippedEdges > 0;
   return {
     bounds: wholeBounds(survey, placement),
     frontalArea: wholeFrontalArea(survey),

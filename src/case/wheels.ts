@@ -91,7 +91,7 @@ export function wheelFindings(study: Study, survey: Survey, placement: Placement
         finding(
           "wheels-locked-on-moving-ground",
           "warning",
-          `${still.length} parts that look like wheels do not turn although the road moves: ${still.slice(0, 5).join(", ")}${still.length > 5 ? ", ..." : ""}. Lift changes by more than most shape changes.`,
+          `${still.length} parts that look like wheels do not turn although the road moves: ${still.slice(0, 5).join(", ")}${still.length > 5 ? ", ..." : ""}. That is a skidding vehicle.`,
           "Add a rule with rotating: true that matches them.",
           { count: still.length, part: still.length === 1 ? still[0]! : null },
         ),

@@ -26,9 +26,38 @@ export interface Written {
  * to earlier/<number> in the case.
  *
  * @throws Problem(input) `foreign-folder`, `case-of-another-study`, `case-has-results`, `case-edited`, `case-is-running`,
- * `damaged-run-card`.
+ * `damaged-run-card`, `cannot-write-case`.
  */
 export async function writeCase(folder: string, content: CaseContent, options: { again: boolean }): Promise<Written> {
+  try {
+    return await bringUpToDate(folder, content, options);
+  } catch (error) {
+    const why = refusals[(error as NodeJS.ErrnoException).code ?? ""];
+    if (why === undefined) throw error;
+    throw inputProblem({
+      code: "cannot-write-case",
+      message: `The case cannot be written: ${why}.`,
+      where: (error as NodeJS.ErrnoException).path ?? folder,
+      remedy: "Make room or set the permissions there, then prepare again: what was written so far is kept or repaired.",
+      cause: error,
+    });
+  }
+}
+
+/** What the system may say no with, in words. */
+const refusals: Record<string, string> = {
+  EACCES: "permission denied",
+  EPERM: "permission denied",
+  EROFS: "the file system is read-only",
+  ENOSPC: "the disk is full",
+  EDQUOT: "the disk quota is used up",
+  ENOTDIR: "there is a file where a folder is needed",
+  EEXIST: "there is a file where a folder is needed",
+  EISDIR: "there is a folder where a file is needed",
+  ENAMETOOLONG: "the path is too long",
+};
+
+async function bringUpToDate(folder: string, content: CaseContent, options: { again: boolean }): Promise<Written> {
   if (await isFree(folder)) {
     await writeNew(folder, content);
     return { changed: true, remarks: [] };

@@ -2,7 +2,7 @@ import { describe, expect, test } from "vitest";
 import { listPlan } from "../../src/case/list-plan.js";
 import type { CasePlan } from "../../src/case/plan.js";
 import { planStudy } from "../../src/case/prepare.js";
-import { box, moved, shifted, type Triangles } from "../geometry/shapes.js";
+import { box, moved, shifted, type Triangles, turnedOver } from "../geometry/shapes.js";
 import { thrown } from "../study/thrown.js";
 import { cart, cartParts, cartStudy, lid } from "./cart.js";
 
@@ -129,6 +129,12 @@ describe("the plan of a study", () => {
     expect(same!.reference.area.value).toBeCloseTo(plan!.reference.area.value, 4);
     expect(same!.parts.map(({ patch }) => patch)).toEqual(plan!.parts.map(({ patch }) => patch));
     for (const [k, { wheel }] of same!.parts.entries()) if (wheel) expect(wheel.omega).toBeCloseTo(plan!.parts[k]!.wheel!.omega, 3);
+  });
+
+  test("a body whose triangles face inwards has the same grid", async () => {
+    const [plan] = await plans({ variants: { plain: cartParts } });
+    const [turnedIn] = await plans({ variants: { plain: mapped(cartParts, turnedOver) } });
+    expect(Math.abs(turnedIn!.domain.baseCell.value / plan!.domain.baseCell.value - 1)).toBeLessThan(0.05);
   });
 
   test("layers follow the speed, the grid does not", async () => {

@@ -263,6 +263,16 @@ describe("writing a case", () => {
     expect(await thrown(() => prepared(folder))).toMatchObject({ code: "foreign-folder" });
   });
 
+  test("what the system refuses is said in words", async () => {
+    const folder = await temporaryFolder();
+    await writeFile(join(folder, "cases"), "a file");
+    expect(await thrown(() => prepared(folder))).toMatchObject({
+      code: "cannot-write-case",
+      message: "The case cannot be written: there is a file where a folder is needed.",
+      remedy: "Make room or set the permissions there, then prepare again: what was written so far is kept or repaired.",
+    });
+  });
+
   test("a case of another study is left alone", async () => {
     const folder = await temporaryFolder();
     await prepared(folder);
