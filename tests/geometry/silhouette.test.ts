@@ -41,11 +41,11 @@ describe("closed forms", () => {
   });
 
   it("ellipsoid: pi sqrt((bc nx)^2 + (ca ny)^2 + (ab nz)^2), also at 10 degrees of yaw", () => {
-    const mesh = meshOf(ellipsoid(2.25, 0.9, 0.7, 96));
-    near(silhouette(mesh, [1, 0, 0]).area, 1.97920337, 6e-4);
-    near(silhouette(mesh, [0, 1, 0]).area, 4.94800843, 6e-4);
-    near(silhouette(mesh, [0, 0, 1]).area, 6.36172512, 6e-4);
-    near(silhouette(mesh, [Math.cos(10 * deg), Math.sin(10 * deg), 0]).area, 2.13011102, 6e-4);
+    const mesh = meshOf(ellipsoid(2.25, 0.9, 0.7, 64));
+    near(silhouette(mesh, [1, 0, 0]).area, 1.97920337, 12e-4);
+    near(silhouette(mesh, [0, 1, 0]).area, 4.94800843, 12e-4);
+    near(silhouette(mesh, [0, 0, 1]).area, 6.36172512, 12e-4);
+    near(silhouette(mesh, [Math.cos(10 * deg), Math.sin(10 * deg), 0]).area, 2.13011102, 12e-4);
   });
 
   it("torus edge-on: 4 R r + pi r^2, where a sum over facets gives 2", () => {
@@ -97,8 +97,8 @@ describe("closed forms", () => {
 
   it("two spheres that hide each other: twice the disc less the lens, at any depth", () => {
     for (const depth of [0, 0.3, 5]) {
-      const shape = joined(sphere(0.3, 64), sphere(0.3, 64, [depth, 0.4, 0]));
-      near(areaOf(shape, [1, 0, 0]), 0.50353704, 1e-3);
+      const shape = joined(sphere(0.3, 40), sphere(0.3, 40, [depth, 0.4, 0]));
+      near(areaOf(shape, [1, 0, 0]), 0.50353704, 3e-3);
     }
   });
 
@@ -157,7 +157,7 @@ describe("surfaces that are no skin of a solid", () => {
     const next = random(11);
     for (let trial = 0; trial < 8; trial++) {
       const shape = Array.from({ length: 9 * 12 }, () => Math.fround(next()));
-      near(areaOf(shape, [0, 0, 1]), coveredShare(shape, 700), 4e-3);
+      near(areaOf(shape, [0, 0, 1]), coveredShare(shape, 500), 6e-3);
     }
   });
 
