@@ -1,6 +1,7 @@
 import { inputProblem } from "../errors.js";
 import type { Finding } from "../finding.js";
 import { axlesOf, joinWheels, wheelbaseOf } from "./axles.js";
+import { findCrossings } from "./crossings.js";
 import { findLeak, type Leak } from "./leak.js";
 import { measures } from "./measures.js";
 import { type Mirror, mirrorOf } from "./mirror.js";
@@ -62,6 +63,7 @@ export function surveyBody(set: TriangleSet, asked: Partial<Orientation> & { whe
   const axles = axlesOf(wheels, vehicle.rearward);
   const wheelbase = wheelbaseOf(axles);
   const topology = topologyOf(mesh, parts.length);
+  const crossings = findCrossings(mesh, topology.shells.shellOf, parts.length);
   const lateral = vehicle.right.findIndex((value) => value !== 0);
   const symmetry = mirror(lateral);
   const cut = symmetry.kind === "half" ? { axis: lateral, plane: symmetry.plane } : null;
@@ -75,7 +77,7 @@ export function surveyBody(set: TriangleSet, asked: Partial<Orientation> & { whe
     ...sizeFindings(set, unit, asked.unit !== undefined, Math.max(...extents) * scale),
     ...axesFindings(axes),
     ...emptyParts(parts, inUnit.groups),
-    ...topologyFindings(topology, parts, scale, symmetry),
+    ...topologyFindings(topology, crossings, parts, scale, symmetry),
     ...leakFindings(leak),
     ...wheelFindings(parts, fitted, wheels, axles.length, vehicle, scale),
   ];
@@ -106,6 +108,7 @@ export function surveyBody(set: TriangleSet, asked: Partial<Orientation> & { whe
       degenerate: topology.degenerate.count,
       duplicate: topology.duplicate.count,
       shells: topology.shells.count,
+      selfIntersections: crossings === null ? null : crossings.within.count,
     },
     wheels: wheels.map(
       (wheel): Wheel => ({

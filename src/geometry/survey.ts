@@ -33,6 +33,8 @@ export interface Topology {
   degenerate: number;
   duplicate: number;
   shells: number;
+  /** Pairs of triangles of one shell that pass through each other; null where the surface is too large to look. Shells may overlap. */
+  selfIntersections: number | null;
 }
 
 export interface Wheel {

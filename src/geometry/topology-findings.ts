@@ -1,11 +1,18 @@
 import { type Finding, finding } from "../finding.js";
+import type { Crossings } from "./crossings.js";
 import type { Mirror } from "./mirror.js";
 import type { MeshTopology, Occurrence } from "./topology.js";
 import type { Part } from "./triangle-set.js";
 import type { Vector3 } from "./vector.js";
 
-/** What the topology means for a mesh, with figures. `scale`: metres per mesh unit. */
-export function topologyFindings(topology: MeshTopology, parts: Part[], scale: number, mirror: Mirror): Finding[] {
+/** What the topology (and the crossings, where they were looked for) mean for a mesh, with figures. `scale`: metres per mesh unit. */
+export function topologyFindings(
+  topology: MeshTopology,
+  crossings: Crossings | null,
+  parts: Part[],
+  scale: number,
+  mirror: Mirror,
+): Finding[] {
   const findings: Finding[] = [];
   const add = (code: string, severity: Finding["severity"], found: Occurrence, message: string, remedy: string): void => {
     if (found.count === 0) return;
@@ -57,6 +64,14 @@ export function topologyFindings(topology: MeshTopology, parts: Part[], scale: n
     `${topology.duplicate.count} triangles lie on another one with the same corners: areas count twice:`,
     "Remove the doubled surface; often a part was exported twice.",
   );
+  if (crossings !== null)
+    add(
+      "self-intersections",
+      "warning",
+      crossings.within,
+      `${crossings.within.count} pairs of triangles of one shell pass through each other. The surface folds through itself there, and the mesh takes what it meets first:`,
+      "Repair the fold, or separate what should be two overlapping shells.",
+    );
   add(
     "degenerate-triangles",
     "note",

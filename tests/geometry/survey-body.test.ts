@@ -25,7 +25,15 @@ describe("a car-like body", () => {
     expect(survey.unit).toMatchObject({ value: "m", certain: true });
     expect(survey.axes).toMatchObject({ travel: "-x", up: "+z", certain: true });
     expect(survey.symmetry).toEqual({ kind: "whole", plane: 0, deviation: 0 });
-    expect(survey.topology).toEqual({ openEdges: 0, nonManifoldEdges: 0, flippedEdges: 0, degenerate: 0, duplicate: 0, shells: 7 });
+    expect(survey.topology).toEqual({
+      openEdges: 0,
+      nonManifoldEdges: 0,
+      flippedEdges: 0,
+      degenerate: 0,
+      duplicate: 0,
+      shells: 7,
+      selfIntersections: 0,
+    });
   });
 
   it("adds up: triangles, areas, visible frontal areas", () => {
@@ -181,6 +189,13 @@ describe("topology findings", () => {
     expect(finding(survey, "degenerate-triangles")?.severity).toBe("note");
     // The silhouette and the areas do not mind.
     expect(survey.frontalArea.value).toBeGreaterThan(3);
+  });
+
+  it("a surface that folds through itself", () => {
+    const bent = moved(sphere(1, 12), ([x, y, z]) => [2 * (x > 0.2 ? -x - 0.9 : x), y, z + 1]);
+    const survey = surveyBody(bodyOf({ bent }), given);
+    expect(finding(survey, "self-intersections")).toMatchObject({ severity: "warning", part: "bent" });
+    expect(survey.topology.selfIntersections).toBeGreaterThan(10);
   });
 
   it("the open cut of a half body is a remark, and its frontal area is the half", () => {
