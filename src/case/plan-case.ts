@@ -202,7 +202,7 @@ function meshOf(
       cost.meshSeconds,
       "s",
       cost.busy
-        ? "on one core; many triangles or touching parts take five times as long as plain bodies"
+        ? "on one core; many triangles or touching parts take four times as long as plain bodies"
         : "on one core; plain bodies",
       source.solver,
     ),

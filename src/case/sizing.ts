@@ -79,13 +79,13 @@ export interface MeshCost {
 const manyTriangles = 100_000;
 const manyParts = 20;
 /** Seconds per million cells on one core. */
-const meshing = { plain: 150, busy: 900 };
+const meshing = { plain: 180, busy: 700 };
 const iterating = 6;
 
 /**
  * Cost of a mesh of so many cells. Measured with OpenFOAM v1912: the mesher's memory is 105 MB and 1.6 kB a cell and 0.65 kB a
- * triangle; meshing takes 100 to 140 s per million cells for plain bodies, 270 for a pickup with wheels, 900 for a motorcycle of 67
- * parts; the solver 4.4 to 8.6 s per million cells and iteration.
+ * triangle; meshing takes 100 to 140 s per million cells for plain bodies, 230 for a pickup with wheels, 540 to 900 for a motorcycle of
+ * 67 parts; the solver 4.4 to 8.6 s per million cells and iteration.
  */
 export function meshCost(cells: number, triangles: number, parts: number): MeshCost {
   const busy = triangles > manyTriangles || parts > manyParts;
