@@ -1,7 +1,6 @@
-import type { Vector3 } from "./vector.js";
+import { dot, type Vector3 } from "./vector.js";
 import type { WheelFit } from "./wheels.js";
 
-const dot = (a: Vector3, b: Vector3): number => a[0] * b[0] + a[1] * b[1] + a[2] * b[2];
 const between = (a: Vector3, b: Vector3): Vector3 => [a[0] - b[0], a[1] - b[1], a[2] - b[2]];
 
 /**

@@ -1,4 +1,4 @@
-import type { Vector3 } from "./vector.js";
+import { cross, normalised, type Vector3 } from "./vector.js";
 import type { WheelPiece } from "./wheel-pieces.js";
 
 /** Three perpendicular unit vectors; w is the axis. */
@@ -38,9 +38,7 @@ export function revolutionAxis(piece: WheelPiece, { u, v, w }: Frame, centre: { 
   }
   if (best === null) return w;
   const { alongU, alongV } = best;
-  const axis = w.map((value, k) => value + alongU * u[k] + alongV * v[k]) as Vector3;
-  const length = Math.hypot(...axis);
-  return [axis[0] / length, axis[1] / length, axis[2] / length];
+  return normalised(w.map((value, k) => value + alongU * u[k] + alongV * v[k]) as Vector3);
 }
 
 /** 5 per triangle: the moment of its normal about the middle along u, v and w, then the normal along u and v; and its area. */
@@ -155,9 +153,3 @@ function medianMiss({ rows, areas }: Tread, tilt: Tilt): number {
 
 const along = (vertices: Float64Array, vertex: number, a: Vector3): number =>
   vertices[3 * vertex] * a[0] + vertices[3 * vertex + 1] * a[1] + vertices[3 * vertex + 2] * a[2];
-
-const cross = (a: Vector3, b: Vector3): Vector3 => [
-  a[1] * b[2] - a[2] * b[1],
-  a[2] * b[0] - a[0] * b[2],
-  a[0] * b[1] - a[1] * b[0],
-];

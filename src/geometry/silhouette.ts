@@ -2,7 +2,7 @@ import { inputProblem } from "../errors.js";
 import { edgeRings, NO_EDGE, nextInTriangle } from "./edges.js";
 import type { SurfaceMesh } from "./surface-mesh.js";
 import { type Pieces, sweep } from "./sweep.js";
-import type { Vector3 } from "./vector.js";
+import { across, type Vector3 } from "./vector.js";
 import { weld } from "./weld.js";
 
 /** Where so many edges, and so large a share of all, do not cancel out, the triangles do not share vertices as they should. */
@@ -183,14 +183,8 @@ interface Plane {
 }
 
 /** A plane across the direction; along an axis of the coordinates it keeps their values. */
-function planeAcross([dx, dy, dz]: Vector3, vertices: Float32Array, ids: number[]): Plane {
-  const size = [Math.abs(dx), Math.abs(dy), Math.abs(dz)];
-  const least = size.indexOf(Math.min(...size));
-  const helper: Vector3 = [least === 0 ? 1 : 0, least === 1 ? 1 : 0, least === 2 ? 1 : 0];
-  const [x, y, z] = cross(helper, [dx, dy, dz]);
-  const length = Math.hypot(x, y, z);
-  const u: Vector3 = [x / length, y / length, z / length];
-  const v = cross([dx, dy, dz], u);
+function planeAcross(along: Vector3, vertices: Float32Array, ids: number[]): Plane {
+  const { u, v } = across(along);
   const ranges = [u, v].map((axis) => {
     let low = Infinity;
     let high = -Infinity;
@@ -205,12 +199,6 @@ function planeAcross([dx, dy, dz]: Vector3, vertices: Float32Array, ids: number[
     ? { u: v, v: u, middle: [ranges[1].middle, ranges[0].middle] }
     : { u, v, middle: [ranges[0].middle, ranges[1].middle] };
 }
-
-const cross = (a: Vector3, b: Vector3): Vector3 => [
-  a[1] * b[2] - a[2] * b[1],
-  a[2] * b[0] - a[0] * b[2],
-  a[0] * b[1] - a[1] * b[0],
-];
 
 /**
  * How far the rounding of three coordinates to 32 bits can move a vertex in any one direction: √3 times half the spacing of float32

@@ -1,5 +1,5 @@
 import type { SurfaceMesh } from "./surface-mesh.js";
-import type { Vector3 } from "./vector.js";
+import { across, normalised, type Vector3 } from "./vector.js";
 
 /** Pixels along the longer side of the picture: about two millimetres on a road vehicle. */
 const PIXELS = 1024;
@@ -84,14 +84,9 @@ export function visibleShares(
 }
 
 /** 3 per vertex: across, upwards and along the direction of view. */
-function projected(vertices: Float32Array, [dx, dy, dz]: Vector3): Float32Array {
-  const length = Math.hypot(dx, dy, dz);
-  const w: Vector3 = [dx / length, dy / length, dz / length];
-  const size = w.map(Math.abs);
-  const least = size.indexOf(Math.min(...size));
-  const helper: Vector3 = [least === 0 ? 1 : 0, least === 1 ? 1 : 0, least === 2 ? 1 : 0];
-  const u = normalised(cross(helper, w));
-  const v = cross(w, u);
+function projected(vertices: Float32Array, direction: Vector3): Float32Array {
+  const w = normalised(direction);
+  const { u, v } = across(w);
   const points = new Float32Array(vertices.length);
   for (let at = 0; at < vertices.length; at += 3) {
     const x = vertices[at];
@@ -118,15 +113,4 @@ function ranges(points: Float32Array, corners: Uint32Array): { left: number; bot
     if (y > top) top = y;
   }
   return { left, bottom, width: right - left, height: top - bottom };
-}
-
-const cross = (a: Vector3, b: Vector3): Vector3 => [
-  a[1] * b[2] - a[2] * b[1],
-  a[2] * b[0] - a[0] * b[2],
-  a[0] * b[1] - a[1] * b[0],
-];
-
-function normalised(a: Vector3): Vector3 {
-  const length = Math.hypot(...a);
-  return [a[0] / length, a[1] / length, a[2] / length];
 }

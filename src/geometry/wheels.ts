@@ -1,7 +1,7 @@
 import { outerCircle } from "./circle.js";
 import { type Frame, revolutionAxis } from "./revolution-axis.js";
 import type { SurfaceMesh } from "./surface-mesh.js";
-import type { Vector3 } from "./vector.js";
+import { cross, dot, normalised, type Vector3 } from "./vector.js";
 import { type WheelPiece, wheelPieces } from "./wheel-pieces.js";
 
 /** A wheel found in a part. Mesh unit and axes. */
@@ -139,16 +139,3 @@ function middleOf({ vertices, corners }: WheelPiece): Vector3 {
 
 const dotAt = (vertices: Float64Array, at: number, a: Vector3): number =>
   vertices[at] * a[0] + vertices[at + 1] * a[1] + vertices[at + 2] * a[2];
-
-const dot = (a: Vector3, b: Vector3): number => a[0] * b[0] + a[1] * b[1] + a[2] * b[2];
-
-const cross = (a: Vector3, b: Vector3): Vector3 => [
-  a[1] * b[2] - a[2] * b[1],
-  a[2] * b[0] - a[0] * b[2],
-  a[0] * b[1] - a[1] * b[0],
-];
-
-function normalised(a: Vector3): Vector3 {
-  const length = Math.hypot(...a);
-  return [a[0] / length, a[1] / length, a[2] / length];
-}
