@@ -1,127 +1,202 @@
 import * as Plot from "@observablehq/plot";
 import { parseHTML } from "linkedom";
+import { thinned } from "./decimate.js";
 
-// This module is bundled with its two libraries at build time: Node draws the charts, the page holds plain SVG.
+// This module is bundled with its two libraries at build time: Node draws the charts, the page holds plain SVG. Colours come from the
+// page's style sheet through class names, so that one drawing serves light, dark and paper.
 
 const { document } = parseHTML("<!doctype html><html><body></body></html>");
 
 export interface HistoryChart {
-  /** name and unit of the quantity */
+  /** what the chart shows, for readers who hear it */
+  title: string;
+  /** name of the quantity, for the axis */
   label: string;
-  /** one per row */
-  time: Float64Array;
+  /** name and unit of the horizontal axis */
+  axis: string;
+  /** one per row, increasing */
+  iterations: Float64Array;
   values: Float64Array;
-  /** rows of the window: [first, first + rows) */
-  first: number;
-  rows: number;
+  /** first and last iteration of the window */
+  from: number;
+  to: number;
   mean: number;
   halfWidth: number | null;
 }
 
-/** Points per chart: more than the page has pixels across is not seen. */
-const mostPoints = 600;
+/** Drawn size, in pixels of the page at its full width. */
+const width = 470;
+const historyHeight = 216;
+const margins = { left: 62, right: 10, top: 22, bottom: 36 };
 
 /** A history with its start-up shaded, the window, its mean and the band of the half-width, as SVG. */
 export function historyChart(chart: HistoryChart): string {
-  const { time, values, first, rows, mean, halfWidth, label } = chart;
-  const start = time[first];
-  const [from, to] = [time[0], time[first + rows - 1]];
-  const domain = verticalDomain(values, first, mean, halfWidth ?? 0);
-  const svg = Plot.plot({
-    document,
-    width: 760,
-    height: 260,
-    marginLeft: 64,
-    ariaLabel: `${label} over iterations`,
-    x: { label: "iteration", domain: [from, time[time.length - 1]] },
-    y: { label, domain, grid: true, tickFormat: tickFormat(domain[1] - domain[0]) },
-    marks: [
-      ...(start > from ? [Plot.rect([{}], { x1: from, x2: start, y1: domain[0], y2: domain[1], className: "start-up" })] : []),
-      ...(halfWidth === null
-        ? []
-        : [Plot.rect([{}], { x1: start, x2: to, y1: mean - halfWidth, y2: mean + halfWidth, className: "band" })]),
-      Plot.line(thinned(time, values), { x: "time", y: "value", clip: true, strokeWidth: 1.2, className: "history" }),
-      Plot.ruleY([mean], { x1: start, x2: to, className: "mean" }),
-    ],
-  });
-  return svgText(svg);
+  const { title, label, axis, iterations, values, from, to, mean, halfWidth } = chart;
+  const first = iterations[0] ?? 0;
+  const last = iterations[iterations.length - 1] ?? 1;
+  const domain = verticalDomain(chart);
+  const line = thinned(iterations, values, width - margins.left - margins.right);
+  const points = Array.from(line.x, (x, k) => ({ x, y: line.y[k]! }));
+  return svgText(
+    Plot.plot({
+      document,
+      width,
+      height: historyHeight,
+      marginLeft: margins.left,
+      marginRight: margins.right,
+      marginTop: margins.top,
+      marginBottom: margins.bottom,
+      x: { label: axis, domain: [first, last], ticks: 6, labelArrow: "none", tickFormat: ",d" },
+      y: { label, domain, grid: true, ticks: 5, labelArrow: "none", tickFormat: decimalsFor(domain[1] - domain[0]) },
+      marks: [
+        ...(from > first ? [Plot.rect([0], { x1: first, x2: from, y1: domain[0], y2: domain[1], className: "start-up" })] : []),
+        ...(halfWidth === null
+          ? []
+          : [Plot.rect([0], { x1: from, x2: to, y1: mean - halfWidth, y2: mean + halfWidth, clip: true, className: "band" })]),
+        Plot.line(points, { x: "x", y: "y", clip: true, className: "history" }),
+        ...(Number.isFinite(mean) ? [Plot.ruleY([mean], { x1: from, x2: to, className: "mean" })] : []),
+        ...(from > first ? [Plot.ruleX([from], { className: "cut" })] : []),
+      ],
+    }),
+    title,
+  );
 }
 
-export interface Bar {
+export interface ChartBar {
   name: string;
   value: number;
   halfWidth: number | null;
 }
 
-/** Differences by part as bars with their half-widths, largest first, as SVG. */
-export function differenceChart(label: string, bars: Bar[]): string {
-  const longest = Math.max(8, ...bars.map(({ name }) => name.length));
-  const svg = Plot.plot({
-    document,
-    width: 760,
-    height: 50 + 24 * bars.length,
-    marginLeft: Math.min(220, 16 + 7 * longest),
-    ariaLabel: label,
-    x: { label, grid: true, nice: true },
-    y: { label: null, domain: bars.map(({ name }) => name) },
-    marks: [
-      Plot.barX(
-        bars.filter(({ value }) => value >= 0),
-        { x: "value", y: "name", insetTop: 3, insetBottom: 3, className: "more" },
-      ),
-      Plot.barX(
-        bars.filter(({ value }) => value < 0),
-        { x: "value", y: "name", insetTop: 3, insetBottom: 3, className: "less" },
-      ),
-      Plot.ruleY(
-        bars.filter(({ halfWidth }) => halfWidth !== null),
-        {
+/** Differences by part as bars with their half-widths, in the order given, as SVG. */
+export function barChart(title: string, label: string, bars: ChartBar[]): string {
+  const names = distinct(bars.map(({ name }) => name));
+  const rows = bars.map((bar, k) => ({ ...bar, name: names[k]! }));
+  const known = rows.filter(({ halfWidth }) => halfWidth !== null);
+  return svgText(
+    Plot.plot({
+      document,
+      width,
+      height: 46 + 21 * bars.length,
+      marginLeft: nameMargin(names),
+      marginRight: 14,
+      marginTop: 6,
+      marginBottom: margins.bottom,
+      x: { label, grid: true, nice: true, ticks: 5, labelArrow: "none", labelAnchor: "center" },
+      y: { label: null, domain: names, tickSize: 0, tickFormat: shortName },
+      marks: [
+        Plot.barX(
+          rows.filter(({ value }) => value >= 0),
+          { x: "value", y: "name", insetTop: 4, insetBottom: 4, className: "more" },
+        ),
+        Plot.barX(
+          rows.filter(({ value }) => value < 0),
+          { x: "value", y: "name", insetTop: 4, insetBottom: 4, className: "less" },
+        ),
+        Plot.ruleY(known, {
           y: "name",
-          x1: (bar: Bar) => bar.value - bar.halfWidth!,
-          x2: (bar: Bar) => bar.value + bar.halfWidth!,
-          strokeWidth: 1.5,
+          x1: ({ value, halfWidth }: ChartBar) => value - halfWidth!,
+          x2: ({ value, halfWidth }: ChartBar) => value + halfWidth!,
           className: "interval",
-        },
-      ),
-      Plot.ruleX([0], { className: "zero" }),
-    ],
-  });
-  return svgText(svg);
+        }),
+        Plot.ruleX([0], { className: "zero" }),
+      ],
+    }),
+    title,
+  );
 }
 
-/** The window and its surroundings fill the chart; the wild first iterations run out of it. */
-function verticalDomain(values: Float64Array, first: number, mean: number, halfWidth: number): [number, number] {
-  const settled = values.subarray(Math.min(values.length - 1, Math.max(Math.floor(first / 2), Math.floor(values.length / 10))));
-  let [low, high] = [mean - halfWidth, mean + halfWidth];
-  for (const value of settled) {
+export interface ChartAnswer {
+  name: string;
+  value: number;
+  halfWidth: number | null;
+}
+
+/** Every answer as a point with its interval on one scale that holds zero, as SVG. */
+export function intervalChart(title: string, label: string, answers: ChartAnswer[]): string {
+  const names = distinct(answers.map(({ name }) => name));
+  const rows = answers.map((answer, k) => ({ ...answer, name: names[k]! }));
+  const ends = rows.flatMap(({ value, halfWidth }) => [value - (halfWidth ?? 0), value + (halfWidth ?? 0)]);
+  const [low, high] = [Math.min(0, ...ends), Math.max(0, ...ends)];
+  const margin = 0.08 * (high - low) || 1;
+  return svgText(
+    Plot.plot({
+      document,
+      width: 960,
+      height: 44 + 26 * answers.length,
+      marginLeft: nameMargin(names),
+      marginRight: 14,
+      marginTop: 4,
+      marginBottom: margins.bottom,
+      x: { label, grid: true, domain: [low - margin, high + margin], labelArrow: "none", labelAnchor: "center" },
+      y: { type: "point", label: null, domain: names, tickSize: 0, tickFormat: shortName, padding: 0.6 },
+      marks: [
+        Plot.ruleX([0], { className: "zero" }),
+        Plot.ruleY(
+          rows.filter(({ halfWidth }) => halfWidth !== null),
+          {
+            y: "name",
+            x1: ({ value, halfWidth }: ChartAnswer) => value - halfWidth!,
+            x2: ({ value, halfWidth }: ChartAnswer) => value + halfWidth!,
+            className: "whisker",
+          },
+        ),
+        Plot.dot(rows, { x: "value", y: "name", r: 4.5, className: "point" }),
+      ],
+    }),
+    title,
+  );
+}
+
+/** Longest name that is printed beside a chart; the tables hold the whole of it. */
+const longestName = 30;
+
+const shortName = (name: string): string => {
+  const letters = [...name];
+  return letters.length > longestName ? `${letters.slice(0, longestName - 1).join("")}…` : name;
+};
+
+/** A scale of names needs them distinct; bars of one name would lie upon each other. */
+const distinct = (names: string[]): string[] =>
+  names.map((name, k) =>
+    names.indexOf(name) === k ? name : `${name} (${names.slice(0, k).filter((other) => other === name).length + 1})`,
+  );
+
+const nameMargin = (names: string[]): number =>
+  Math.min(230, 18 + 7 * Math.max(6, ...names.map((name) => [...shortName(name)].length)));
+
+/** A frame no lower than this, coefficient units: noise far below what matters must not look large. */
+const leastFrame = 0.004;
+
+/** The window and the second half of what comes before it fill the chart; the wild first iterations run out of it. */
+function verticalDomain({ iterations, values, from, mean, halfWidth }: HistoryChart): [number, number] {
+  const middle = Number.isFinite(mean) ? mean : 0;
+  const reach = Math.max(halfWidth ?? 0, leastFrame / 2);
+  let [low, high] = [middle - reach, middle + reach];
+  const start = iterations.findIndex((iteration) => iteration >= from);
+  for (let row = Math.floor(Math.max(0, start) / 2); row < values.length; row++) {
+    const value = values[row]!;
+    if (!Number.isFinite(value) || Math.abs(value - middle) > tooFar(middle)) continue;
     if (value < low) low = value;
     if (value > high) high = value;
   }
-  const margin = 0.08 * (high - low) || Math.max(1e-4, 0.01 * Math.abs(mean));
+  const margin = 0.08 * (high - low);
   return [low - margin, high + margin];
 }
 
-const tickFormat = (extent: number): string => `.${Math.min(6, Math.max(0, Math.ceil(-Math.log10(extent)) + 1))}f`;
+/** Beyond this from the mean, coefficient units, a value would flatten everything else. */
+const tooFar = (mean: number): number => Math.max(0.15, 0.5 * Math.abs(mean));
 
-/** Least and greatest value of each of some hundred stretches: what thins the points keeps every peak. */
-function thinned(time: Float64Array, values: Float64Array): { time: number; value: number }[] {
-  const stretch = Math.max(1, Math.ceil((2 * values.length) / mostPoints));
-  const points: { time: number; value: number }[] = [];
-  for (let from = 0; from < values.length; from += stretch) {
-    let [least, greatest] = [from, from];
-    for (let row = from; row < Math.min(values.length, from + stretch); row++) {
-      if (values[row] < values[least]) least = row;
-      if (values[row] > values[greatest]) greatest = row;
-    }
-    for (const row of least === greatest ? [least] : [Math.min(least, greatest), Math.max(least, greatest)])
-      points.push({ time: time[row], value: values[row] });
-  }
-  return points;
-}
+const decimalsFor = (extent: number): string => `.${Math.min(6, Math.max(0, Math.ceil(-Math.log10(extent)) + 1))}f`;
 
-/** The SVG without the library's own style element: the page's stylesheet has the rules, so that its policy can be strict. */
-function svgText(svg: { outerHTML: string }): string {
+/**
+ * The SVG without the library's own style element and labels: the page's style sheet has the rules, so that its policy can be strict, and the
+ * title says what the picture is. Coordinates keep two decimals.
+ */
+function svgText(svg: { outerHTML: string }, title: string): string {
+  const label = title.replaceAll("&", "&amp;").replaceAll("<", "&lt;").replaceAll(">", "&gt;").replaceAll('"', "&quot;");
   return svg.outerHTML
     .replace(/<style>[\s\S]*?<\/style>/g, "")
-    .replace(/<svg /, '<svg role="img" xmlns="http://www.w3.org/2000/svg" ');
+    .replace(/<[^>]*>/g, (tag) => tag.replace(/ aria-(?:label|hidden)="[^"]*"/g, "").replace(/(\.\d\d)\d+/g, "$1"))
+    .replace(/^<svg /, `<svg xmlns="http://www.w3.org/2000/svg" role="img" aria-label="${label}" `);
 }

@@ -1,106 +1,138 @@
-import type { NamedBody } from "../page-model.js";
-import { partColours } from "./colours.js";
-import { BodyScene, views } from "./scene.js";
-import { drawStill } from "./still.js";
-import { unpackPart } from "./unpack.js";
+import type { PackedPart, PackedScene } from "../packed.js";
+import { differenceTone, pickedTone, toneOf } from "../tones.js";
+import { Choices } from "./choices.js";
+import { Marks } from "./marks.js";
+import { preparePage } from "./page.js";
+import { BodyScene } from "./scene.js";
+import { unpackMesh } from "./unpack.js";
 
-// Runs in the reader's browser, inside the page. Everything it needs is in the page.
+// Runs in the reader's browser, inside the page. Everything it needs is in the page; without WebGL the still pictures stay.
 
+/** Directions from the body to the eye, case axes (x rearward, y right, z up), and the key that takes them. */
+const views: { name: string; key: string; from: [number, number, number] }[] = [
+  { name: "front", key: "1", from: [-1, 0, 0.001] },
+  { name: "side", key: "2", from: [0, -1, 0.001] },
+  { name: "top", key: "3", from: [0, -0.0005, 1] },
+  { name: "rear", key: "4", from: [1, 0, 0.001] },
+  { name: "three-quarter", key: "0", from: [-0.72, -0.62, 0.36] },
+];
+
+const paints = { parts: "parts", difference: "drag difference" };
+
+preparePage();
 const data = document.getElementById("bodies");
-if (data) show(JSON.parse(data.textContent ?? "[]") as NamedBody[]);
+const viewer = document.getElementById("viewer");
+if (data && viewer) void start(viewer, JSON.parse(data.textContent ?? "") as PackedScene);
 
-function show(bodies: NamedBody[]): void {
-  const canvas = document.getElementById("scene") as HTMLCanvasElement;
-  const unpacked = bodies.map(({ variant, body }) => ({ variant, parts: body.parts.map(unpackPart) }));
-  const colours = partColours(unpacked.flatMap(({ parts }) => parts.map(({ name }) => name)));
-  const rows = [...document.querySelectorAll<HTMLElement>("tr[data-part]")].filter((row) => row.dataset.part !== "whole");
-  let scene: BodyScene | null = null;
+async function start(viewer: HTMLElement, packed: PackedScene): Promise<void> {
+  const canvas = viewer.querySelector<HTMLCanvasElement>("canvas")!;
+  let scene: BodyScene;
+  try {
+    const meshes = await Promise.all(packed.meshes.map(unpackMesh));
+    // The canvas gets its size from the page, so it must be there before the scene looks at it.
+    viewer.classList.add("live");
+    scene = new BodyScene(canvas);
+    scene.load(meshes, packed.variants);
+  } catch {
+    viewer.classList.remove("live");
+    viewer.dataset.drawn = "still";
+    return;
+  }
+  control(viewer, canvas, scene, packed);
+  viewer.dataset.drawn = "scene";
+}
+
+function control(viewer: HTMLElement, canvas: HTMLCanvasElement, scene: BodyScene, { variants, largest }: PackedScene): void {
+  const status = viewer.querySelector<HTMLElement>("[role=status]")!;
+  let variant = variants[0]!;
+  let paint = paints.parts;
   let picked: string | null = null;
 
+  const rowOf = (part: PackedPart): string => part.row ?? part.name;
+  const repaint = (): void => {
+    const parts = new Map(variant.parts.map((part) => [part.name, part]));
+    scene.paint(variant.name, (name) => {
+      const part = parts.get(name)!;
+      if (picked !== null && rowOf(part) === picked) return pickedTone;
+      return paint === paints.parts ? toneOf(part.tone) : differenceTone(part.delta, largest);
+    });
+    viewer.classList.toggle("by-difference", paint === paints.difference);
+    status.textContent = said(variant, picked);
+  };
   const pick = (part: string | null): void => {
     picked = part === picked ? null : part;
-    scene?.mark(picked);
-    for (const row of rows) row.classList.toggle("picked", row.dataset.part === picked);
-    for (const button of document.querySelectorAll<HTMLButtonElement>("#parts button"))
-      button.setAttribute("aria-pressed", String(button.textContent === picked));
-    const status = document.getElementById("picked");
-    if (status) status.textContent = picked === null ? "" : `part: ${picked}`;
+    marks.mark(picked);
+    repaint();
   };
+  const marks = new Marks("#body", pick);
+  const place = (name: string): HTMLElement => viewer.querySelector<HTMLElement>(`[data-choices="${name}"]`)!;
 
-  try {
-    scene = new BodyScene(canvas, colours, pick);
-  } catch {
-    drawStill(canvas, unpacked[0]?.parts ?? [], colours);
-    canvas.dataset.drawn = "still";
-  }
-  if (scene) {
-    for (const { variant, parts } of unpacked) scene.add(variant, parts);
-    canvas.dataset.drawn = "scene";
-    choices(
-      "views",
-      views.map(({ name }) => name),
-      (name) => scene.look(views.find((view) => view.name === name)!.from),
-      false,
-    );
-  }
-  choices(
-    "variants",
-    unpacked.map(({ variant }) => variant),
-    (variant) => {
-      if (scene) scene.show(variant);
-      else drawStill(canvas, unpacked.find((each) => each.variant === variant)!.parts, colours);
-      listParts(
-        unpacked.find((each) => each.variant === variant)!.parts.map(({ name }) => name),
-        colours,
-        pick,
-      );
+  const chooseVariant = new Choices(
+    place("variant"),
+    variants.map(({ name }) => name),
+    (name) => {
+      variant = variants.find((each) => each.name === name)!;
+      scene.show(name);
+      repaint();
     },
-    true,
   );
-  for (const row of rows) row.addEventListener("click", () => pick(row.dataset.part ?? null));
-}
-
-/** Buttons of which the last pressed one is marked; with `first`, the first is pressed at once. */
-function choices(id: string, names: string[], choose: (name: string) => void, first: boolean): void {
-  const place = document.getElementById(id)!;
-  const buttons = names.map((name) => {
-    const button = document.createElement("button");
-    button.type = "button";
-    button.textContent = name;
-    button.addEventListener("click", () => {
-      for (const other of buttons) other.setAttribute("aria-pressed", String(other === button));
-      choose(name);
-    });
-    place.append(button);
-    return button;
+  new Choices(
+    place("view"),
+    views.map(({ name }) => name),
+    (name) => scene.look(views.find((view) => view.name === name)!.from),
+    false,
+  );
+  const paintPlace = place("paint");
+  if (largest > 0) {
+    new Choices(paintPlace, Object.values(paints), (name) => {
+      paint = name;
+      repaint();
+    }).press(paint);
+  } else paintPlace.closest("fieldset")?.remove();
+  listen(canvas, scene, (event) => {
+    const name = scene.partAt(variant.name, event.clientX, event.clientY);
+    const part = variant.parts.find((each) => each.name === name);
+    pick(part ? rowOf(part) : null);
   });
-  if (first) buttons[0]?.click();
+  chooseVariant.press(variant.name);
+  scene.look(views.at(-1)!.from);
 }
 
-function listParts(names: string[], colours: Map<string, string>, pick: (part: string) => void): void {
-  const list = document.getElementById("parts")!;
-  list.replaceChildren(
-    ...names.map((name) => {
-      const item = document.createElement("li");
-      const button = document.createElement("button");
-      button.type = "button";
-      button.append(patch(colours.get(name)!), document.createTextNode(name));
-      button.addEventListener("click", () => pick(name));
-      item.append(button);
-      return item;
-    }),
-  );
+/** What the line below the picture says. */
+function said(variant: PackedScene["variants"][number], picked: string | null): string {
+  if (picked === null) return variant.name;
+  const own = variant.parts.filter((part) => (part.row ?? part.name) === picked);
+  if (own.length === 0) return `${variant.name} has no part ${picked}`;
+  const [{ delta }] = own as [PackedPart];
+  const others = own.map(({ name }) => name).filter((name) => name !== picked);
+  const also = others.length > 0 ? ` with ${others.join(", ")}` : "";
+  const change = delta === null ? "" : `: ${delta > 0 ? "+" : delta < 0 ? "−" : ""}${Math.abs(delta).toFixed(1)} counts of drag`;
+  return `${variant.name}, ${picked}${also}${change}`;
 }
 
-/** A square of the part's colour; drawn, because the page's policy allows no style attributes. */
-function patch(colour: string): SVGElement {
-  const drawing = document.createElementNS("http://www.w3.org/2000/svg", "svg");
-  drawing.setAttribute("viewBox", "0 0 10 10");
-  drawing.setAttribute("aria-hidden", "true");
-  const square = document.createElementNS("http://www.w3.org/2000/svg", "rect");
-  square.setAttribute("width", "10");
-  square.setAttribute("height", "10");
-  square.setAttribute("fill", colour);
-  drawing.append(square);
-  return drawing;
+const step = 0.12;
+
+function listen(canvas: HTMLCanvasElement, scene: BodyScene, clicked: (event: PointerEvent) => void): void {
+  canvas.addEventListener("keydown", (event) => {
+    const view = views.find(({ key }) => key === event.key);
+    const arrow = { ArrowLeft: [-1, 0], ArrowRight: [1, 0], ArrowUp: [0, 1], ArrowDown: [0, -1] }[event.key];
+    if (event.ctrlKey || event.metaKey || event.altKey) return;
+    if (view) scene.look(view.from);
+    else if (arrow && event.shiftKey) scene.shift(-0.04 * arrow[0]!, -0.04 * arrow[1]!);
+    else if (arrow) scene.turn(step * arrow[0]!, step * arrow[1]!);
+    else if (event.key === "+" || event.key === "=") scene.nearer(0.9);
+    else if (event.key === "-") scene.nearer(1 / 0.9);
+    else if (event.key === "Escape") canvas.blur();
+    else return;
+    event.preventDefault();
+  });
+  let down: PointerEvent | null = null;
+  canvas.addEventListener("pointerdown", (event) => {
+    down = event.isPrimary && event.button === 0 ? event : null;
+  });
+  canvas.addEventListener("pointerup", (event) => {
+    // A drag turns the body; only a click picks.
+    if (down && Math.hypot(event.clientX - down.clientX, event.clientY - down.clientY) < 5) clicked(event);
+    down = null;
+  });
 }

@@ -1,10 +1,14 @@
 import {
-  AmbientLight,
   BufferAttribute,
   BufferGeometry,
   Color,
   DirectionalLight,
   DoubleSide,
+  EdgesGeometry,
+  Group,
+  HemisphereLight,
+  LineBasicMaterial,
+  LineSegments,
   Mesh,
   MeshStandardMaterial,
   PerspectiveCamera,
@@ -16,112 +20,114 @@ import {
 } from "three";
 import { OrbitControls } from "three/addons/controls/OrbitControls.js";
 import { toCreasedNormals } from "three/addons/utils/BufferGeometryUtils.js";
-import { pickedColour } from "./colours.js";
-import type { PartMesh } from "./unpack.js";
+import type { PackedPart } from "../packed.js";
+import { inkTone } from "../tones.js";
+import type { MeshArrays } from "./unpack.js";
 
-/** Directions from the body to the eye, case axes (x rearward, y right, z up). */
-export const views: { name: string; from: [number, number, number] }[] = [
-  { name: "three-quarter", from: [-0.72, 0.62, 0.32] },
-  { name: "front", from: [-1, 0, 0] },
-  { name: "side", from: [0, 1, 0] },
-  { name: "plan", from: [0, 0.0001, 1] },
-];
+export interface SceneVariant {
+  name: string;
+  parts: PackedPart[];
+}
 
-/** Edges sharper than this stay sharp, radians. */
+/** Edges sharper than this, radians, stay sharp and are drawn as lines. */
 const crease = 0.6;
+const edgeDegrees = 38;
 
-/** The body in WebGL, drawn only when something changed. Throws where there is no WebGL. */
+type Drawn = Mesh<BufferGeometry, MeshStandardMaterial>;
+
+/** The body in WebGL, drawn only when something changed. The constructor throws where there is no WebGL. */
 export class BodyScene {
   private readonly scene = new Scene();
-  private readonly camera = new PerspectiveCamera(28, 1.6, 0.05, 500);
+  private readonly camera = new PerspectiveCamera(26, 1.6, 0.05, 500);
   private readonly renderer: WebGLRenderer;
   private readonly controls: OrbitControls;
-  private readonly variants = new Map<string, Mesh<BufferGeometry, MeshStandardMaterial>[]>();
-  private shown: Mesh<BufferGeometry, MeshStandardMaterial>[] = [];
-  private readonly target = new Vector3();
-  private reach = 1;
+  private readonly groups = new Map<string, Group>();
+  private readonly lines = new LineBasicMaterial({ color: inkTone, transparent: true, opacity: 0.42 });
+  private readonly middle = new Vector3();
+  private halfDiagonal = 1;
+  private asked = false;
 
-  constructor(
-    private readonly canvas: HTMLCanvasElement,
-    private readonly colours: Map<string, string>,
-    onPick: (part: string | null) => void,
-  ) {
+  constructor(private readonly canvas: HTMLCanvasElement) {
     this.renderer = new WebGLRenderer({ canvas, antialias: true, alpha: true, preserveDrawingBuffer: true });
     this.renderer.setPixelRatio(Math.min(2, devicePixelRatio));
     this.camera.up.set(0, 0, 1);
-    this.scene.add(new AmbientLight(0xffffff, 1.4));
-    for (const [x, y, z, strength] of [
-      [-3, 4, 6, 2.2],
-      [4, -5, 2, 0.8],
-    ] as const) {
-      const light = new DirectionalLight(0xffffff, strength);
-      light.position.set(x, y, z);
-      this.scene.add(light);
-    }
+    this.scene.add(new HemisphereLight(0xffffff, 0x9a948a, 1.7));
+    // The main light follows the eye, so that no side is ever dark.
+    const light = new DirectionalLight(0xffffff, 1.9);
+    light.position.set(-0.7, 1.2, 0.8);
+    this.camera.add(light);
+    this.scene.add(this.camera);
     this.controls = new OrbitControls(this.camera, canvas);
     this.controls.addEventListener("change", () => this.draw());
+    this.leavePageItsScrolling();
     new ResizeObserver(() => this.resize()).observe(canvas);
-    this.listen(onPick);
   }
 
-  add(variant: string, parts: PartMesh[]): void {
-    this.variants.set(
-      variant,
-      parts.map(({ name, vertices, indices }) => {
-        const indexed = new BufferGeometry();
-        indexed.setAttribute("position", new BufferAttribute(vertices, 3));
-        indexed.setIndex(new BufferAttribute(indices, 1));
-        const material = new MeshStandardMaterial({
-          color: this.colours.get(name) ?? "#888888",
-          roughness: 0.85,
-          metalness: 0,
-          side: DoubleSide,
-        });
-        const mesh = new Mesh(toCreasedNormals(indexed, crease), material);
-        mesh.name = name;
-        return mesh;
-      }),
-    );
+  /** Builds all variants; a mesh that two of them share is built once. */
+  load(meshes: MeshArrays[], variants: SceneVariant[]): void {
+    const built = meshes.map(({ vertices, indices }) => {
+      const indexed = new BufferGeometry();
+      indexed.setAttribute("position", new BufferAttribute(vertices, 3));
+      indexed.setIndex(new BufferAttribute(indices, 1));
+      return { surface: toCreasedNormals(indexed, crease), edges: new EdgesGeometry(indexed, edgeDegrees) };
+    });
+    for (const { name, parts } of variants) {
+      const group = new Group();
+      for (const part of parts) {
+        const { surface, edges } = built[part.mesh]!;
+        const mesh: Drawn = new Mesh(
+          surface,
+          new MeshStandardMaterial({
+            roughness: 0.82,
+            metalness: 0,
+            side: DoubleSide,
+            polygonOffset: true,
+            polygonOffsetFactor: 1,
+            polygonOffsetUnits: 1,
+          }),
+        );
+        mesh.name = part.name;
+        group.add(mesh, new LineSegments(edges, this.lines));
+      }
+      group.visible = false;
+      this.groups.set(name, group);
+      this.scene.add(group);
+    }
+    this.frame(built.map(({ surface }) => surface));
   }
 
   show(variant: string): void {
-    this.scene.remove(...this.shown);
-    const first = this.shown.length === 0;
-    this.shown = this.variants.get(variant) ?? [];
-    this.scene.add(...this.shown);
-    if (first) this.frame();
+    for (const [name, group] of this.groups) group.visible = name === variant;
     this.draw();
   }
 
-  mark(part: string | null): void {
-    for (const mesh of [...this.variants.values()].flat())
-      mesh.material.color = new Color(mesh.name === part ? pickedColour : (this.colours.get(mesh.name) ?? "#888888"));
+  /** Paints every part of a variant. */
+  paint(variant: string, colourOf: (part: string) => string): void {
+    for (const mesh of this.meshes(variant)) mesh.material.color = new Color(colourOf(mesh.name));
     this.draw();
   }
 
+  /** Name of the part under a point of the window; null beside the body. */
+  partAt(variant: string, clientX: number, clientY: number): string | null {
+    const { left, top, width, height } = this.canvas.getBoundingClientRect();
+    const point = new Vector2((2 * (clientX - left)) / width - 1, 1 - (2 * (clientY - top)) / height);
+    const ray = new Raycaster();
+    ray.setFromCamera(point, this.camera);
+    return ray.intersectObjects(this.meshes(variant))[0]?.object.name ?? null;
+  }
+
+  /** Looks at the middle of the body from a direction, case axes, so that all of it is seen. */
   look([x, y, z]: [number, number, number]): void {
-    const distance = (1.15 * this.reach) / Math.tan((this.camera.fov * Math.PI) / 360);
-    this.camera.position.copy(this.target).addScaledVector(new Vector3(x, y, z).normalize(), distance);
-    this.controls.target.copy(this.target);
+    const narrow = Math.min(1, this.camera.aspect / 1.5);
+    const distance = (0.62 * this.halfDiagonal) / Math.tan((this.camera.fov * Math.PI) / 360) / narrow;
+    this.camera.position.copy(this.middle).addScaledVector(new Vector3(x, y, z).normalize(), distance);
+    this.controls.target.copy(this.middle);
     this.controls.update();
     this.draw();
   }
 
-  private frame(): void {
-    const low = new Vector3(1e9, 1e9, 1e9);
-    const high = new Vector3(-1e9, -1e9, -1e9);
-    for (const { geometry } of this.shown) {
-      geometry.computeBoundingBox();
-      low.min(geometry.boundingBox!.min);
-      high.max(geometry.boundingBox!.max);
-    }
-    this.target.addVectors(low, high).multiplyScalar(0.5);
-    // The picture is wider than high: half the height decides for a long low body.
-    this.reach = 0.34 * low.distanceTo(high);
-    this.look(views[0]!.from);
-  }
-
-  private turn(sideways: number, upwards: number): void {
+  /** Radians about the vertical, and upwards. */
+  turn(sideways: number, upwards: number): void {
     const arm = this.camera.position.clone().sub(this.controls.target);
     const distance = arm.length();
     const azimuth = Math.atan2(arm.y, arm.x) + sideways;
@@ -131,46 +137,54 @@ export class BodyScene {
       .multiplyScalar(distance)
       .add(this.controls.target);
     this.controls.update();
+    this.draw();
   }
 
-  private nearer(factor: number): void {
+  /** Shares of the distance, to the right and up on the screen. */
+  shift(right: number, up: number): void {
+    const distance = this.camera.position.distanceTo(this.controls.target);
+    const move = new Vector3(1, 0, 0)
+      .applyQuaternion(this.camera.quaternion)
+      .multiplyScalar(right * distance)
+      .addScaledVector(new Vector3(0, 1, 0).applyQuaternion(this.camera.quaternion), up * distance);
+    this.camera.position.add(move);
+    this.controls.target.add(move);
+    this.controls.update();
+    this.draw();
+  }
+
+  nearer(factor: number): void {
     this.camera.position.sub(this.controls.target).multiplyScalar(factor).add(this.controls.target);
     this.controls.update();
+    this.draw();
   }
 
-  private listen(onPick: (part: string | null) => void): void {
-    const keys: Record<string, () => void> = {
-      ArrowLeft: () => this.turn(-0.12, 0),
-      ArrowRight: () => this.turn(0.12, 0),
-      ArrowUp: () => this.turn(0, 0.12),
-      ArrowDown: () => this.turn(0, -0.12),
-      "+": () => this.nearer(0.9),
-      "-": () => this.nearer(1 / 0.9),
-      ...Object.fromEntries(views.map(({ from }, index) => [String(index + 1), () => this.look(from)])),
-    };
-    this.canvas.addEventListener("keydown", (event) => {
-      const act = keys[event.key];
-      if (!act) return;
-      event.preventDefault();
-      act();
-      this.draw();
-    });
-    let down = { x: 0, y: 0 };
-    this.canvas.addEventListener("pointerdown", (event) => {
-      down = { x: event.clientX, y: event.clientY };
-    });
-    this.canvas.addEventListener("pointerup", (event) => {
-      // A drag turns the body; only a click picks.
-      if (Math.hypot(event.clientX - down.x, event.clientY - down.y) < 4) onPick(this.partAt(event));
-    });
+  private meshes(variant: string): Drawn[] {
+    return (this.groups.get(variant)?.children ?? []).filter((child): child is Drawn => child instanceof Mesh);
   }
 
-  private partAt(event: PointerEvent): string | null {
-    const { left, top, width, height } = this.canvas.getBoundingClientRect();
-    const point = new Vector2((2 * (event.clientX - left)) / width - 1, 1 - (2 * (event.clientY - top)) / height);
-    const ray = new Raycaster();
-    ray.setFromCamera(point, this.camera);
-    return ray.intersectObjects(this.shown)[0]?.object.name ?? null;
+  private frame(surfaces: BufferGeometry[]): void {
+    const low = new Vector3(Infinity, Infinity, Infinity);
+    const high = new Vector3(-Infinity, -Infinity, -Infinity);
+    for (const surface of surfaces) {
+      surface.computeBoundingBox();
+      low.min(surface.boundingBox!.min);
+      high.max(surface.boundingBox!.max);
+    }
+    if (low.x > high.x) return;
+    this.middle.addVectors(low, high).multiplyScalar(0.5);
+    this.halfDiagonal = low.distanceTo(high) / 2;
+    this.controls.maxDistance = 40 * this.halfDiagonal;
+  }
+
+  /** The wheel zooms only while the picture has the focus, and a finger that moves up or down scrolls the page. */
+  private leavePageItsScrolling(): void {
+    const { canvas, controls } = this;
+    controls.enableZoom = false;
+    canvas.addEventListener("focus", () => (controls.enableZoom = true));
+    canvas.addEventListener("blur", () => (controls.enableZoom = false));
+    canvas.addEventListener("pointerdown", () => canvas.focus({ preventScroll: true }));
+    canvas.style.touchAction = "pan-y";
   }
 
   private resize(): void {
@@ -182,7 +196,13 @@ export class BodyScene {
     this.draw();
   }
 
+  /** At most one picture per frame of the screen. */
   private draw(): void {
-    this.renderer.render(this.scene, this.camera);
+    if (this.asked) return;
+    this.asked = true;
+    requestAnimationFrame(() => {
+      this.asked = false;
+      this.renderer.render(this.scene, this.camera);
+    });
   }
 }

@@ -1,27 +1,40 @@
-import type { PackedPart } from "../page-model.js";
+import { gridSteps, type PackedMesh } from "../packed.js";
 
-export interface PartMesh {
-  name: string;
+export interface MeshArrays {
   /** 3 per vertex, metres, case axes */
   vertices: Float32Array;
   /** 3 per triangle */
   indices: Uint32Array;
 }
 
-function bytesOf(base64: string): ArrayBuffer {
-  const text = atob(base64);
-  const bytes = new Uint8Array(text.length);
-  for (let at = 0; at < text.length; at++) bytes[at] = text.charCodeAt(at);
-  return bytes.buffer;
-}
-
-/** A packed part as vertices and triangles again. */
-export function unpackPart({ name, min, max, positions, indices }: PackedPart): PartMesh {
-  const grid = new Uint16Array(bytesOf(positions));
+/** A packed mesh as vertices and triangles again. Rejects when the text is damaged. */
+export async function unpackMesh({ min, max, vertices: count, triangles, positions, indices }: PackedMesh): Promise<MeshArrays> {
+  const grid = new Uint16Array(3 * count);
+  joinPlanes(grid, await inflated(positions));
+  for (let at = 3; at < grid.length; at++) grid[at]! += grid[at - 3]!;
   const vertices = new Float32Array(grid.length);
   for (let at = 0; at < grid.length; at++) {
     const axis = at % 3;
-    vertices[at] = min[axis]! + (grid[at]! / 65535) * (max[axis]! - min[axis]!);
+    vertices[at] = min[axis]! + (grid[at]! / gridSteps) * (max[axis]! - min[axis]!);
   }
-  return { name, vertices, indices: new Uint32Array(bytesOf(indices)) };
+  const corners = new Uint32Array(3 * triangles);
+  joinPlanes(corners, await inflated(indices));
+  for (let at = 1; at < corners.length; at++) corners[at]! += corners[at - 1]!;
+  return { vertices, indices: corners };
+}
+
+async function inflated(base64: string): Promise<Uint8Array> {
+  const text = atob(base64);
+  const bytes = Uint8Array.from(text, (letter) => letter.charCodeAt(0));
+  const plain = new Blob([bytes]).stream().pipeThrough(new DecompressionStream("deflate"));
+  return new Uint8Array(await new Response(plain).arrayBuffer());
+}
+
+function joinPlanes(values: Uint16Array | Uint32Array, planes: Uint8Array): void {
+  if (planes.length !== values.byteLength) throw new Error("the packed body is damaged");
+  for (let at = 0; at < values.length; at++) {
+    let value = 0;
+    for (let byte = 0; byte < values.BYTES_PER_ELEMENT; byte++) value += planes[byte * values.length + at]! * 2 ** (8 * byte);
+    values[at] = value;
+  }
 }
