@@ -6,7 +6,7 @@ import { readCaseRecord } from "../../src/ledger/case-record.js";
 import { readCheckMesh } from "../../src/openfoam/mesh-log.js";
 import { dragledger, root, solverMissing } from "../helpers/built.js";
 
-// The sample study with the built program and the real solver, on a mesh that is far too coarse for results and fine for the chain.
+// The sample study with the built program and the real solver, on a mesh that is far too coarse and too short for results and fine for the chain.
 
 let folder: string;
 const variants = ["open-bed", "covered-bed", "tailgate-down"];
@@ -18,7 +18,7 @@ beforeAll(async () => {
   const study = await readFile(join(root, "sample-geometry/pickup-bed.yaml"), "utf8");
   await writeFile(
     join(folder, "pickup-bed.yaml"),
-    study.replace(/cells: [^,]+,/, "cells: 15 thousand,").replace(/most-iterations: \d+/, "most-iterations: 60"),
+    study.replace(/cells: [^,]+,/, "cells: 15 thousand,").replace(/most-iterations: \d+/, "most-iterations: 100"),
   );
 });
 
@@ -35,9 +35,9 @@ describe.skipIf(solverMissing !== null)(
       for (const each of document.cases) {
         expect(each.state).toMatch(/^(settled|stopped-at-limit)$/);
         expect(each.iterations).toBeGreaterThanOrEqual(50);
-        expect(each.iterations).toBeLessThanOrEqual(60);
+        expect(each.iterations).toBeLessThanOrEqual(100);
       }
-      // 60 iterations do not settle a pickup: done, and the answer is no.
+      // so few iterations need not settle a pickup: done, and the answer is no.
       expect(code).toBe(document.cases.every((each: { settled: boolean }) => each.settled) ? 0 : 3);
     });
 
