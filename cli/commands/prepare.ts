@@ -33,7 +33,7 @@ export const command: CommandModule<Options> = {
   async run({ args, options, print }) {
     const study = await readStudy(args[0] as string);
     if (options.plan) {
-      const planned = await planStudy(study);
+      const planned = await planStudy(study, { accept: options.accept === true });
       const plan = listPlan(planned[0]!.plan);
       print.document("prepare", {
         study: study.name,
@@ -83,7 +83,10 @@ export const command: CommandModule<Options> = {
         print.colours.bold,
       ),
     );
-    for (const each of prepared) printCaseFindings(print, each);
+    for (const each of prepared) {
+      for (const remark of each.remarks) print.note(`${each.variant} ${each.condition}: ${remark}`);
+      printCaseFindings(print, each);
+    }
     print.line(`next: dragledger run ${args[0]}`);
     return exitCode.done;
   },

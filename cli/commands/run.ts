@@ -33,7 +33,9 @@ export const command: CommandModule<Options> = {
   ],
   async run({ args, options, print, signal }) {
     const { paths, study } = await namedCases(args[0] as string[]);
-    if (study) await prepareStudy(study, {});
+    if (study)
+      for (const { variant, condition, remarks } of await prepareStudy(study, {}))
+        for (const remark of remarks) print.note(`${variant} ${condition}: ${remark}`);
     const shown = progress(print);
     const cores = options.cores ?? availableParallelism();
     const outcomes = await runCases(
