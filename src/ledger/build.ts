@@ -1,8 +1,8 @@
-import { type Finding, finding } from "../finding.js";
 import { axleLift } from "./axles.js";
 import type { CaseRecord } from "./case-record.js";
 import { closingOf } from "./closing.js";
 import type { Entry, Estimate, LedgerRun } from "./ledger.js";
+import { ledgerFindings } from "./ledger-findings.js";
 import type { PartSeries } from "./part-series.js";
 import { forcePerCoefficient } from "./reference.js";
 import { type LedgerWindow, windowOf } from "./window.js";
@@ -12,17 +12,18 @@ import { estimateFrom } from "./window-estimate.js";
 export function buildLedger(record: CaseRecord): LedgerRun {
   const window = windowOf(record);
   const entry = (series: PartSeries) => entryOf(series, record, window);
+  const total = entry(record.whole);
   return {
     path: record.path,
     variant: record.variant,
     condition: record.condition,
     reference: record.reference,
     window: { from: window.from, to: window.to, rows: window.rows, effectiveSamples: window.drag.effectiveSamples },
-    total: entry(record.whole),
+    total,
     parts: record.parts.map((part) => ({ name: part.name, ...entry(part) })),
     closing: closingOf(record),
     recorded: record.card?.recorded ?? null,
-    findings: [...record.findings, ...ledgerFindings(record, window)],
+    findings: [...record.findings, ...ledgerFindings(record, window, total)],
   };
 }
 
@@ -57,51 +58,4 @@ function entryOf(series: PartSeries, { reference, card }: CaseRecord, window: Le
     lift: times(cl, newtons),
     side: times(cs, newtons),
   };
-}
-
-function ledgerFindings(record: CaseRecord, { drag, lift }: LedgerWindow): Finding[] {
-  const findings: Finding[] = [];
-  for (const part of [record.whole, ...record.parts])
-    if (part.cd.length > 0 && part.cd.every((value) => value === 0) && part.cl.every((value) => value === 0))
-      findings.push(
-        finding(
-          "zero-forces",
-          "error",
-          "every force is exactly zero: the patch pattern of its force object matches nothing, or the part is not in the mesh.",
-          "Compare the patch names in constant/polyMesh/boundary with the force object.",
-          { part: part.name },
-        ),
-      );
-  for (const [name, settling] of Object.entries({ drag, lift }))
-    if (settling.verdict !== "settled" && settling.verdict !== "oscillating")
-      findings.push(
-        finding(
-          "not-settled",
-          "warning",
-          `${name} has not settled (${settling.verdict}): its mean may still move by more than its half-width.`,
-          "Run on, or see dragledger converged.",
-          {
-            part: null,
-          },
-        ),
-      );
-  if (record.reference.density === 1)
-    findings.push(
-      finding(
-        "density-one",
-        "warning",
-        "The density is 1 kg/m3, which usually means that none was set: newtons are then about a fifth too small.",
-        "Give the real one with --density.",
-      ),
-    );
-  if (record.reference.symmetryFactor === 2)
-    findings.push(
-      finding(
-        "half-model",
-        "note",
-        "Half model: every number is of the whole vehicle, and a part stands for itself and its mirror image.",
-        "",
-      ),
-    );
-  return findings;
 }

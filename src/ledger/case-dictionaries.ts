@@ -1,36 +1,103 @@
-import { readFile } from "node:fs/promises";
-import { join } from "node:path";
+import { readFile, stat } from "node:fs/promises";
+import { join, relative, resolve, sep } from "node:path";
 import { Problem } from "../errors.js";
 import { type BoundaryPatch, boundaryPatches } from "../openfoam/boundary.js";
-import { type Dictionary, dictionaryAt, isDictionary, numberAt, parseDictionary, wordsAt } from "../openfoam/dictionary.js";
+import {
+  type Dictionary,
+  type DictionaryValue,
+  isDictionary,
+  numberAt,
+  parseDictionary,
+  valuesAt,
+} from "../openfoam/dictionary.js";
+import { type PatchWord, selectedPatches } from "./patch-patterns.js";
 
 /** What the dictionaries of a case made elsewhere say of its force objects. Missing or unreadable files say nothing. */
 export interface CaseDictionaries {
-  /** Density written into a force object; undefined when none has one. 1 usually means: per unit density. */
-  density: number | undefined;
-  /** Mesh patches behind the patterns of a function object; null when they cannot be told. */
+  /** `rhoInf` of a function object, kg/m³; null when it has none. 1 usually means: per unit density. */
+  densityOf(object: string): number | null;
+  /** Mesh patches behind the selection of a function object; null when they cannot be told. */
   patchesOf(object: string): string[] | null;
   /** The mesh has a symmetry plane: the forces may be those of a half model. */
   symmetryPlane: boolean;
 }
 
+/** Files that one control dictionary may include; cases in use have fewer than ten. */
+const mostIncluded = 50;
+const mostBytes = 64 * 1024 * 1024;
+
+/** Reads `system/controlDict` with the files it includes from the case folder, and `constant/polyMesh/boundary`. Nothing is executed. */
 export async function readCaseDictionaries(casePath: string): Promise<CaseDictionaries> {
-  const control = await dictionary(join(casePath, "system", "controlDict"));
+  const functions = await readFunctions(casePath);
   const boundary = await dictionary(join(casePath, "constant", "polyMesh", "boundary"));
   const patches = boundary ? patchesIn(boundary) : [];
-  const functions = control ? dictionaryAt(control, "functions") : undefined;
+  // A mesh region stands before the object's own name.
+  const entryOf = (object: string): Dictionary | undefined => functions.get(object.split("/").at(-1)!);
   return {
-    density: densityIn(functions),
+    densityOf(object) {
+      const entry = entryOf(object);
+      return (entry && numberAt(entry, "rhoInf")) ?? null;
+    },
     patchesOf(object) {
-      const entry = functions && dictionaryAt(functions, object.split("/").at(-1)!);
-      const patterns = entry && wordsAt(entry, "patches");
-      return patterns && patches.length > 0 ? matching(patterns, patches) : null;
+      const entry = entryOf(object);
+      const words = entry && patchWords(entry);
+      return words && patches.length > 0 ? selectedPatches(words, patches) : null;
     },
     symmetryPlane: patches.some(({ type }) => type === "symmetryPlane" || type === "symmetry"),
   };
 }
 
+/** The function objects of a case by name, also those in files that the control dictionary includes. */
+async function readFunctions(casePath: string): Promise<Map<string, Dictionary>> {
+  const found = new Map<string, Dictionary>();
+  const system = join(casePath, "system");
+  const control = await dictionary(join(system, "controlDict"));
+  if (control === null) return found;
+  let left = mostIncluded;
+  const included = async (directive: string): Promise<{ name: string; content: Dictionary; asObject: boolean } | null> => {
+    const [, word, name] = /^#(s?include|includeIfPresent|includeFunc) ([^\s()<>$]+)$/.exec(directive) ?? [];
+    if (name === undefined || left-- <= 0) return null;
+    const path = resolve(system, name);
+    const inside = relative(resolve(casePath), path);
+    if (inside.startsWith("..") || inside.split(sep).includes("..") || inside.startsWith(sep)) return null;
+    const content = await dictionary(path);
+    return content && { name, content, asObject: word === "includeFunc" };
+  };
+  const take = async (functions: Dictionary): Promise<void> => {
+    for (const [name, values] of functions.entries) if (isDictionary(values[0])) found.set(name, values[0]);
+    for (const directive of functions.directives) {
+      const file = await included(directive);
+      if (file === null) continue;
+      if (file.asObject) found.set(file.name, file.content);
+      await take(file.content);
+    }
+  };
+  const takeFrom = async (top: Dictionary): Promise<void> => {
+    const [value] = valuesAt(top, "functions") ?? [];
+    if (isDictionary(value)) await take(value);
+    else takeList(value, found);
+    for (const directive of top.directives) {
+      const file = await included(directive);
+      if (file !== null) await takeFrom(file.content);
+    }
+  };
+  await takeFrom(control);
+  return found;
+}
+
+/** `functions ( name { ... } ... );` of versions before 2.2 */
+function takeList(value: DictionaryValue | undefined, found: Map<string, Dictionary>): void {
+  if (typeof value !== "object" || value.kind !== "list") return;
+  value.items.forEach((item, index) => {
+    const title = value.items[index - 1];
+    if (isDictionary(item) && typeof title === "object" && (title.kind === "word" || title.kind === "string"))
+      found.set(title.text, item);
+  });
+}
+
 async function dictionary(path: string): Promise<Dictionary | null> {
+  const state = await stat(path).catch(() => null);
+  if (!state?.isFile() || state.size > mostBytes) return null;
   const text = await readFile(path, "utf8").catch(() => null);
   if (text === null) return null;
   try {
@@ -50,24 +117,16 @@ function patchesIn(boundary: Dictionary): BoundaryPatch[] {
   }
 }
 
-function densityIn(functions: Dictionary | undefined): number | undefined {
-  for (const values of functions?.entries.values() ?? []) {
-    const [entry] = values;
-    const density = isDictionary(entry) ? numberAt(entry, "rhoInf") : undefined;
-    if (density !== undefined) return density;
+/** The words behind `patches`; null when the entry is missing or holds something that is no word. */
+function patchWords(entry: Dictionary): PatchWord[] | null {
+  const values = valuesAt(entry, "patches");
+  if (values === undefined) return null;
+  const list = values.find((value) => typeof value === "object" && value.kind === "list");
+  const items = typeof list === "object" && list.kind === "list" ? list.items : values;
+  const words: PatchWord[] = [];
+  for (const item of items) {
+    if (typeof item !== "object" || (item.kind !== "word" && item.kind !== "string")) return null;
+    words.push({ text: item.text, quoted: item.kind === "string" });
   }
-  return undefined;
-}
-
-/** Patches and groups that a word names or a pattern matches, as the solver does it. */
-function matching(patterns: string[], patches: BoundaryPatch[]): string[] {
-  const tests = patterns.map((pattern) => {
-    try {
-      const whole = new RegExp(`^(?:${pattern})$`);
-      return (name: string) => name === pattern || whole.test(name);
-    } catch {
-      return (name: string) => name === pattern;
-    }
-  });
-  return patches.filter(({ name, groups }) => tests.some((test) => test(name) || groups.some(test))).map(({ name }) => name);
+  return words;
 }

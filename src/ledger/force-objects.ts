@@ -1,5 +1,7 @@
 import type { Vector3 } from "../geometry/vector.js";
 import type { History } from "../history/history.js";
+import type { CaseDictionaries } from "./case-dictionaries.js";
+import { cutHistory, onCommonRows } from "./common-rows.js";
 
 /** x, y, z of a vector, one value per row each. */
 export type VectorSeries = [Float64Array, Float64Array, Float64Array];
@@ -9,6 +11,8 @@ export interface ForceObject {
   name: string;
   /** Patches as the control dictionary names them; null when it does not. */
   patches: string[] | null;
+  /** `rhoInf` of the object in the control dictionary as it stands now, kg/m³; null when it has none */
+  statedDensity: number | null;
   time: Float64Array;
   /** N (times the density of the object), in the case's axes; moments about `centre` */
   forces: { total: VectorSeries; pressure: VectorSeries; viscous: VectorSeries } | null;
@@ -44,38 +48,38 @@ const vectorIn = (history: History, key: string): Vector3 | undefined => {
 };
 
 /** The force objects among the histories of a case, forces, moments and coefficients of one object together. Rows without a table are not objects. */
-export function forceObjects(histories: History[], patchesOf: (object: string) => string[] | null): ForceObject[] {
+export function forceObjects(
+  histories: readonly History[],
+  dictionaries: Pick<CaseDictionaries, "patchesOf" | "densityOf">,
+): ForceObject[] {
   const byName = new Map<string, History[]>();
   for (const history of histories)
     if (history.rows > 0 && ["forces", "moments", "coefficients"].includes(history.layout))
       byName.set(history.object, [...(byName.get(history.object) ?? []), history]);
   return [...byName]
-    .map(([name, own]) => objectOf(name, own, patchesOf(name)))
+    .map(([name, own]) => objectOf(name, own, dictionaries))
     .filter((object) => object.forces || object.coefficients);
 }
 
-function objectOf(name: string, own: History[], patches: string[] | null): ForceObject {
-  const force = own.find((history) => history.layout === "forces");
-  const moment = own.find((history) => history.layout === "moments");
-  const coefficient = own.find((history) => history.layout === "coefficients");
-  const base = force ?? coefficient ?? own[0]!;
+function objectOf(name: string, own: History[], dictionaries: Pick<CaseDictionaries, "patchesOf" | "densityOf">): ForceObject {
+  // A run that was killed leaves one table a row longer than the other.
+  const { kept } = onCommonRows(own, timesOf, cutHistory);
+  const force = kept.find((history) => history.layout === "forces");
+  const moment = kept.find((history) => history.layout === "moments");
+  const coefficient = kept.find((history) => history.layout === "coefficients");
   return {
     name,
-    patches,
-    time: base.columns[0]!.values.subarray(0, base.rows),
+    patches: dictionaries.patchesOf(name),
+    statedDensity: dictionaries.densityOf(name),
+    time: timesOf(kept[0]),
     forces: force ? forcesOf(force) : null,
-    moments: moment && sameTimes(base, moment) ? momentsOf(moment) : null,
-    coefficients: coefficient && sameTimes(base, coefficient) ? coefficientsOf(coefficient) : null,
+    moments: moment ? momentsOf(moment) : null,
+    coefficients: coefficient ? coefficientsOf(coefficient) : null,
     histories: own,
   };
 }
 
-function sameTimes(a: History, b: History): boolean {
-  const [one, other] = [a.columns[0]!.values, b.columns[0]!.values];
-  if (a.rows !== b.rows) return false;
-  for (let row = 0; row < a.rows; row++) if (one[row] !== other[row]) return false;
-  return true;
-}
+const timesOf = (history: History): Float64Array => history.columns[0].values.subarray(0, history.rows);
 
 function forcesOf(history: History): ForceObject["forces"] {
   const total = vectorColumns(history, "total");

@@ -17,20 +17,20 @@ export interface PartSeries {
   cdFriction: Float64Array | null;
 }
 
-/** Unit vectors of the run: drag along the flow, lift up, side to the right of travel. */
+/** Unit vectors of the run: drag along the flow, lift up. */
 export interface Directions {
   drag: Vector3;
   lift: Vector3;
-  /** lift x drag: the axis of a nose-up moment */
-  pitch: Vector3;
+  /** lift x drag: to the right of travel, the axis of a nose-up moment; null when drag and lift are written along one line */
+  pitch: Vector3 | null;
 }
 
 /** What turns the tables of a run into coefficients. */
 export interface RunReference {
   reference: Reference;
   axes: Directions;
-  /** kg/m³ that the force tables were written with; null when it cannot be known */
-  writtenDensity: number | null;
+  /** kg/m³ that the force table of an object was written with; null when it cannot be known */
+  writtenDensity(object: ForceObject): number | null;
 }
 
 const cross = (a: Vector3, b: Vector3): Vector3 => [
@@ -41,10 +41,14 @@ const cross = (a: Vector3, b: Vector3): Vector3 => [
 
 const dot = (a: Vector3, b: Vector3): number => a[0] * b[0] + a[1] * b[1] + a[2] * b[2];
 
+/** Sine of the angle between drag and lift below which they say nothing about the side. */
+const smallestSine = 1e-3;
+
 export function directionsOf(drag: Vector3, lift: Vector3): Directions {
   const pitch = cross(lift, drag);
   const size = Math.hypot(...pitch);
-  return { drag, lift, pitch: pitch.map((x) => x / size) as Vector3 };
+  const known = size > smallestSine * Math.hypot(...drag) * Math.hypot(...lift);
+  return { drag, lift, pitch: known ? (pitch.map((x) => x / size) as Vector3) : null };
 }
 
 function along([x, y, z]: VectorSeries, direction: Vector3, factor: number): Float64Array {
@@ -58,18 +62,20 @@ const scaled = (values: Float64Array, factor: number): Float64Array => values.ma
 
 /**
  * The coefficients of an object on the run's reference. Forces are used where density, speed and area are known, since they are split
- * into pressure and friction and are axis-free; otherwise the coefficient table, scaled from its header's reference to the run's.
+ * into pressure and friction and are axis-free; otherwise the coefficient table, scaled from its header's reference to the run's. A pitching
+ * moment that only the coefficient table of the object has is taken from there.
  *
- * In a half model the side force and its friends mean nothing and are left out. Moments are moved to the reference centre by
- * M' = M + (c - c') x F. Null when the object holds nothing that the reference makes sense of.
+ * In a half model the side force means nothing and is left out. Moments are moved to the reference centre by M' = M + (c - c') x F. Null
+ * when the object holds nothing that the reference makes sense of.
  */
 export function seriesOf(object: ForceObject, name: string, run: RunReference): PartSeries | null {
-  return fromForces(object, name, run) ?? fromCoefficients(object, name, run);
+  const [forces, table] = [fromForces(object, name, run), seriesOfTable(object, name, run)];
+  return forces && table ? { ...forces, cm: forces.cm ?? table.cm } : (forces ?? table);
 }
 
 function fromForces(object: ForceObject, name: string, { reference, axes, writtenDensity }: RunReference): PartSeries | null {
   // Newtons in a table are those of the density it was written with, whatever the air was.
-  const unit = forcePerCoefficient({ ...reference, density: writtenDensity });
+  const unit = forcePerCoefficient({ ...reference, density: writtenDensity(object) });
   if (object.forces === null || unit === null) return null;
   const factor = reference.symmetryFactor / unit;
   const { total, pressure, viscous } = object.forces;
@@ -79,7 +85,7 @@ function fromForces(object: ForceObject, name: string, { reference, axes, writte
     time: object.time,
     cd: along(total, axes.drag, factor),
     cl: along(total, axes.lift, factor),
-    cs: reference.symmetryFactor === 2 ? null : along(total, axes.pitch, factor),
+    cs: reference.symmetryFactor === 2 || axes.pitch === null ? null : along(total, axes.pitch, factor),
     cm: pitchOfForces(object, reference, axes, factor),
     cdPressure: along(pressure, axes.drag, factor),
     cdFriction: along(viscous, axes.drag, factor),
@@ -89,7 +95,7 @@ function fromForces(object: ForceObject, name: string, { reference, axes, writte
 function pitchOfForces(object: ForceObject, reference: Reference, axes: Directions, factor: number): Float64Array | null {
   const { moments, forces } = object;
   const { centre, length } = reference;
-  if (!moments || !forces || moments.centre === null || centre === null || length === null) return null;
+  if (!moments || !forces || !axes.pitch || moments.centre === null || centre === null || length === null) return null;
   const own = along(moments.total, axes.pitch, factor / length);
   // p . (arm x F) = (p x arm) . F
   const arm: Vector3 = [moments.centre[0] - centre[0], moments.centre[1] - centre[1], moments.centre[2] - centre[2]];
@@ -97,7 +103,8 @@ function pitchOfForces(object: ForceObject, reference: Reference, axes: Directio
   return own.map((value, row) => value + moved[row]);
 }
 
-function fromCoefficients(object: ForceObject, name: string, { reference, axes }: RunReference): PartSeries | null {
+/** The coefficients of an object from its coefficient table alone; null when it has none. */
+export function seriesOfTable(object: ForceObject, name: string, { reference, axes }: RunReference): PartSeries | null {
   const { coefficients } = object;
   if (coefficients === null) return null;
   const { header, cd, cl, cs, pitch } = coefficients;
@@ -133,7 +140,7 @@ function pitchOfCoefficients(
   factor: number,
 ): Float64Array | null {
   const { centre, length } = reference;
-  if (header.centre === undefined || header.length === undefined || centre === null || length === null) return null;
+  if (!axes.pitch || header.centre === undefined || header.length === undefined || centre === null || length === null) return null;
   // The table's axis may point either way.
   const sign = header.pitch === undefined || dot(header.pitch, axes.pitch) >= 0 ? 1 : -1;
   const arm: Vector3 = [header.centre[0] - centre[0], header.centre[1] - centre[1], header.centre[2] - centre[2]];

@@ -1,5 +1,6 @@
 import { type Finding, finding } from "../finding.js";
 import type { PartSeries } from "./part-series.js";
+import { isSumOf, minus, sameSeries, sumOf } from "./series-sums.js";
 
 export interface WholeAndParts {
   whole: PartSeries;
@@ -7,130 +8,138 @@ export interface WholeAndParts {
   findings: Finding[];
 }
 
-/** Agreement of a sum with the whole at which the objects count as its parts: far above print precision, far below any real part. */
-const sameSum = 1e-4;
-
 /** Names that people give to the object over all of the body. */
-const wholeName = /(^|[^a-z])(total|whole|all|body|vehicle|car)([^a-z]|$)/i;
+const wholeName = /(^|[^a-z])(total|whole|all|complete|overall)([^a-z]|$)/i;
 
 /**
- * Which of the recorded objects is the whole vehicle, when no run card says it: the one whose patches hold all others', else the one
- * whose values are the sum of all others', else the one that is called so, else the only one, else the sum of all (with a finding). Where
- * the others do not make up the whole, what is left is a part called `rest`. Objects that record the same patches or values twice count once.
+ * Which of the recorded objects is the whole vehicle, when no run card says it: the one whose values are the sum of all others', else the
+ * one whose patches hold all others', else (where the patches are not known) the one that is called so, else the only one, else the sum of
+ * all (with a finding). Where the others do not make up the whole, what is left is a part called `rest`. Objects that record the same
+ * patches twice count once; of objects that share patches the smaller ones are the parts.
+ *
+ * @param recorded on common rows, at least one
  */
 export function wholeAndParts(recorded: PartSeries[]): WholeAndParts {
   const objects = withoutTwins(recorded);
-  if (objects.length === 1) return { whole: objects[0]!, parts: [], findings: [] };
+  if (objects.length === 1) return { whole: objects[0], parts: [], findings: [] };
   const others = (whole: PartSeries) => objects.filter((each) => each !== whole);
   const bySum = objects.find((each) => isSumOf(each, others(each)));
   if (bySum) return { whole: bySum, parts: others(bySum), findings: [] };
   const byPatches = objects.find((each) => holdsAll(each, objects));
-  const named = objects.filter((each) => wholeName.test(each.name.replaceAll("_", " ").replace(/([a-z])([A-Z])/g, "$1 $2")));
-  const whole = byPatches ?? (named.length === 1 ? named[0]! : null);
-  if (whole) return withRest(whole, others(whole), byPatches !== undefined);
+  if (byPatches) {
+    const { parts, findings } = disjoint(others(byPatches));
+    return withRest(byPatches, parts, findings);
+  }
+  const named = objects.filter((each) => each.patches === null && wholeName.test(spaced(each.name)));
+  if (named.length === 1) return withRest(named[0], others(named[0]), []);
+  const { parts, findings } = disjoint(objects);
+  const counted = parts.every((part) => part.patches !== null)
+    ? "the whole is taken as their sum"
+    : "the whole is taken as their sum, which counts a patch twice if two of them share it";
   return {
-    whole: sumOf(objects),
-    parts: objects,
+    whole: sumOf(parts, "whole"),
+    parts,
     findings: [
+      ...findings,
       finding(
         "whole-not-recorded",
         "warning",
-        `None of the ${objects.length} force objects is the whole of the others: the whole is taken as their sum, which counts a patch twice if two of them share it.`,
+        `None of the ${objects.length} force objects is the whole of the others: ${counted}.`,
         "Record one force object over all of the body.",
       ),
     ],
   };
 }
 
-function withRest(whole: PartSeries, parts: PartSeries[], known: boolean): WholeAndParts {
-  const sum = sumOf(parts);
-  const minus = (a: Float64Array | null, b: Float64Array | null) => a && b && a.map((value, row) => value - b[row]!);
-  const rest: PartSeries = {
-    name: "rest",
-    patches: null,
-    time: whole.time,
-    cd: minus(whole.cd, sum.cd)!,
-    cl: minus(whole.cl, sum.cl)!,
-    cs: minus(whole.cs, sum.cs),
-    cm: minus(whole.cm, sum.cm),
-    cdPressure: minus(whole.cdPressure, sum.cdPressure),
-    cdFriction: minus(whole.cdFriction, sum.cdFriction),
-  };
-  const why = known ? "it holds the patches of all others" : "its name says so";
+/** `forcesTotal` and `part_base` as words. */
+const spaced = (name: string): string => name.replaceAll("_", " ").replace(/([a-z])([A-Z])/g, "$1 $2");
+
+function withRest(whole: PartSeries, parts: PartSeries[], findings: Finding[]): WholeAndParts {
+  const covered = new Set(parts.flatMap((part) => part.patches ?? []));
+  const missing = whole.patches?.filter((patch) => !covered.has(patch)) ?? null;
+  // All patches are there: a sum that differs is for the closing to say.
+  if (missing?.length === 0) return { whole, parts, findings };
+  const rest: PartSeries = { ...minus(whole, parts), name: freeName(parts), patches: missing };
+  const why = missing === null ? "its name says so" : "it holds the patches of all others";
   return {
     whole,
     parts: [...parts, rest],
     findings: [
+      ...findings,
       finding(
         "rest-not-recorded",
         "warning",
-        `${whole.name} is taken as the whole (${why}); the other objects do not add up to it, and what is left is the part called rest.`,
-        known ? "Record the missing patches as parts of their own." : "If it is not the whole, leave its table out.",
+        `${whole.name} is taken as the whole (${why}); the other objects do not add up to it, and what is left is the part called ${rest.name}.`,
+        missing === null ? "If it is not the whole, leave its table out." : `Record ${listed(missing)} as parts of their own.`,
       ),
     ],
+  };
+}
+
+function freeName(parts: PartSeries[]): string {
+  let name = "rest";
+  while (parts.some((part) => part.name === name)) name += " of the whole";
+  return name;
+}
+
+const listed = (names: string[]): string =>
+  names.length > 5 ? `${names.slice(0, 5).join(", ")} and ${names.length - 5} more` : names.join(", ");
+
+/** The objects without those that share a patch with smaller ones; objects with unknown patches stay. */
+function disjoint(objects: PartSeries[]): { parts: PartSeries[]; findings: Finding[] } {
+  const taken = new Set<string>();
+  const overlapping = new Set<PartSeries>();
+  const size = (part: PartSeries) => part.patches?.length ?? 0;
+  for (const object of [...objects].sort((a, b) => size(a) - size(b))) {
+    if (object.patches?.some((patch) => taken.has(patch))) overlapping.add(object);
+    else for (const patch of object.patches ?? []) taken.add(patch);
+  }
+  return {
+    parts: objects.filter((object) => !overlapping.has(object)),
+    findings: [...overlapping].map((object) =>
+      finding(
+        "patches-counted-twice",
+        "note",
+        "shares patches with other objects that are parts already, and is left out of the ledger.",
+        "",
+        { part: object.name },
+      ),
+    ),
   };
 }
 
 function withoutTwins(recorded: PartSeries[]): PartSeries[] {
   const kept: PartSeries[] = [];
   for (const each of recorded) {
-    const twin = kept.findIndex((other) => samePatches(each, other) || sameValues(each.cd, other.cd));
+    const twin = kept.findIndex((other) => sameObject(each, other));
     if (twin < 0) kept.push(each);
-    // Of two records of the same patches the one with the split is worth more.
-    else if (kept[twin]!.cdPressure === null && each.cdPressure !== null) kept[twin] = { ...each, name: kept[twin]!.name };
+    else kept[twin] = joined(kept[twin], each);
   }
   return kept;
 }
 
-const samePatches = (a: PartSeries, b: PartSeries): boolean =>
-  a.patches !== null && b.patches !== null && [...a.patches].sort().join("\n") === [...b.patches].sort().join("\n");
+/** Two records of the same patches: by the patches where they are known, else by the values. */
+function sameObject(a: PartSeries, b: PartSeries): boolean {
+  if (a.patches === null || b.patches === null) return sameSeries(a, b);
+  return a.patches.length > 0 && samePatches(a.patches, b.patches);
+}
 
-function sameValues(a: Float64Array, b: Float64Array): boolean {
-  if (a.length !== b.length || a.length === 0) return false;
-  return a.every((value, row) => Math.abs(value - b[row]) <= 1e-6 * Math.max(Math.abs(value), 1e-9));
+export const samePatches = (a: string[], b: string[]): boolean => [...a].sort().join("\n") === [...b].sort().join("\n");
+
+/** Of two records the one that is split into pressure and friction is worth more; what it lacks comes from the other. */
+function joined(first: PartSeries, second: PartSeries): PartSeries {
+  const [base, other] = first.cdPressure === null && second.cdPressure !== null ? [second, first] : [first, second];
+  return {
+    ...base,
+    name: first.name,
+    patches: base.patches ?? other.patches,
+    cs: base.cs ?? other.cs,
+    cm: base.cm ?? other.cm,
+  };
 }
 
 function holdsAll(whole: PartSeries, objects: PartSeries[]): boolean {
   const own = new Set(whole.patches ?? []);
   const others = objects.filter((each) => each !== whole);
   return own.size > 0 && others.every((each) => each.patches?.every((patch) => own.has(patch)) === true);
-}
-
-function isSumOf(whole: PartSeries, parts: PartSeries[]): boolean {
-  const count = whole.cd.length;
-  if (count === 0 || parts.some((part) => part.cd.length !== count)) return false;
-  for (let row = 0; row < count; row++) {
-    let [sum, size] = [0, Math.abs(whole.cd[row])];
-    for (const part of parts) {
-      sum += part.cd[row];
-      size += Math.abs(part.cd[row]);
-    }
-    if (Math.abs(sum - whole.cd[row]) > sameSum * size) return false;
-  }
-  return true;
-}
-
-/** Sum of series that share their rows; a quantity that one of them lacks is missing in the sum. */
-export function sumOf(parts: PartSeries[]): PartSeries {
-  const first = parts[0]!;
-  const add = (pick: (part: PartSeries) => Float64Array | null): Float64Array | null => {
-    const sum = new Float64Array(first.time.length);
-    for (const part of parts) {
-      const values = pick(part);
-      if (values === null) return null;
-      for (let row = 0; row < sum.length; row++) sum[row] += values[row];
-    }
-    return sum;
-  };
-  return {
-    name: "whole",
-    patches: null,
-    time: first.time,
-    cd: add((part) => part.cd)!,
-    cl: add((part) => part.cl)!,
-    cs: add((part) => part.cs),
-    cm: add((part) => part.cm),
-    cdPressure: add((part) => part.cdPressure),
-    cdFriction: add((part) => part.cdFriction),
-  };
 }
