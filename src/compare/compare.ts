@@ -21,7 +21,7 @@ interface Measured extends MeanWithError {
 
 /** B minus A, for the whole and part by part. The mesh's own spread (`floor`) is not measured in this version: no difference is called resolved. */
 export function compareRuns(a: CaseRecord, b: CaseRecord): Comparison {
-  const { comparable, findings } = comparability(a, b);
+  const { comparable, checked, findings } = comparability(a, b);
   const [windowA, windowB] = [windowOf(a).first, windowOf(b).first];
   const compare = (name: string, part: string | null, one: Measured | null, other: Measured | null): Difference[] => {
     if (one === null && other === null) return [];
@@ -30,7 +30,7 @@ export function compareRuns(a: CaseRecord, b: CaseRecord): Comparison {
     const { delta, halfWidth } = differenceOf(one ?? none, other ?? none, confidence);
     const known = Number.isFinite(halfWidth) ? halfWidth : null;
     const settled = (one ?? none).settled && (other ?? none).settled;
-    const verdict = verdictOf({ delta, halfWidth: known, floor: null, comparable, settled });
+    const verdict = verdictOf({ delta, halfWidth: known, floor: null, comparable, checked, settled });
     const missing = one === null ? "; the part is missing in A" : other === null ? "; the part is missing in B" : "";
     return [
       {
@@ -93,6 +93,7 @@ function quantitiesOf(whole: PartSeries, { reference, card }: CaseRecord, first:
   add("clFront", axles?.front ?? null, lift);
   add("clRear", axles?.rear ?? null, lift);
   add("cs", whole.cs, lift);
+  add("cm", whole.cm, lift);
   if (reference.area !== null) add("cda", whole.cd, drag, reference.area);
   const newtons = forcePerCoefficient(reference);
   if (newtons !== null) {

@@ -5,16 +5,19 @@ export interface Evidence {
   halfWidth: number | null;
   /** spread caused by the mesh alone; null when it was not measured */
   floor: number | null;
+  /** nothing is known that the cases do not share */
   comparable: boolean;
+  /** domain, grid and settings of both are known */
+  checked: boolean;
   /** both histories have a usable mean */
   settled: boolean;
 }
 
 /**
  * resolved: larger than what the histories and the mesh leave open together; direction-only: larger than what the histories leave open,
- * while the mesh's share is unknown or larger, or the cases are not alike; not-resolved: anything else.
+ * while the mesh's share is unknown or larger, or the cases are not known to be alike; not-resolved: anything else.
  */
-export function verdictOf({ delta, halfWidth, floor, comparable, settled }: Evidence): {
+export function verdictOf({ delta, halfWidth, floor, comparable, checked, settled }: Evidence): {
   verdict: DifferenceVerdict;
   reason: string;
 } {
@@ -28,6 +31,7 @@ export function verdictOf({ delta, halfWidth, floor, comparable, settled }: Evid
       verdict: "direction-only",
       reason: "larger than its half-width, but the spread caused by the mesh alone was not measured",
     };
+  if (!checked) return { verdict: "direction-only", reason: "whether A and B are set up alike is not known" };
   if (size <= Math.hypot(halfWidth, floor))
     return { verdict: "direction-only", reason: "larger than its half-width, but not than that and the floor together" };
   return { verdict: "resolved", reason: "larger than half-width and floor together" };
