@@ -18,8 +18,8 @@ for (const name of await readdir(join(from, "cases"))) {
   const folder = join(from, "cases", name);
   const card = JSON.parse(await readFile(join(folder, runCardName), "utf8"));
   const check = await readFile(join(folder, "log.checkMesh"), "utf8");
-  const version = /^Build\s*:\s*(\S+)/m.exec(check)?.[1] ?? "unknown build";
-  card.recorded = `a run of this study with OpenFOAM (build ${version}), shipped with dragledger; not computed on this machine`;
+  const version = /OPENFOAM=(\d+)/.exec(check)?.[1] ?? "of unknown version";
+  card.recorded = `a run of this study with OpenFOAM v${version}, shipped with dragledger; not computed on this machine`;
   await mkdir(join(to, name), { recursive: true });
   await writeFile(join(to, name, runCardName), `${JSON.stringify(card, null, 2)}\n`);
   await writeFile(join(to, name, "log.checkMesh"), check.replace(/^(Host|Case|PID|Date|Time)\s*:.*\n/gm, ""));
