@@ -23,7 +23,8 @@ export function buildLedger(record: CaseRecord): LedgerRun {
     parts: record.parts.map((part) => ({ name: part.name, ...entry(part) })),
     closing: closingOf(record),
     recorded: record.card?.recorded ?? null,
-    findings: [...record.findings, ...ledgerFindings(record, window, total)],
+    // What a table says of its zeros is said once, with the part's name.
+    findings: [...record.findings.filter(({ code }) => code !== "all-zero"), ...ledgerFindings(record, window, total)],
   };
 }
 

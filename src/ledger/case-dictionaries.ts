@@ -10,6 +10,7 @@ import {
   parseDictionary,
   valuesAt,
 } from "../openfoam/dictionary.js";
+import { textBytes } from "../openfoam/table-bytes.js";
 import { type PatchWord, selectedPatches } from "./patch-patterns.js";
 
 /** What the dictionaries of a case made elsewhere say of its force objects. Missing or unreadable files say nothing. */
@@ -95,17 +96,20 @@ function takeList(value: DictionaryValue | undefined, found: Map<string, Diction
   });
 }
 
+/** A dictionary file, packed or not; null when it is missing or cannot be read. */
 async function dictionary(path: string): Promise<Dictionary | null> {
-  const state = await stat(path).catch(() => null);
-  if (!state?.isFile() || state.size > mostBytes) return null;
-  const text = await readFile(path, "utf8").catch(() => null);
-  if (text === null) return null;
-  try {
-    return parseDictionary(text, path);
-  } catch (error) {
-    if (error instanceof Problem) return null;
-    throw error;
+  for (const each of [path, `${path}.gz`]) {
+    const state = await stat(each).catch(() => null);
+    if (!state?.isFile() || state.size > mostBytes) continue;
+    const bytes = await readFile(each).catch(() => null);
+    if (bytes === null) continue;
+    try {
+      return parseDictionary(Buffer.from(textBytes(bytes, each)).toString("utf8"), each);
+    } catch (error) {
+      if (!(error instanceof Problem)) throw error;
+    }
   }
+  return null;
 }
 
 function patchesIn(boundary: Dictionary): BoundaryPatch[] {
