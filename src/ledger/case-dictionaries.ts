@@ -54,11 +54,13 @@ async function readFunctions(casePath: string): Promise<Map<string, Dictionary>>
   const system = join(casePath, "system");
   const control = await dictionary(join(system, "controlDict"));
   if (control === null) return found;
-  let left = mostIncluded;
+  const seen = new Set<string>();
   const included = async (directive: string): Promise<{ name: string; content: Dictionary; asObject: boolean } | null> => {
     const [, word, name] = /^#(s?include|includeIfPresent|includeFunc) ([^\s()<>$]+)$/.exec(directive) ?? [];
-    if (name === undefined || left-- <= 0) return null;
+    if (name === undefined) return null;
     const path = resolve(system, name);
+    if (seen.has(path) || seen.size >= mostIncluded) return null;
+    seen.add(path);
     const inside = relative(resolve(casePath), path);
     if (inside.startsWith("..") || inside.split(sep).includes("..") || inside.startsWith(sep)) return null;
     const content = await dictionary(path);

@@ -104,7 +104,7 @@ function readWith(main: ForceObject | undefined, source: Source): Reading {
   const found = wholeAndParts(kept);
   const missing = leftOut.map((each) =>
     finding(
-      "rows-not-common",
+      "object-left-out",
       "warning",
       "was recorded at other times than the longest object of the case, and is left out.",
       "Remove the tables of earlier runs, or record all objects at the same times.",

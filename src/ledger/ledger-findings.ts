@@ -70,7 +70,7 @@ function unlikelyArea({ card, reference: { area, symmetryFactor } }: CaseRecord)
     finding(
       "area-of-half",
       "error",
-      `The reference area of ${area.toPrecision(4)} m² is ${near} times the frontal area of the body, ${card.body.frontalArea.toPrecision(4)} m²: one is of half a vehicle, the other of a whole one.`,
+      `The reference area of ${area.toPrecision(4)} m² is about ${near} times the frontal area of the body, ${card.body.frontalArea.toPrecision(4)} m²: one is of half a vehicle, the other of a whole one.`,
       "Give the frontal area of the whole vehicle.",
     ),
   ];

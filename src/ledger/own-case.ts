@@ -46,7 +46,7 @@ export function ownCase(card: RunCard, objects: readonly ForceObject[], options:
   for (const each of leftOut)
     findings.push(
       finding(
-        "rows-not-common",
+        "object-left-out",
         "error",
         "was recorded over other iterations than most objects of the case, and is left out.",
         "Run the case again: tables of two runs stand together.",

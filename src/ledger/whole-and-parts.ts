@@ -23,7 +23,7 @@ export function wholeAndParts(recorded: PartSeries[]): WholeAndParts {
   const objects = withoutTwins(recorded);
   if (objects.length === 1) return { whole: objects[0], parts: [], findings: [] };
   const others = (whole: PartSeries) => objects.filter((each) => each !== whole);
-  const bySum = objects.find((each) => isSumOf(each, others(each)));
+  const bySum = objects.find((each) => mayHold(each, others(each)) && isSumOf(each, others(each)));
   if (bySum) return { whole: bySum, parts: others(bySum), findings: [] };
   const byPatches = objects.find((each) => holdsAll(each, objects));
   if (byPatches) {
@@ -138,8 +138,15 @@ function joined(first: PartSeries, second: PartSeries): PartSeries {
   };
 }
 
+/** Known patches do not speak against a whole: of two mirror images each is the sum of "all others". */
+function mayHold(whole: PartSeries, others: PartSeries[]): boolean {
+  const own = whole.patches && new Set(whole.patches);
+  return own === null || others.every((each) => each.patches === null || each.patches.every((patch) => own.has(patch)));
+}
+
 function holdsAll(whole: PartSeries, objects: PartSeries[]): boolean {
   const own = new Set(whole.patches ?? []);
   const others = objects.filter((each) => each !== whole);
-  return own.size > 0 && others.every((each) => each.patches?.every((patch) => own.has(patch)) === true);
+  const some = others.some(({ patches }) => patches !== null && patches.length > 0);
+  return some && others.every((each) => each.patches?.every((patch) => own.has(patch)) === true);
 }
