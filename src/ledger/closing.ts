@@ -84,7 +84,7 @@ function worstOf(whole: Float64Array, parts: Float64Array[], sizes: Float64Array
     }
     // In oblique axes each value is a difference of larger printed numbers.
     size = Math.max(size, sizes?.[row] ?? 0);
-    const share = size > 0 ? Math.abs(sum - whole[row]) / size : 0;
+    const share = size === 0 ? 0 : Math.abs(sum - whole[row]) / size;
     if (share > worst.share || Number.isNaN(share))
       Object.assign(worst, { share: Number.isNaN(share) ? Number.POSITIVE_INFINITY : share, row });
   }

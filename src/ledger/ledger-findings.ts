@@ -91,6 +91,15 @@ function missingEntries({ reference, card }: CaseRecord, total: Entry): Finding[
   if (forces.length > 0) say("No forces in newtons", forces);
   const moment = lacking({ length, centre });
   if (total.cm === null && moment.length > 0) say("No pitching moment", moment);
+  else if (total.cm === null)
+    missing.push(
+      finding(
+        "not-recorded",
+        "note",
+        "No pitching moment and no axle lifts: no table of the whole holds a moment about a known point.",
+        "Record the moments of the whole: a forces object writes them beside its forces.",
+      ),
+    );
   // A run card without a wheelbase is of a body without axles.
   if (total.cm !== null && wheelbase === null && card === null) say("No axle lifts", ["--wheelbase"]);
   return missing;
