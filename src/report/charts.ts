@@ -1,6 +1,8 @@
+import { createHash } from "node:crypto";
 import * as Plot from "@observablehq/plot";
 import { parseHTML } from "linkedom";
 import { thinned } from "./decimate.js";
+import { grouped } from "./figures.js";
 
 // This module is bundled with its two libraries at build time: Node draws the charts, the page holds plain SVG. Colours come from the
 // page's style sheet through class names, so that one drawing serves light, dark and paper.
@@ -46,8 +48,8 @@ export function historyChart(chart: HistoryChart): string {
       marginRight: margins.right,
       marginTop: margins.top,
       marginBottom: margins.bottom,
-      x: { label: axis, domain: [first, last], ticks: 6, labelArrow: "none", tickFormat: ",d" },
-      y: { label, domain, grid: true, ticks: 5, labelArrow: "none", tickFormat: decimalsFor(domain[1] - domain[0]) },
+      x: { label: axis, domain: [first, last], ticks: 6, labelArrow: "none", tickFormat: grouped },
+      y: { label, domain, grid: true, ticks: 5, labelArrow: "none" },
       marks: [
         ...(from > first ? [Plot.rect([0], { x1: first, x2: from, y1: domain[0], y2: domain[1], className: "start-up" })] : []),
         ...(halfWidth === null
@@ -122,7 +124,7 @@ export function intervalChart(title: string, label: string, answers: ChartAnswer
   return svgText(
     Plot.plot({
       document,
-      width: 960,
+      width: 560,
       height: 44 + 26 * answers.length,
       marginLeft: nameMargin(names),
       marginRight: 14,
@@ -187,16 +189,26 @@ function verticalDomain({ iterations, values, from, mean, halfWidth }: HistoryCh
 /** Beyond this from the mean, coefficient units, a value would flatten everything else. */
 const tooFar = (mean: number): number => Math.max(0.15, 0.5 * Math.abs(mean));
 
-const decimalsFor = (extent: number): string => `.${Math.min(6, Math.max(0, Math.ceil(-Math.log10(extent)) + 1))}f`;
-
 /**
  * The SVG without the library's own style element and labels: the page's style sheet has the rules, so that its policy can be strict, and the
- * title says what the picture is. Coordinates keep two decimals.
+ * title says what the picture is. Coordinates keep two decimals. Names of clipping frames come from the title: the same in every run, and
+ * different from those of the page's other charts.
  */
 function svgText(svg: { outerHTML: string }, title: string): string {
   const label = title.replaceAll("&", "&amp;").replaceAll("<", "&lt;").replaceAll(">", "&gt;").replaceAll('"', "&quot;");
+  const frame = `frame-${createHash("sha256").update(title).digest("hex").slice(0, 12)}`;
+  const numbers = new Map<string, string>();
+  const renamed = (name: string): string => {
+    if (!numbers.has(name)) numbers.set(name, `${frame}-${numbers.size + 1}`);
+    return numbers.get(name)!;
+  };
   return svg.outerHTML
     .replace(/<style>[\s\S]*?<\/style>/g, "")
-    .replace(/<[^>]*>/g, (tag) => tag.replace(/ aria-(?:label|hidden)="[^"]*"/g, "").replace(/(\.\d\d)\d+/g, "$1"))
+    .replace(/<[^>]*>/g, (tag) =>
+      tag
+        .replace(/ aria-(?:label|hidden)="[^"]*"/g, "")
+        .replace(/(\.\d\d)\d+/g, "$1")
+        .replace(/plot-clip-\d+/g, renamed),
+    )
     .replace(/^<svg /, `<svg xmlns="http://www.w3.org/2000/svg" role="img" aria-label="${label}" `);
 }

@@ -73,7 +73,7 @@ export function comparisonSection(comparison: Comparison, runs: ReportedRun[], n
     table: {
       caption: `${title}: the whole vehicle`,
       corner: "quantity",
-      columns: [numeric("A", a), numeric("B", b), numeric("B − A", "95 % interval"), words("verdict")],
+      columns: [numeric("A", a), numeric("B", b), numeric("B\u00a0−\u00a0A", "95 % interval"), words("verdict")],
       groups: wholeGroups(comparison, runs, naming),
     },
     parts: parts.length > 0 ? partTable(title, a, b, parts) : null,
@@ -115,7 +115,7 @@ function wholeGroups(comparison: Comparison, runs: ReportedRun[], naming: Naming
   const at = condition === "" ? "" : ` at ${condition}`;
   const inUnit = (unit: string, factor: number, decimals: number): RowGroup => ({
     title: `Forces${at}, ${unit}`,
-    rows: rows(forces.map(([head, found]) => [`${head}, ${unit}`, found && scaledDifference(found, factor), decimals])),
+    rows: rows(forces.map(([head, found]) => [head, found && scaledDifference(found, factor), decimals])),
   });
   groups.push(inUnit("N", 1, 1), inUnit("kgf", 1 / standardGravity, 2));
   return groups.filter((group) => group.rows.length > 0);
@@ -180,11 +180,11 @@ function partTable(title: string, a: string, b: string, parts: PartDifference[])
     caption: `${title}, part by part, in counts`,
     corner: "part",
     columns: [
-      numeric("drag A", a),
-      numeric("drag B", b),
-      numeric("B − A", "drag"),
+      numeric("drag\u00a0A", a),
+      numeric("drag\u00a0B", b),
+      numeric("B\u00a0−\u00a0A", "drag"),
       words("verdict"),
-      numeric("B − A", "lift"),
+      numeric("B\u00a0−\u00a0A", "lift"),
       words("verdict"),
     ],
     groups: [

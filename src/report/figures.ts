@@ -46,6 +46,9 @@ export function scaledDifference(difference: Difference, factor: number): Differ
 /** Figures of a sentence with true minus signs; a hyphen inside a name stays one. */
 export const typesetSentence = (text: string): string => text.replaceAll(/(^|[\s(±])-(?=\d)/g, "$1−");
 
+/** A count in groups of three digits that no line end tears apart. */
+export const grouped = (count: number): string => typeset(thousands(count).replaceAll(" ", "\u202f"));
+
 /** Up to six significant digits, as a plan prints them. */
 export function plain(value: number | string | number[]): string {
   if (Array.isArray(value)) return value.map(plain).join(", ");
@@ -56,7 +59,7 @@ export function plain(value: number | string | number[]): string {
     const [digits, exponent] = value.toExponential(3).split("e");
     return typeset(`${Number(digits)}·10${raised(Number(exponent))}`);
   }
-  return typeset(Number.isInteger(rounded) && size >= 1e4 ? thousands(rounded) : String(rounded));
+  return typeset(Number.isInteger(rounded) && size >= 1e4 ? grouped(rounded) : String(rounded));
 }
 
 const raised = (exponent: number): string =>

@@ -1,5 +1,4 @@
-import { thousands } from "../number-text.js";
-import { number } from "./figures.js";
+import { grouped, number } from "./figures.js";
 import type { MeshSummary, PartMesh, ReportedRun } from "./report-input.js";
 import type { Naming } from "./run-names.js";
 import { cell, numeric, type Row, type TableModel } from "./table-model.js";
@@ -39,7 +38,7 @@ export function meshSection(runs: ReportedRun[], naming: Naming): MeshSection {
       ({ layers }) => layers !== null,
       ({ layers, layersAsked, faces }) => [
         `${number(layers, 2)}${layersAsked === null ? "" : ` of ${layersAsked}`}`,
-        faces === null ? "" : `${thousands(faces)} faces`,
+        faces === null ? "" : `${grouped(faces)} faces`,
       ],
     ),
     yPlus: partTable(
@@ -64,7 +63,7 @@ function wholeTable(meshed: (ReportedRun & { mesh: MeshSummary })[], columns: Ta
       {
         title: null,
         rows: [
-          row("cells", ({ cells }) => (cells === null ? "–" : thousands(cells))),
+          row("cells", ({ cells }) => (cells === null ? "–" : grouped(cells))),
           row("mesh check", ({ ok, failures }) =>
             ok === null ? "no result in its log" : ok ? "no failed check" : `${failures.length} failed`,
           ),

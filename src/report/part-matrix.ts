@@ -1,5 +1,5 @@
 import type { BodySection } from "./body-section.js";
-import { counts, number, plusMinus } from "./figures.js";
+import { counts, number } from "./figures.js";
 import type { ReportedRun } from "./report-input.js";
 import type { Naming } from "./run-names.js";
 import { cell, numeric, type Row, type TableModel } from "./table-model.js";
@@ -44,9 +44,7 @@ export function partMatrix(runs: ReportedRun[], naming: Naming, bodies: BodySect
           {
             head: "whole vehicle",
             total: true,
-            cells: shown.map(({ ledger: { total } }) =>
-              cell(number(counts(total.cd.value), 1), plusMinus(total.cd.halfWidth && counts(total.cd.halfWidth), 1)),
-            ),
+            cells: shown.map(({ ledger: { total } }) => cell(number(counts(total.cd.value), 1))),
           },
         ],
       },

@@ -1,5 +1,5 @@
 import type { Segment } from "../history/history.js";
-import { thousands } from "../number-text.js";
+import { grouped } from "./figures.js";
 import type { ReportedRun } from "./report-input.js";
 import type { Naming } from "./run-names.js";
 
@@ -29,7 +29,7 @@ export function provenanceOf({ ledger, origin }: ReportedRun, naming: Naming): P
 function usedRows(segments: Segment[]): Provenance["rows"] {
   const groups = new Map<string, string[]>();
   for (const { file, from, to, rows, used, reason } of segments) {
-    const text = `${thousands(used)} of ${thousands(rows)} rows, ${from} to ${to}: ${reason}`;
+    const text = `${grouped(used)} of ${grouped(rows)} rows, ${from} to ${to}: ${reason}`;
     const files = groups.get(text) ?? [];
     if (!files.includes(file)) files.push(file);
     groups.set(text, files);

@@ -1,8 +1,7 @@
 import type { QuantitySettling } from "../history/settling.js";
 import type { Entry, LedgerRun } from "../ledger/ledger.js";
 import { forcePerCoefficient } from "../ledger/reference.js";
-import { thousands } from "../number-text.js";
-import { counts, kilometresPerHour, number, plusMinus, scaled, standardGravity, typesetSentence } from "./figures.js";
+import { counts, grouped, kilometresPerHour, number, plusMinus, scaled, standardGravity, typesetSentence } from "./figures.js";
 import type { ReportedRun, RunHistory } from "./report-input.js";
 import type { Naming } from "./run-names.js";
 import { type Cell, cell, numeric, type Row, type RowGroup, type TableModel, words } from "./table-model.js";
@@ -27,7 +26,7 @@ export function runSection({ ledger, history, settling }: ReportedRun, naming: N
   return {
     name,
     reference: referenceText(ledger),
-    window: `Means over ${axisName(history)}s ${plainTime(ledger.window.from)} to ${plainTime(ledger.window.to)}: ${thousands(ledger.window.rows)} rows, worth ${number(ledger.window.effectiveSamples, 1)} independent samples of the drag.`,
+    window: `Means over ${axisName(history)}s ${plainTime(ledger.window.from)} to ${plainTime(ledger.window.to)}: ${grouped(ledger.window.rows)} rows, worth ${number(ledger.window.effectiveSamples, 1)} independent samples of the drag.`,
     ledger: ledgerTable(name, ledger),
     closing: { ok: ledger.closing.ok, message: ledger.closing.message },
     history,
@@ -126,11 +125,11 @@ function settlingTable(caption: string, quantities: QuantitySettling[]): TableMo
             cell(each.verdict),
             cell(number(each.mean, 4)),
             cell(plusMinus(each.halfWidth, 5)),
-            cell(thousands(each.startUp)),
-            cell(thousands(each.rows)),
+            cell(grouped(each.startUp)),
+            cell(grouped(each.rows)),
             cell(number(each.effectiveSamples, 1)),
             cell(number(each.period, 1)),
-            cell(each.stillNeeded === null ? "–" : thousands(each.stillNeeded)),
+            cell(each.stillNeeded === null ? "–" : grouped(each.stillNeeded)),
           ],
         })),
       },

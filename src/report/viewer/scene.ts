@@ -119,7 +119,7 @@ export class BodyScene {
   /** Looks at the middle of the body from a direction, case axes, so that all of it is seen. */
   look([x, y, z]: [number, number, number]): void {
     const narrow = Math.min(1, this.camera.aspect / 1.5);
-    const distance = (0.62 * this.halfDiagonal) / Math.tan((this.camera.fov * Math.PI) / 360) / narrow;
+    const distance = (0.67 * this.halfDiagonal) / Math.tan((this.camera.fov * Math.PI) / 360) / narrow;
     this.camera.position.copy(this.middle).addScaledVector(new Vector3(x, y, z).normalize(), distance);
     this.controls.target.copy(this.middle);
     this.controls.update();
