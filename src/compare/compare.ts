@@ -1,10 +1,10 @@
 import { type Finding, finding } from "../finding.js";
+import type { Settling } from "../history/settling.js";
 import { studentQuantile } from "../history/student.js";
 import { axleLift } from "../ledger/axles.js";
 import type { CaseRecord } from "../ledger/case-record.js";
-import type { PartSeries } from "../ledger/part-series.js";
 import { forcePerCoefficient } from "../ledger/reference.js";
-import { windowOf } from "../ledger/window.js";
+import { type LedgerWindow, windowOf } from "../ledger/window.js";
 import { estimateFrom } from "../ledger/window-estimate.js";
 import { comparability } from "./comparability.js";
 import type { Comparison, Difference } from "./comparison.js";
@@ -19,10 +19,16 @@ interface Measured extends MeanWithError {
   settled: boolean;
 }
 
-/** B minus A, for the whole and part by part. The mesh's own spread (`floor`) is not measured in this version: no difference is called resolved. */
+/**
+ * B minus A, for the whole and part by part: Welch's interval on the effective samples of each history. The mesh's own spread (`floor`) is
+ * not measured in this version, so no difference is called resolved: one larger than its half-width is a direction.
+ *
+ * Measured on made-up pairs without a difference (AR(1), 400 pairs each): a direction was seen in 4.5 % (phi 0.5, 800 rows), 5.5 % (phi
+ * 0.9, 1000 rows) and 9 % (phi 0.9, 400 rows, which are some twenty independent samples); 5 % would be exact.
+ */
 export function compareRuns(a: CaseRecord, b: CaseRecord): Comparison {
   const { comparable, checked, findings } = comparability(a, b);
-  const [windowA, windowB] = [windowOf(a).first, windowOf(b).first];
+  const [windowA, windowB] = [windowOf(a), windowOf(b)];
   const compare = (name: string, part: string | null, one: Measured | null, other: Measured | null): Difference[] => {
     if (one === null && other === null) return [];
     // A part that one variant does not have makes no force there.
@@ -46,8 +52,8 @@ export function compareRuns(a: CaseRecord, b: CaseRecord): Comparison {
       },
     ];
   };
-  const wholeA = quantitiesOf(a.whole, a, windowA);
-  const wholeB = quantitiesOf(b.whole, b, windowB);
+  const wholeA = quantitiesOf(a, windowA);
+  const wholeB = quantitiesOf(b, windowB);
   const differences = [...wholeA.keys()].flatMap((name) => {
     const [one, other] = [wholeA.get(name)!, wholeB.get(name) ?? null];
     return other === null ? [] : compare(name, null, one, other);
@@ -59,8 +65,8 @@ export function compareRuns(a: CaseRecord, b: CaseRecord): Comparison {
         ...compare(
           quantity,
           name,
-          one ? measure(one[quantity], windowA, targetOf(a, quantity)) : null,
-          other ? measure(other[quantity], windowB, targetOf(b, quantity)) : null,
+          one ? measure(one[quantity], windowA.first, targetOf(a, quantity)) : null,
+          other ? measure(other[quantity], windowB.first, targetOf(b, quantity)) : null,
         ),
       );
   }
@@ -80,32 +86,38 @@ export function compareRuns(a: CaseRecord, b: CaseRecord): Comparison {
 const targetOf = ({ card }: CaseRecord, quantity: "cd" | "cl"): number | undefined =>
   quantity === "cd" ? card?.stop.drag : card?.stop.lift;
 
-function quantitiesOf(whole: PartSeries, { reference, card }: CaseRecord, first: number): Map<string, Measured> {
+function quantitiesOf({ whole, reference, card }: CaseRecord, window: LedgerWindow): Map<string, Measured> {
   const found = new Map<string, Measured>();
-  const add = (name: string, values: Float64Array | null, target: number | undefined, factor = 1) => {
-    if (values)
-      found.set(name, measure(factor === 1 ? values : values.map((value) => value * factor), first, target && target * factor));
+  const add = (name: string, measured: Measured | null) => {
+    if (measured) found.set(name, measured);
   };
   const { drag, lift } = card?.stop ?? {};
+  const { first } = window;
+  const maybe = (values: Float64Array | null) => values && measure(values, first, lift);
   const axles = axleLift(whole, reference);
-  add("cd", whole.cd, drag);
-  add("cl", whole.cl, lift);
-  add("clFront", axles?.front ?? null, lift);
-  add("clRear", axles?.rear ?? null, lift);
-  add("cs", whole.cs, lift);
-  add("cm", whole.cm, lift);
-  if (reference.area !== null) add("cda", whole.cd, drag, reference.area);
+  const [cd, cl] = [measure(whole.cd, first, drag, window.drag), measure(whole.cl, first, lift, window.lift)];
   const newtons = forcePerCoefficient(reference);
-  if (newtons !== null) {
-    add("drag", whole.cd, drag, newtons);
-    add("lift", whole.cl, lift, newtons);
-  }
+  add("cd", cd);
+  add("cl", cl);
+  add("clFront", maybe(axles?.front ?? null));
+  add("clRear", maybe(axles?.rear ?? null));
+  add("cs", maybe(whole.cs));
+  add("cm", maybe(whole.cm));
+  add("cda", reference.area === null ? null : times(cd, reference.area));
+  add("drag", newtons === null ? null : times(cd, newtons));
+  add("lift", newtons === null ? null : times(cl, newtons));
   return found;
 }
 
+const times = (measured: Measured, factor: number): Measured => ({
+  ...measured,
+  mean: measured.mean * factor,
+  standardError: measured.standardError * factor,
+});
+
 /** The standard error is taken back from the half-width, so that one estimate of correlation serves ledger and comparison. */
-function measure(values: Float64Array, first: number, target: number | undefined): Measured {
-  const { mean, halfWidth, degreesOfFreedom, usable } = estimateFrom(values, first, target);
+function measure(values: Float64Array, first: number, target: number | undefined, known?: Settling): Measured {
+  const { mean, halfWidth, degreesOfFreedom, usable } = estimateFrom(values, first, target, known);
   const standardError =
     halfWidth === null ? Number.POSITIVE_INFINITY : halfWidth / studentQuantile(0.5 + confidence / 2, degreesOfFreedom);
   return { mean, standardError, degreesOfFreedom, settled: usable };

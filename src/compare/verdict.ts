@@ -21,7 +21,8 @@ export function verdictOf({ delta, halfWidth, floor, comparable, checked, settle
   verdict: DifferenceVerdict;
   reason: string;
 } {
-  if (halfWidth === null) return { verdict: "not-resolved", reason: "no interval can be given" };
+  if (halfWidth === null || !Number.isFinite(delta) || !Number.isFinite(halfWidth))
+    return { verdict: "not-resolved", reason: "no interval can be given" };
   const size = Math.abs(delta);
   if (size <= halfWidth) return { verdict: "not-resolved", reason: "smaller than its half-width" };
   if (!settled) return { verdict: "not-resolved", reason: "a history has not settled" };

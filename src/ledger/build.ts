@@ -1,3 +1,4 @@
+import type { Settling } from "../history/settling.js";
 import { axleLift } from "./axles.js";
 import type { CaseRecord } from "./case-record.js";
 import { closingOf } from "./closing.js";
@@ -28,32 +29,34 @@ export function buildLedger(record: CaseRecord): LedgerRun {
   };
 }
 
-function estimateOf(values: Float64Array, { first }: LedgerWindow, target: number | undefined): Estimate {
-  const { mean, halfWidth } = estimateFrom(values, first, target);
-  return { value: mean, halfWidth };
-}
-
 const times = (estimate: Estimate | null, factor: number | null): Estimate | null =>
   estimate === null || factor === null
     ? null
     : { value: estimate.value * factor, halfWidth: estimate.halfWidth === null ? null : estimate.halfWidth * Math.abs(factor) };
 
-function entryOf(series: PartSeries, { reference, card }: CaseRecord, window: LedgerWindow): Entry {
+function entryOf(series: PartSeries, { whole, reference, card }: CaseRecord, window: LedgerWindow): Entry {
+  const estimate = (values: Float64Array, target: number | undefined, known?: Settling): Estimate => {
+    const { mean, halfWidth } = estimateFrom(values, window.first, target, known);
+    return { value: mean, halfWidth };
+  };
+  const maybe = (values: Float64Array | null, target: number | undefined) => values && estimate(values, target);
   // A part is known well enough when it is known as well as is asked of the whole.
-  const mean = (values: Float64Array | null, target = card?.stop.drag) => values && estimateOf(values, window, target);
-  const lift = card?.stop.lift;
+  const { drag, lift } = card?.stop ?? {};
   const axles = axleLift(series, reference);
-  const [cd, cl, cs] = [estimateOf(series.cd, window, card?.stop.drag), estimateOf(series.cl, window, lift), mean(series.cs, lift)];
+  const isWhole = series === whole;
+  const cd = estimate(series.cd, drag, isWhole ? window.drag : undefined);
+  const cl = estimate(series.cl, lift, isWhole ? window.lift : undefined);
+  const cs = maybe(series.cs, lift);
   const newtons = forcePerCoefficient(reference);
   return {
     cd,
     cl,
     cs,
-    clFront: mean(axles?.front ?? null, lift),
-    clRear: mean(axles?.rear ?? null, lift),
-    cm: mean(series.cm, lift),
-    cdPressure: mean(series.cdPressure),
-    cdFriction: mean(series.cdFriction),
+    clFront: maybe(axles?.front ?? null, lift),
+    clRear: maybe(axles?.rear ?? null, lift),
+    cm: maybe(series.cm, lift),
+    cdPressure: maybe(series.cdPressure, drag),
+    cdFriction: maybe(series.cdFriction, drag),
     cda: times(cd, reference.area),
     drag: times(cd, newtons),
     lift: times(cl, newtons),

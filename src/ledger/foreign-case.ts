@@ -77,7 +77,7 @@ export function foreignCase(
     table: tableOf(reading, objects),
     dropped,
     oblique: areOblique(axes),
-    findings: [...findings, ...reading.findings, ...assumptions(source, run.reference, whole)],
+    findings: [...findings, ...reading.findings, ...assumptions(source, run.reference, whole, main)],
   };
 }
 
@@ -167,8 +167,22 @@ function tableOf(reading: Reading, objects: readonly ForceObject[]): PartSeries 
 }
 
 /** What had to be taken for granted to use an option. */
-function assumptions({ objects, densities, options }: Source, reference: Reference, whole: PartSeries): Finding[] {
+function assumptions(
+  { objects, densities, options }: Source,
+  reference: Reference,
+  whole: PartSeries,
+  main: ForceObject | undefined,
+): Finding[] {
   const findings: Finding[] = [];
+  if (main?.coefficients && main.coefficients.header.pitch === undefined && whole.cm !== null && whole.cdPressure === null)
+    findings.push(
+      finding(
+        "pitch-axis-taken",
+        "warning",
+        `The table of ${main.name} does not say about which axis, length and point its moment is: nose-up about the reference centre, on the reference length, is taken.`,
+        "Compare with pitchAxis, lRef and CofR of the force object.",
+      ),
+    );
   if (densities.size === 0 && options.density !== undefined && objects.some((object) => object.forces))
     findings.push(
       finding(

@@ -132,6 +132,7 @@ function rescale(header: { area?: number; speed?: number }, reference: Reference
   return area * speed ** 2;
 }
 
+/** What the header of an old table does not say is taken to be the run's own reference, as for its area. */
 function pitchOfCoefficients(
   { cd, cl, header }: NonNullable<ForceObject["coefficients"]>,
   pitch: Float64Array,
@@ -140,13 +141,14 @@ function pitchOfCoefficients(
   factor: number,
 ): Float64Array | null {
   const { centre, length } = reference;
-  if (!axes.pitch || header.centre === undefined || header.length === undefined || centre === null || length === null) return null;
+  if (!axes.pitch || centre === null || length === null) return null;
+  const written = { centre: header.centre ?? centre, length: header.length ?? length };
   // The table's axis may point either way.
   const sign = header.pitch === undefined || dot(header.pitch, axes.pitch) >= 0 ? 1 : -1;
-  const arm: Vector3 = [header.centre[0] - centre[0], header.centre[1] - centre[1], header.centre[2] - centre[2]];
+  const arm: Vector3 = [written.centre[0] - centre[0], written.centre[1] - centre[1], written.centre[2] - centre[2]];
   const lever = cross(axes.pitch, arm);
   const perDrag = dot(lever, axes.drag);
   const perLift = dot(lever, axes.lift);
-  const own = (factor * sign * header.length) / length;
+  const own = (factor * sign * written.length) / length;
   return pitch.map((value, row) => own * value + (factor / length) * (perDrag * cd[row] + perLift * cl[row]));
 }

@@ -1,4 +1,5 @@
 import { settle } from "../history/settle.js";
+import type { Settling } from "../history/settling.js";
 import { fewestSamples, windowMean } from "../history/window-mean.js";
 
 /** Mean of one quantity over the ledger's window and how well it is known. */
@@ -22,13 +23,14 @@ const fewestRows = 10;
  * quantity's own settling, widened by the distance of the two means; a history that has not settled gets the half-width of its window.
  *
  * @param target half-width asked of the quantity; a smaller change does not matter
+ * @param known settling of the same values with the same target, when it is there already
  */
-export function estimateFrom(values: Float64Array, first: number, target: number | undefined): WindowEstimate {
+export function estimateFrom(values: Float64Array, first: number, target: number | undefined, known?: Settling): WindowEstimate {
   const inside = values.subarray(first);
   const mean = plainMean(inside);
   const unknown: WindowEstimate = { mean, halfWidth: null, degreesOfFreedom: 1, usable: false };
   if (inside.length < fewestRows || !Number.isFinite(mean)) return unknown;
-  const settling = settle(values, { confidence, ...(target === undefined ? {} : { halfWidth: target }) });
+  const settling = known ?? settle(values, { confidence, ...(target === undefined ? {} : { halfWidth: target }) });
   if (settling.verdict === "settled" || settling.verdict === "oscillating")
     return {
       mean,

@@ -134,6 +134,22 @@ describe("coefficient tables of a case made elsewhere", () => {
     expect(last((await read(tables(["total"], saeReference, layout))).whole.cm)).toBeCloseTo(totalPitch, 6);
   });
 
+  test("a table of old versions has no header values: they are asked for, and what is taken for granted is said", async () => {
+    const table = coefficientTable(vehicle, saeReference, layouts.C4)
+      .split("\n")
+      .filter((line) => !line.includes(" : "));
+    const files = { "postProcessing/car/0/forceCoeffs.dat": table.slice(1).join("\n") };
+    const problem = await refused(files);
+    expect([problem.code, problem.remedy]).toEqual(["unknown-reference", "Give --area."]);
+    const bare = await read(files, { area: 2.1 });
+    expect(last(bare.whole.cd)).toBeCloseTo(totalDrag, 6);
+    expect([bare.whole.cm, bare.reference.speed, bare.reference.length]).toEqual([null, null, null]);
+    expect(codes(buildLedger(bare))).toEqual(["directions-assumed", "not-settled", "not-given", "not-given"]);
+    const told = await read(files, { area: 2.1, length: 2.7, centre: [0, 0, 0], wheelbase: 2.7, speed: 30, density: 1.225 });
+    expect(last(told.whole.cm)).toBeCloseTo(totalPitch, 6);
+    expect(codes(told)).toEqual(["directions-assumed", "pitch-axis-taken"]);
+  });
+
   test("tables on references of their own are put on that of the whole", async () => {
     const half = { ...saeReference, area: 1.05, length: 1, centre: [1, 0, 0] as [number, number, number] };
     const record = await read({
