@@ -20,7 +20,8 @@ const fewestRows = 10;
 
 /**
  * The mean is the plain one over rows [first, end) of all quantities alike, so entries of a ledger add up. The half-width is that of the
- * quantity's own settling, widened by the distance of the two means; a history that has not settled gets the half-width of its window.
+ * quantity's own settling, widened by the distance of the two means. A history that has not settled gets the half-width of its window if
+ * that is wider, and while it drifts the change over the window as well: as far as the mean of another window like it would move.
  *
  * @param target half-width asked of the quantity; a smaller change does not matter
  * @param known settling of the same values with the same target, when it is there already
@@ -38,9 +39,16 @@ export function estimateFrom(values: Float64Array, first: number, target: number
       degreesOfFreedom: settling.effectiveSamples >= fewestSamples ? settling.effectiveSamples - 1 : Number.POSITIVE_INFINITY,
       usable: true,
     };
-  const { halfWidth, effectiveSamples } = windowMean(inside, 0, target ?? null, confidence);
+  const { halfWidth, effectiveSamples, drifts, change } = windowMean(inside, 0, target ?? null, confidence);
   if (effectiveSamples < fewestForInterval || !Number.isFinite(halfWidth)) return unknown;
-  return { mean, halfWidth, degreesOfFreedom: effectiveSamples - 1, usable: false };
+  const own = settling.halfWidth + Math.abs(settling.mean - mean);
+  const moving = halfWidth + (drifts ? Math.abs(change) : 0);
+  return {
+    mean,
+    halfWidth: Number.isFinite(own) ? Math.max(moving, own) : moving,
+    degreesOfFreedom: effectiveSamples - 1,
+    usable: false,
+  };
 }
 
 /** Sum of deviations from the first value: a small spread about a large mean keeps its digits. */

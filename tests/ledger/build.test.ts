@@ -170,6 +170,23 @@ describe("what is not known", () => {
     expect(ledger.window.from).toBeGreaterThanOrEqual(201);
     expect(ledger.findings[0]).toMatchObject({ code: "not-settled", severity: "warning" });
     expect(ledger.findings[0].message).toContain("drag has not settled (drifting)");
+    // Another window of this ramp would have a mean that is higher by the change over this one.
+    const change = 1e-4 * ledger.window.rows;
+    const { halfWidth } = ledger.total.cd;
+    expect(halfWidth === null || halfWidth >= 0.99 * change).toBe(true);
+  });
+
+  test("the half-width of a drifting mean holds the way of one more window; where the drift is nearly all there is none", () => {
+    const drifting = (slope: number) => {
+      const values = noisy(40, 0.3, 0.002, 600, 0.3).map((value, row) => value + slope * row);
+      const ledger = buildLedger(record(series("whole", values, noisy(41, 0.1, 0.001, 600)), [], { card: runCard() }));
+      expect(ledger.findings[0].message).toContain("drag has not settled (drifting)");
+      return { halfWidth: ledger.total.cd.halfWidth, change: slope * ledger.window.rows };
+    };
+    const { halfWidth, change } = drifting(1e-5);
+    expect(halfWidth!).toBeGreaterThan(0.8 * change);
+    expect(halfWidth!).toBeLessThan(1.2 * change + 0.002);
+    expect(drifting(1e-4).halfWidth).toBeNull();
   });
 
   test("a diverged history has no half-width and does not close", () => {
