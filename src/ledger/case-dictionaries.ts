@@ -1,5 +1,5 @@
 import { readFile, stat } from "node:fs/promises";
-import { join, relative, resolve, sep } from "node:path";
+import { isAbsolute, join, relative, resolve, sep } from "node:path";
 import { Problem } from "../errors.js";
 import { type BoundaryPatch, boundaryPatches } from "../openfoam/boundary.js";
 import {
@@ -62,7 +62,7 @@ async function readFunctions(casePath: string): Promise<Map<string, Dictionary>>
     if (seen.has(path) || seen.size >= mostIncluded) return null;
     seen.add(path);
     const inside = relative(resolve(casePath), path);
-    if (inside.startsWith("..") || inside.split(sep).includes("..") || inside.startsWith(sep)) return null;
+    if (isAbsolute(inside) || inside.split(sep)[0] === "..") return null;
     const content = await dictionary(path);
     return content && { name, content, asObject: word === "includeFunc" };
   };

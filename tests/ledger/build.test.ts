@@ -79,6 +79,17 @@ describe("entries of a ledger", () => {
     expect(ledger.total.cd.value).toBeCloseTo(mean, 12);
   });
 
+  test("a lift that takes longer to start up than the drag moves the window of both", () => {
+    const late = withStartUp(noisy(51, 0.1, 0.001, 800), 0.5, 40);
+    const slow = record(series("whole", noisy(50, 0.3, 0.001, 800), late));
+    const { first, drag, lift } = windowOf(slow);
+    expect(lift.verdict).toBe("settled");
+    expect(drag.firstRow).toBeLessThan(20);
+    expect(first).toBe(lift.firstRow);
+    expect(first).toBeGreaterThan(100);
+    expect(buildLedger(slow).total.cl.value).toBeCloseTo(0.1, 3);
+  });
+
   test("the contract's keys are all there, each a value with a half-width", () => {
     for (const entry of entries)
       for (const key of keys) expect(entry[key]).toEqual({ value: expect.any(Number), halfWidth: expect.any(Number) });
