@@ -5,7 +5,7 @@ import { join, resolve } from "node:path";
 import { prepareStudy } from "../../src/case/prepare.js";
 import { studyCases } from "../../src/case/study-cases.js";
 import { compareCases } from "../../src/compare/compare-cases.js";
-import { readSurfaces } from "../../src/geometry/read.js";
+import { readSurfaces } from "../../src/geometry/files/read.js";
 import { surveyBody } from "../../src/geometry/survey-body.js";
 import { buildLedger } from "../../src/ledger/build.js";
 import { readCaseRecord } from "../../src/ledger/case-record.js";

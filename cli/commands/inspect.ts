@@ -1,6 +1,6 @@
 import { Option } from "commander";
 import { boundingDomain } from "../../src/flow/domain.js";
-import { readSurfaces } from "../../src/geometry/read.js";
+import { readSurfaces } from "../../src/geometry/files/read.js";
 import type { LengthUnit, SignedAxis } from "../../src/geometry/survey.js";
 import { surveyBody } from "../../src/geometry/survey-body.js";
 import type { CommandModule } from "../command.js";

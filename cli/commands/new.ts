@@ -2,7 +2,7 @@ import { existsSync } from "node:fs";
 import { basename, dirname, relative, resolve } from "node:path";
 import writeFileAtomic from "write-file-atomic";
 import { inputProblem } from "../../src/errors.js";
-import { readSurfaces } from "../../src/geometry/read.js";
+import { readSurfaces } from "../../src/geometry/files/read.js";
 import { surveyBody } from "../../src/geometry/survey-body.js";
 import { draftStudy } from "../../src/study/draft.js";
 import type { CommandModule } from "../command.js";

@@ -1,5 +1,5 @@
+import { asciiStl, binaryStl } from "../../src/geometry/files/write-stl.js";
 import type { TriangleSet } from "../../src/geometry/triangle-set.js";
-import { asciiStl, binaryStl } from "../../src/geometry/write-stl.js";
 import type { SamplePart } from "./pickup.js";
 
 /** A part as the bytes of its STL file. */

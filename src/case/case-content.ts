@@ -1,7 +1,7 @@
 import { relative, sep } from "node:path";
+import { asciiStl } from "../geometry/files/write-stl.js";
 import { keepParts } from "../geometry/keep-parts.js";
 import { place } from "../geometry/place.js";
-import { asciiStl } from "../geometry/write-stl.js";
 import { packageVersion } from "../package-files.js";
 import type { Study } from "../study/study.js";
 import { caseBounds } from "./body-in-case.js";

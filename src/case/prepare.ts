@@ -1,6 +1,6 @@
 import { inputProblem } from "../errors.js";
 import { type Finding, finding } from "../finding.js";
-import { readSurfaces } from "../geometry/read.js";
+import { readSurfaces } from "../geometry/files/read.js";
 import { surveyBody } from "../geometry/survey-body.js";
 import { conditionsOf } from "../study/conditions.js";
 import { requireMatches, rotatingParts } from "../study/part-rules.js";

@@ -1,24 +1,24 @@
 import { inputProblem } from "../errors.js";
 import type { Finding } from "../finding.js";
-import { axlesOf, joinWheels, wheelbaseOf } from "./axles.js";
-import { findCrossings } from "./crossings.js";
-import { findLeak, type Leak } from "./leak.js";
+import { findCrossings } from "./checks/crossings.js";
+import { findLeak, type Leak } from "./checks/leak.js";
+import { axesFindings, emptyParts, leakFindings, listedNames, sizeFindings, wheelFindings } from "./checks/survey-findings.js";
+import { topologyFindings } from "./checks/topology-findings.js";
 import { measures } from "./measures.js";
-import { type Mirror, mirrorOf } from "./mirror.js";
-import { guessAxes } from "./orientation.js";
-import { nameHints } from "./part-words.js";
 import { metresPer, vehicleAxes } from "./place.js";
-import { silhouette } from "./silhouette.js";
+import { silhouette } from "./silhouette/silhouette.js";
+import { visibleShares } from "./silhouette/visible-shares.js";
 import { surfaceMesh } from "./surface-mesh.js";
 import type { Orientation, Survey, Wheel } from "./survey.js";
-import { axesFindings, emptyParts, leakFindings, listedNames, sizeFindings, wheelFindings } from "./survey-findings.js";
 import { topologyOf } from "./topology.js";
-import { topologyFindings } from "./topology-findings.js";
 import type { Part, TriangleSet } from "./triangle-set.js";
-import { guessUnit, type UnitGuess } from "./unit-guess.js";
 import type { Box, Vector3 } from "./vector.js";
-import { visibleShares } from "./visible-shares.js";
-import { fitWheels } from "./wheels.js";
+import { axlesOf, joinWheels, wheelbaseOf } from "./vehicle/axles.js";
+import { type Mirror, mirrorOf } from "./vehicle/mirror.js";
+import { guessAxes } from "./vehicle/orientation.js";
+import { nameHints } from "./vehicle/part-words.js";
+import { guessUnit, type UnitGuess } from "./vehicle/unit-guess.js";
+import { fitWheels } from "./vehicle/wheels.js";
 
 /**
  * All that can be said of a body from its triangles. What is asked for (unit, travel, up, wheel parts by name) is taken as given, the

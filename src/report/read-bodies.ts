@@ -1,7 +1,7 @@
 import { join } from "node:path";
 import { Problem } from "../errors.js";
+import { readSurfaces } from "../geometry/files/read.js";
 import { place } from "../geometry/place.js";
-import { readSurfaces } from "../geometry/read.js";
 import type { TriangleSet } from "../geometry/triangle-set.js";
 import type { CaseRecord } from "../ledger/case-record.js";
 import type { Study } from "../study/study.js";

@@ -10,13 +10,13 @@ import { join } from "node:path";
 import { fileURLToPath } from "node:url";
 import { STLLoader } from "three/addons/loaders/STLLoader.js";
 import { mergeVertices } from "three/addons/utils/BufferGeometryUtils.js";
-import { readSurfaces } from "../../src/geometry/read.js";
+import { readSurfaces } from "../../src/geometry/files/read.js";
+import { asciiStl, binaryStl } from "../../src/geometry/files/write-stl.js";
 import { shellsOf } from "../../src/geometry/shells.js";
-import { silhouette } from "../../src/geometry/silhouette.js";
+import { silhouette } from "../../src/geometry/silhouette/silhouette.js";
 import { surfaceMesh } from "../../src/geometry/surface-mesh.js";
 import { surveyBody } from "../../src/geometry/survey-body.js";
 import type { TriangleSet } from "../../src/geometry/triangle-set.js";
-import { asciiStl, binaryStl } from "../../src/geometry/write-stl.js";
 import { car } from "../geometry/car.js";
 
 interface Timing {

@@ -7,7 +7,7 @@ import { planStudy } from "../../src/case/prepare.js";
 import { renderCase } from "../../src/case/render.js";
 import { studyCases } from "../../src/case/study-cases.js";
 import { writeCase } from "../../src/case/write-case.js";
-import { cleanPatchNames } from "../../src/geometry/part-names.js";
+import { cleanPatchNames } from "../../src/geometry/files/part-names.js";
 import { surveyBody } from "../../src/geometry/survey-body.js";
 import { bodyOf } from "../geometry/shapes.js";
 import { cartParts, cartStudy, temporaryFolder } from "./cart.js";

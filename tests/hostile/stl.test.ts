@@ -4,10 +4,10 @@ import { join } from "node:path";
 import { gzipSync } from "node:zlib";
 import { afterAll, beforeAll, describe, expect, it } from "vitest";
 import { Problem } from "../../src/errors.js";
-import { readSurfaces } from "../../src/geometry/read.js";
+import { readSurfaces } from "../../src/geometry/files/read.js";
+import { asciiStl, binaryStl } from "../../src/geometry/files/write-stl.js";
 import { surveyBody } from "../../src/geometry/survey-body.js";
 import type { TriangleSet } from "../../src/geometry/triangle-set.js";
-import { asciiStl, binaryStl } from "../../src/geometry/write-stl.js";
 import { bodyOf, box, random, sphere } from "../geometry/shapes.js";
 
 /**

@@ -3,7 +3,7 @@ import { tmpdir } from "node:os";
 import { dirname, join } from "node:path";
 import { parseHTML } from "linkedom";
 import { afterAll, beforeAll, describe, expect, test } from "vitest";
-import { binaryStl } from "../../src/geometry/write-stl.js";
+import { binaryStl } from "../../src/geometry/files/write-stl.js";
 import { readCaseRecord } from "../../src/ledger/case-record.js";
 import { readMesh } from "../../src/report/read-mesh.js";
 import { readSolverBuild } from "../../src/report/read-solver.js";

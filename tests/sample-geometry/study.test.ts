@@ -1,6 +1,6 @@
 import { fileURLToPath } from "node:url";
 import { describe, expect, it } from "vitest";
-import { readSurfaces } from "../../src/geometry/read.js";
+import { readSurfaces } from "../../src/geometry/files/read.js";
 import { surveyBody } from "../../src/geometry/survey-body.js";
 import { readStudy } from "../../src/study/read.js";
 
