@@ -35,15 +35,38 @@ export interface Silhouette {
  * the body's extent first, and the error says so.
  */
 export function silhouette(mesh: Pick<SurfaceMesh, "vertices" | "corners" | "ring">, direction: Vector3): Silhouette {
-  const along = unit(direction);
-  const exact = silhouetteEdges(mesh, along);
-  const step =
-    exact.weight.length > MANY_EDGES && exact.weight.length > LOOSE_SHARE * mesh.ring.length ? SNAP * extentOf(mesh.vertices) : 0;
-  const pieces = step > 0 ? silhouetteEdges(snapped(mesh, step), along) : exact;
-  const { area, border, crossings } = sweep(pieces);
-  const outline = border + levelLength(pieces);
-  const moved = roundingOf(mesh.vertices) + (Math.sqrt(3) / 2) * step;
-  return { area, error: outline * moved, outline, edges: pieces.weight.length, crossings };
+  return silhouettesOf(mesh, unit(direction), null, 1)[0];
+}
+
+/**
+ * The silhouette of each part by itself, seen along a direction, as `silhouette` of that part's triangles alone: what hides it or
+ * lies behind it does not matter, so the parts' areas add up to more than that of the body where they cover each other.
+ */
+export function partSilhouettes(
+  mesh: Pick<SurfaceMesh, "vertices" | "corners" | "ring" | "partOf">,
+  parts: number,
+  direction: Vector3,
+): Silhouette[] {
+  return silhouettesOf(mesh, unit(direction), mesh.partOf, parts);
+}
+
+function silhouettesOf(
+  mesh: Pick<SurfaceMesh, "vertices" | "corners" | "ring">,
+  along: Vector3,
+  groupOf: Uint16Array | null,
+  groups: number,
+): Silhouette[] {
+  const rounding = roundingOf(mesh.vertices);
+  const most = LOOSE_SHARE * mesh.ring.length;
+  const exact = silhouetteEdges(mesh, along, groupOf, groups);
+  const edges = exact.reduce((sum, { weight }) => sum + weight.length, 0);
+  const step = edges > MANY_EDGES && edges > most ? SNAP * extentOf(mesh.vertices) : 0;
+  const pieces = step > 0 ? silhouetteEdges(snapped(mesh, step), along, groupOf, groups) : exact;
+  return pieces.map((own) => {
+    const { area, border, crossings } = sweep(own);
+    const outline = border + levelLength(own);
+    return { area, error: outline * (rounding + (Math.sqrt(3) / 2) * step), outline, edges: own.weight.length, crossings };
+  });
 }
 
 /** Vertices moved to a grid of the given step, so that those nearly alike become one. */
@@ -96,34 +119,54 @@ function levelLength({ ax, ay, bx, by }: Pieces): number {
   return length;
 }
 
-/** The edges that do not cancel out, in a plane across the direction whose second axis runs along the silhouette's longer side. */
-function silhouetteEdges(mesh: Pick<SurfaceMesh, "vertices" | "corners" | "ring">, along: Vector3): Pieces {
-  const { vertices, corners, ring } = mesh;
+/** Directed edges of one group, by vertex number. */
+interface Edges {
+  from: number[];
+  to: number[];
+  weight: number[];
+}
+
+/**
+ * The edges of each group of triangles that do not cancel out within the group (null: all triangles are one group), in a plane across
+ * the direction whose second axis runs along the longer side of the group's silhouette.
+ */
+function silhouetteEdges(
+  mesh: Pick<SurfaceMesh, "vertices" | "corners" | "ring">,
+  along: Vector3,
+  groupOf: Uint16Array | null,
+  groups: number,
+): Pieces[] {
+  const { corners, ring } = mesh;
   const facing = facingOf(mesh, along);
-  const from: number[] = [];
-  const to: number[] = [];
-  const weight: number[] = [];
+  const found = Array.from({ length: groups }, (): Edges => ({ from: [], to: [], weight: [] }));
+  const add = (group: number, h: number, weight: number): void => {
+    if (weight === 0) return;
+    const { from, to, weight: weights } = found[group];
+    from.push(corners[h]);
+    to.push(corners[nextInTriangle(h)]);
+    weights.push(weight);
+  };
   for (let h = 0, t = 0; h < ring.length; t++) {
+    const group = groupOf === null ? 0 : groupOf[t];
     for (let end = h + 3; h < end; h++) {
       const other = ring[h];
       if (other === NO_EDGE) continue;
-      let sum = facing[t];
-      if (other !== h) {
+      if (other === h) add(group, h, facing[t]);
+      else if (ring[other] === h) {
+        // The common case, two triangles: met at the lower half-edge.
+        if (other < h) continue;
         const triangle = (other / 3) | 0;
-        if (ring[other] === h) {
-          // The common case, two triangles: met at the lower half-edge.
-          if (other < h) continue;
-          sum += corners[other] === corners[h] ? facing[triangle] : -facing[triangle];
-        } else {
-          sum = ringSum(mesh, facing, h);
-        }
-      }
-      if (sum === 0) continue;
-      from.push(corners[h]);
-      to.push(corners[nextInTriangle(h)]);
-      weight.push(sum);
+        if (groupOf !== null && groupOf[triangle] !== group) {
+          add(group, h, facing[t]);
+          add(groupOf[triangle], other, facing[triangle]);
+        } else add(group, h, corners[other] === corners[h] ? facing[t] + facing[triangle] : facing[t] - facing[triangle]);
+      } else add(group, h, ringSum(mesh, facing, groupOf, h));
     }
   }
+  return found.map((edges) => piecesOf(mesh.vertices, along, edges));
+}
+
+function piecesOf(vertices: Float32Array, along: Vector3, { from, to, weight }: Edges): Pieces {
   const { u, v, middle } = planeAcross(along, vertices, from);
   const at = (ids: number[], axis: Vector3, zero: number): Float64Array => {
     const values = new Float64Array(ids.length);
@@ -164,13 +207,23 @@ function facingOf({ vertices, corners }: Pick<SurfaceMesh, "vertices" | "corners
   return facing;
 }
 
-/** The sum over an edge where three or more triangles meet, in the direction of half-edge `h`; 0 unless `h` is its lowest. */
-function ringSum({ corners, ring }: Pick<SurfaceMesh, "corners" | "ring">, facing: Int8Array, h: number): number {
-  let sum = facing[(h / 3) | 0];
+/**
+ * The sum over an edge where three or more triangles meet, of those in the group of half-edge `h`, in the direction of `h`; 0 unless
+ * `h` is the lowest of them.
+ */
+function ringSum(
+  { corners, ring }: Pick<SurfaceMesh, "corners" | "ring">,
+  facing: Int8Array,
+  groupOf: Uint16Array | null,
+  h: number,
+): number {
+  const own = (h / 3) | 0;
+  let sum = facing[own];
   for (let other = ring[h]; other !== h; other = ring[other]) {
+    const triangle = (other / 3) | 0;
+    if (groupOf !== null && groupOf[triangle] !== groupOf[own]) continue;
     if (other < h) return 0;
-    const triangle = facing[(other / 3) | 0];
-    sum += corners[other] === corners[h] ? triangle : -triangle;
+    sum += corners[other] === corners[h] ? facing[triangle] : -facing[triangle];
   }
   return sum;
 }
