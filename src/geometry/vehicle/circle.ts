@@ -1,3 +1,5 @@
+import { convexHull } from "./hull.js";
+
 /** A circle in a plane fitted to points, and how well it fits. */
 export interface Circle {
   x: number;
@@ -19,7 +21,7 @@ export interface Circle {
  * takes away a bulge at the ground or a valve. Null for fewer than three corners.
  */
 export function outerCircle(points: Float64Array): Circle | null {
-  let kept = hullOf(outermost(points));
+  let kept = convexHull(outermost(points));
   for (let round = 0; ; round++) {
     const fit = leastSquares(kept);
     if (fit === null) return null;
@@ -182,33 +184,4 @@ function outermost(points: Float64Array): Float64Array {
   const kept = new Float64Array(2 * found.length);
   for (let k = 0; k < found.length; k++) kept.set(points.subarray(2 * found[k], 2 * found[k] + 2), 2 * k);
   return kept;
-}
-
-/** Corners of the convex hull (Andrew, 1979), without points on its sides. */
-function hullOf(points: Float64Array): Float64Array {
-  const order = Array.from({ length: points.length / 2 }, (_, k) => k).sort(
-    (a, b) => points[2 * a] - points[2 * b] || points[2 * a + 1] - points[2 * b + 1],
-  );
-  const half = (indices: number[]): number[] => {
-    const chain: number[] = [];
-    for (const k of indices) {
-      while (chain.length >= 2 && !turnsLeft(points, chain[chain.length - 2], chain[chain.length - 1], k)) chain.pop();
-      chain.push(k);
-    }
-    chain.pop();
-    return chain;
-  };
-  const hull = [...half(order), ...half(order.reverse())];
-  const corners = new Float64Array(2 * hull.length);
-  for (let k = 0; k < hull.length; k++) corners.set(points.subarray(2 * hull[k], 2 * hull[k] + 2), 2 * k);
-  return corners;
-}
-
-/** Strictly, beyond the rounding of 32-bit coordinates: a point on a flat is no corner. */
-function turnsLeft(points: Float64Array, a: number, b: number, c: number): boolean {
-  const ux = points[2 * b] - points[2 * a];
-  const uy = points[2 * b + 1] - points[2 * a + 1];
-  const vx = points[2 * c] - points[2 * a];
-  const vy = points[2 * c + 1] - points[2 * a + 1];
-  return ux * vy - uy * vx > 1e-6 * Math.hypot(ux, uy) * Math.hypot(vx, vy);
 }
