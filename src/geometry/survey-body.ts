@@ -1,24 +1,45 @@
 import { inputProblem } from "../errors.js";
-import type { Finding } from "../finding.js";
+import { type Finding, finding } from "../finding.js";
 import { findCrossings } from "./checks/crossings.js";
-import { findLeak, type Leak } from "./checks/leak.js";
+import { findLeak } from "./checks/leak.js";
+import { stanceFindings } from "./checks/stance-findings.js";
 import { axesFindings, emptyParts, leakFindings, listedNames, sizeFindings, wheelFindings } from "./checks/survey-findings.js";
 import { topologyFindings } from "./checks/topology-findings.js";
-import { measures } from "./measures.js";
+import { type Measures, measures } from "./measures.js";
 import { metresPer, vehicleAxes } from "./place.js";
-import { silhouette } from "./silhouette/silhouette.js";
+import { shellMeasures } from "./shell-measures.js";
+import { partSilhouettes, silhouette } from "./silhouette/silhouette.js";
 import { visibleShares } from "./silhouette/visible-shares.js";
+import { yawedAreas } from "./silhouette/yawed-area.js";
 import { surfaceMesh } from "./surface-mesh.js";
-import type { Orientation, Survey, Wheel } from "./survey.js";
+import type { Orientation, ProjectedArea, ShellSurvey, Survey } from "./survey.js";
+import { leakInMetres, pointInMetres, stanceInMetres, wheelInMetres } from "./survey-metres.js";
 import { topologyOf } from "./topology.js";
 import type { Part, TriangleSet } from "./triangle-set.js";
-import type { Box, Vector3 } from "./vector.js";
+import { type Box, dot, type Vector3 } from "./vector.js";
 import { axlesOf, joinWheels, wheelbaseOf } from "./vehicle/axles.js";
 import { type Mirror, mirrorOf } from "./vehicle/mirror.js";
 import { guessAxes } from "./vehicle/orientation.js";
 import { nameHints } from "./vehicle/part-words.js";
+import { contactDepth, stanceOf } from "./vehicle/stance.js";
 import { guessUnit, type UnitGuess } from "./vehicle/unit-guess.js";
-import { fitWheels } from "./vehicle/wheels.js";
+import { fitWheels, type VehicleAxes, type WheelFit } from "./vehicle/wheels.js";
+
+export interface SurveyWishes {
+  /** names of the parts that are wheels, instead of those whose names say so */
+  wheelParts?: string[];
+  /** degrees: the frontal area is wanted at these angles of yaw too */
+  yaws?: number[];
+  /** metres: cell of the mesh at the surface that the body has to be fit for; a two-hundredth of the length where it is not given */
+  cell?: number;
+  /** the slow checks also for bodies of more than a million triangles */
+  full?: boolean;
+}
+
+/** Cells along the body that a first study has at the surface. */
+const usualCells = 200;
+/** Above this, self-intersections and the leak test are left out unless asked for. */
+const mostTriangles = 1_000_000;
 
 /**
  * All that can be said of a body from its triangles. What is asked for (unit, travel, up, wheel parts by name) is taken as given, the
@@ -28,7 +49,7 @@ import { fitWheels } from "./vehicle/wheels.js";
  *
  * @throws Problem(input) `unknown-wheel-part`, `axes-parallel`.
  */
-export function surveyBody(set: TriangleSet, asked: Partial<Orientation> & { wheelParts?: string[] } = {}): Survey {
+export function surveyBody(set: TriangleSet, asked: Partial<Orientation> & SurveyWishes = {}): Survey {
   const { parts } = set;
   const mesh = surfaceMesh(set);
   const inUnit = measures(mesh, set.partOf, parts.length);
@@ -54,24 +75,40 @@ export function surveyBody(set: TriangleSet, asked: Partial<Orientation> & { whe
   );
   const vehicle = vehicleAxes(axes);
   const scale = metresPer[unit.value];
-  const point = (at: Vector3): Vector3 => at.map((value) => value * scale) as Vector3;
+  const point = (at: Vector3): Vector3 => pointInMetres(at, scale);
   const box = ({ min, max }: Box): Box => ({ min: point(min), max: point(max) });
   const front = silhouette(mesh, vehicle.rearward);
+  const side = silhouette(mesh, vehicle.right);
+  const plan = silhouette(mesh, vehicle.up);
   const shares = visibleShares(mesh, parts.length, vehicle.rearward);
+  const alone = partSilhouettes(mesh, parts.length, vehicle.rearward);
   const fitted = fitWheels(mesh, wheelParts, vehicle);
   const wheels = joinWheels(fitted.flatMap(({ fit }) => (fit === null ? [] : [fit])));
   const axles = axlesOf(wheels, vehicle.rearward);
   const wheelbase = wheelbaseOf(axles);
   const topology = topologyOf(mesh, parts.length);
-  const crossings = findCrossings(mesh, topology.shells.shellOf, parts.length);
   const lateral = vehicle.right.findIndex((value) => value !== 0);
   const symmetry = mirror(lateral);
   const cut = symmetry.kind === "half" ? { axis: lateral, plane: symmetry.plane } : null;
-  // A surface without open edges cannot leak.
-  const found = topology.open.count > 0 ? findLeak(mesh, inUnit.whole.bounds, cut) : { cell: 0, reached: false, holes: [] };
-  const leak = found === null ? undefined : scaledLeak(found, scale);
+  const stance = stanceOf(mesh, inUnit.whole.bounds, wheels, vehicle, {
+    middle: middleOf(symmetry, vehicle, wheels, inUnit.whole.bounds),
+    half: cut !== null,
+    depth: contactDepth / scale,
+    wheelParts,
+  });
   const along = (direction: Vector3): number => extents[direction.findIndex((value) => value !== 0)] * scale;
+  const cell = asked.cell ?? along(vehicle.rearward) / usualCells;
+  const leftOut = asked.full !== true && set.partOf.length > mostTriangles;
+  const crossings = leftOut ? null : findCrossings(mesh, topology.shells.shellOf, parts.length);
+  // A surface without open edges cannot leak.
+  const found = leftOut
+    ? null
+    : topology.open.count > 0
+      ? findLeak(mesh, inUnit.whole.bounds, cut)
+      : { cell: 0, reached: false, holes: [] };
+  const leak = found === null ? undefined : leakInMetres(found, scale);
   const { whole } = inUnit;
+  const volume = cut === null ? whole.volume : halfVolume(whole, cut);
   const findings: Finding[] = [
     ...set.findings,
     ...sizeFindings(set, unit, asked.unit !== undefined, Math.max(...extents) * scale),
@@ -80,7 +117,13 @@ export function surveyBody(set: TriangleSet, asked: Partial<Orientation> & { whe
     ...topologyFindings(topology, crossings, parts, scale, symmetry),
     ...leakFindings(leak),
     ...wheelFindings(parts, fitted, wheels, axles.length, vehicle, scale),
+    ...stanceFindings(stance, parts, scale, cell),
+    ...(leftOut ? [leftOutFinding(set.partOf.length)] : []),
   ];
+  const area = (seen: { area: number; error: number }): ProjectedArea => ({
+    value: seen.area * scale ** 2,
+    error: seen.error * scale ** 2,
+  });
   return {
     files: set.files,
     parts: parts.map(({ name, patch }, k) => ({
@@ -88,17 +131,43 @@ export function surveyBody(set: TriangleSet, asked: Partial<Orientation> & { whe
       patch,
       triangles: inUnit.groups[k].triangles,
       area: inUnit.groups[k].area * scale ** 2,
+      volume: inUnit.groups[k].volume * scale ** 3,
+      centroid: point(inUnit.groups[k].areaCentroid),
       bounds: box(inUnit.groups[k].bounds),
       frontalVisible: shares[k] * front.area * scale ** 2,
+      frontalAlone: alone[k].area * scale ** 2,
     })),
     triangles: whole.triangles,
     vertices: mesh.vertices.length / 3,
     bounds: box(whole.bounds),
     extents: { length: along(vehicle.rearward), width: along(vehicle.right), height: along(vehicle.up) },
     wettedArea: whole.area * scale ** 2,
-    volume: whole.volume * scale ** 3,
+    volume: volume * scale ** 3,
     centroid: point(topology.open.count === 0 && whole.volumeCentroid !== null ? whole.volumeCentroid : whole.areaCentroid),
-    frontalArea: { value: front.area * scale ** 2, error: front.error * scale ** 2 },
+    frontalArea: area(front),
+    sideArea: area(side),
+    planArea: area(plan),
+    yawed: yawedAreas(mesh, asked.yaws ?? [], vehicle, cut).map((seen) => ({ yaw: seen.yaw, ...area(seen) })),
+    doubled:
+      cut === null
+        ? null
+        : {
+            frontalArea: 2 * area(front).value,
+            planArea: 2 * area(plan).value,
+            wettedArea: 2 * (whole.area - symmetry.lid) * scale ** 2,
+            volume: 2 * volume * scale ** 3,
+          },
+    shells: shellMeasures(mesh, topology.shells).map(
+      (shell): ShellSurvey => ({
+        triangles: shell.triangles,
+        parts: shell.parts.map((part) => parts[part].name),
+        closed: shell.closed,
+        area: shell.area * scale ** 2,
+        volume: shell.volume * scale ** 3,
+        centroid: point(shell.centroid),
+        bounds: box(shell.bounds),
+      }),
+    ),
     unit,
     axes: { travel: axes.travel, up: axes.up, basis: axes.basis, certain: axes.certain },
     topology: {
@@ -110,17 +179,9 @@ export function surveyBody(set: TriangleSet, asked: Partial<Orientation> & { whe
       shells: topology.shells.count,
       selfIntersections: crossings === null ? null : crossings.within.count,
     },
-    wheels: wheels.map(
-      (wheel): Wheel => ({
-        part: parts[wheel.part].name,
-        centre: point(wheel.centre),
-        axis: wheel.axis,
-        radius: wheel.radius * scale,
-        width: wheel.width * scale,
-        fitError: wheel.fitError * scale,
-      }),
-    ),
+    wheels: wheels.map((wheel) => wheelInMetres(wheel, stance, parts, scale)),
     wheelbase: wheelbase === null ? null : wheelbase * scale,
+    stance: stanceInMetres(stance, parts, scale),
     symmetry: { kind: symmetry.kind, plane: symmetry.plane * scale, deviation: symmetry.deviation * scale },
     leak,
     findings,
@@ -148,8 +209,27 @@ function wheelPartsOf(parts: Part[], named: string[] | undefined): number[] {
   });
 }
 
-const scaledLeak = ({ cell, reached, holes }: Leak, scale: number): Leak => ({
-  cell: cell * scale,
-  reached,
-  holes: holes.map(({ centre, width }) => ({ centre: centre.map((value) => value * scale) as Vector3, width: width * scale })),
-});
+/**
+ * Volume of a half body that is open along its cut or closed by a lid: seen from a point of the cut's plane the missing lid spans
+ * nothing, so the sum over the other triangles is whole.
+ */
+function halfVolume({ volume, bounds, areaVector }: Measures, { axis, plane }: { axis: number; plane: number }): number {
+  const middle = (bounds.min[axis] + bounds.max[axis]) / 2;
+  return volume + ((middle - plane) * areaVector[axis]) / 3;
+}
+
+/** Coordinate of the vehicle's mid-plane along right: its symmetry plane, else the middle of its wheels, else of its bounds. */
+function middleOf({ kind, plane }: Mirror, { right }: VehicleAxes, wheels: WheelFit[], { min, max }: Box): number {
+  const lateral = right.findIndex((value) => value !== 0);
+  if (kind !== "none" || wheels.length < 2) return (kind === "none" ? (min[lateral] + max[lateral]) / 2 : plane) * right[lateral];
+  const across = wheels.map(({ centre }) => dot(centre, right));
+  return (Math.min(...across) + Math.max(...across)) / 2;
+}
+
+const leftOutFinding = (triangles: number): Finding =>
+  finding(
+    "checks-left-out",
+    "note",
+    `The body has ${triangles} triangles, more than a million: self-intersections and the leak test, the slow checks, were left out.`,
+    "Ask for the full check before spending time on a mesh.",
+  );

@@ -14,16 +14,42 @@ export interface Orientation {
   up: SignedAxis;
 }
 
+/** An area seen along a direction, and what the rounding of the coordinates can change about it. m² */
+export interface ProjectedArea {
+  value: number;
+  error: number;
+}
+
 export interface PartSurvey {
   name: string;
   patch: string;
   triangles: number;
   /** m² */
   area: number;
+  /** m³, signed by the divergence theorem; meaningful where the part is closed by itself. */
+  volume: number;
+  /** metres, file axes: of the surface */
+  centroid: Vector3;
   /** metres, file axes */
   bounds: Box;
   /** m²: area of the union silhouette that this part owns when seen along the flow (the nearest part wins); the parts add up to the whole. */
   frontalVisible: number;
+  /** m²: the part's own silhouette along the flow, as if it were alone; the parts add up to more than the whole where they cover each other. */
+  frontalAlone: number;
+}
+
+/** Triangles that hang together by edges. Metres, file axes. */
+export interface ShellSurvey {
+  triangles: number;
+  /** names of the parts that it belongs to */
+  parts: string[];
+  closed: boolean;
+  /** m² */
+  area: number;
+  /** m³, signed; meaningless where the shell is open */
+  volume: number;
+  centroid: Vector3;
+  bounds: Box;
 }
 
 export interface Topology {
@@ -33,12 +59,15 @@ export interface Topology {
   degenerate: number;
   duplicate: number;
   shells: number;
-  /** Pairs of triangles of one shell that pass through each other; null where the surface is too large to look. Shells may overlap. */
+  /** Pairs of triangles of one shell that pass through each other; null where the check was left out. Shells may overlap. */
   selfIntersections: number | null;
 }
 
+/** One entry per wheel and part: tyre and rim of one wheel have the same centre, axis, radius and width. */
 export interface Wheel {
   part: string;
+  /** which wheel it is: front-left, rear-right, axle-2-left; without a side for a wheel in the middle */
+  position: string;
   /** metres, file axes */
   centre: Vector3;
   /** unit vector along the axle, file axes, pointing to the vehicle's right */
@@ -49,6 +78,24 @@ export interface Wheel {
   width: number;
   /** metres: root mean square deviation of the tread from the fitted circle */
   fitError: number;
+  /** metres: height of the axle above the ground */
+  axleHeight: number;
+  /** metres: from the ground to the wheel's lowest point */
+  gap: number;
+  /** Where the wheel is within a millimetre of the ground: metres and m², grooves included; null where it is nowhere. */
+  contact: { centre: Vector3; length: number; width: number; area: number } | null;
+}
+
+/** How the body stands on the ground, which is at its lowest point. Metres. */
+export interface StanceSurvey {
+  /** coordinate of the ground on the file's up axis */
+  ground: number;
+  /** between the outermost wheels of the first and last axle; null where an axle has but one */
+  track: { front: number | null; rear: number | null };
+  /** from the first axle to the foremost point, from the last to the rearmost; null without two axles */
+  overhangs: { front: number; rear: number } | null;
+  /** the lowest point that is no wheel's, above the ground */
+  clearance: { height: number; place: Vector3; part: string } | null;
 }
 
 /** All that is known of a body from its triangles alone. Lengths in metres, areas in m², file axes (not shifted, not turned). */
@@ -65,13 +112,23 @@ export interface Survey {
   volume: number;
   centroid: Vector3;
   /** Area of the union silhouette along the direction of travel, and its error. For a half body this is the half. */
-  frontalArea: { value: number; error: number };
+  frontalArea: ProjectedArea;
+  /** Areas of the union silhouette seen from the side and from above; of a half body, of the half. */
+  sideArea: ProjectedArea;
+  planArea: ProjectedArea;
+  /** Frontal areas across the wind at the angles of yaw that were asked for, of the whole vehicle. Degrees, positive with wind from the left. */
+  yawed: ({ yaw: number } & ProjectedArea)[];
+  /** What the whole vehicle has, for a half body (twice the half, a lid on the cut left out); null for any other. */
+  doubled: { frontalArea: number; planArea: number; wettedArea: number; volume: number } | null;
+  /** The largest shells, most triangles first, a hundred at most; `topology.shells` counts all. */
+  shells: ShellSurvey[];
   unit: { value: LengthUnit; basis: string; certain: boolean };
   axes: { travel: SignedAxis; up: SignedAxis; basis: string; certain: boolean };
   topology: Topology;
   wheels: Wheel[];
   /** Distance of the mean front and rear axles along travel; null without two axles. */
   wheelbase: number | null;
+  stance: StanceSurvey;
   /**
    * Mirror symmetry about the vehicle's mid-plane: whole = the mirrored body meets itself; half = all of the body lies on one side
    * of a plane that it touches; none = neither. `deviation` in metres is the greatest mirror distance of a vertex.

@@ -3,7 +3,7 @@ import type { Problem } from "../../src/errors.js";
 import type { Survey } from "../../src/geometry/survey.js";
 import { surveyBody } from "../../src/geometry/survey-body.js";
 import { car } from "./car.js";
-import { bodyOf, box, joined, moved, shifted, sphere, type Triangles, turnedOver } from "./shapes.js";
+import { bodyOf, box, ellipsoid, joined, moved, shifted, sphere, type Triangles, turnedOver } from "./shapes.js";
 
 const codes = (survey: Survey): string[] => survey.findings.map((item) => item.code);
 const finding = (survey: Survey, code: string) => survey.findings.find((item) => item.code === code);
@@ -215,6 +215,105 @@ describe("topology findings", () => {
     expect(codes(half)).toEqual(["empty-part", "open-edges"]);
     expect(half.frontalArea.value).toBeCloseTo(whole.frontalArea.value / 2, 6);
     expect(half.wheelbase).toBeCloseTo(whole.wheelbase ?? 0, 5);
+    // Twice the half is the whole: the cut is open, and lies in the plane that volumes are taken from.
+    expect(half.doubled?.frontalArea).toBeCloseTo(whole.frontalArea.value, 6);
+    expect(half.doubled?.planArea).toBeCloseTo(whole.planArea.value, 6);
+    expect(half.doubled?.wettedArea).toBeCloseTo(whole.wettedArea, 4);
+    expect(half.doubled?.volume).toBeCloseTo(whole.volume, 5);
+    expect(half.sideArea.value).toBeCloseTo(whole.sideArea.value, 6);
+    expect(half.stance.track.front).toBeCloseTo(whole.stance.track.front ?? 0, 5);
+    expect(half.wheels.map(({ position }) => position)).toEqual(["front-right", "rear-right"]);
+    expect(whole.doubled).toBeNull();
+  });
+
+  it("a half closed by a lid: the lid is no skin of the whole", () => {
+    // Surface and volume of the ellipsoid 2.25, 0.9, 0.7: 18.67701002 and 5.93761012 (closed forms); facets leave out a little.
+    const hull = moved(ellipsoid(2.25, 0.9, 0.7, 48), ([x, y, z]) => [x, Math.max(y, 0), z]);
+    const half = surveyBody(bodyOf({ hull }), given);
+    expect(half.symmetry).toMatchObject({ kind: "half", plane: 0 });
+    expect((half.doubled?.wettedArea ?? 0) / 18.67701002).toBeCloseTo(1, 2);
+    expect((half.doubled?.volume ?? 0) / 5.93761012).toBeCloseTo(1, 2);
+    expect(half.wettedArea).toBeGreaterThan((half.doubled?.wettedArea ?? 0) / 2 + 4.9);
+  });
+});
+
+// A box of a, b, c seen along n: bc |nx| + ca |ny| + ab |nz| (published for 4 x 1.8 x 1.4 at 10 degrees of yaw: 3.45414533).
+describe("areas seen from the front, the side, above, and at yaw", () => {
+  const sizes = [4, 1.8, 1.4];
+  const whole = box([0, -0.9, 0], [4, 0.9, 1.4]);
+  const atYaw = (yaw: number): number =>
+    sizes[1] * sizes[2] * Math.cos((yaw * Math.PI) / 180) + sizes[0] * sizes[2] * Math.sin((yaw * Math.PI) / 180);
+
+  it("of a box", () => {
+    const survey = surveyBody(bodyOf({ body: whole }), { ...given, yaws: [0, 5, 10, -10] });
+    expect(survey.frontalArea.value).toBeCloseTo(1.8 * 1.4, 6);
+    expect(survey.sideArea.value).toBeCloseTo(4 * 1.4, 6);
+    expect(survey.planArea.value).toBeCloseTo(4 * 1.8, 6);
+    expect(survey.yawed.map(({ yaw }) => yaw)).toEqual([0, 5, 10, -10]);
+    expect(survey.yawed[1].value).toBeCloseTo(atYaw(5), 6);
+    expect(survey.yawed[2].value).toBeCloseTo(3.45414533, 6);
+    expect(survey.yawed[3].value).toBeCloseTo(survey.yawed[2].value, 6);
+  });
+
+  it("of a half of it, which is completed first", () => {
+    const open = box([0, 0, 0], [4, 0.9, 1.4]).filter(
+      (_, at, all) => ![1, 4, 7].every((k) => all[9 * Math.floor(at / 9) + k] === 0),
+    );
+    const survey = surveyBody(bodyOf({ body: open }), { ...given, yaws: [10] });
+    expect(survey.symmetry.kind).toBe("half");
+    expect(survey.yawed[0].value).toBeCloseTo(3.45414533, 6);
+    expect(survey.doubled?.frontalArea).toBeCloseTo(1.8 * 1.4, 6);
+  });
+
+  it("the wind of a positive yaw comes from the left", () => {
+    // A plate that runs rearward and to the right along (1, 1): seen edge-on at 45 degrees.
+    const plate = surveyBody(bodyOf({ plate: [0, 0, 0, 2, 2, 0, 2, 2, 1, 0, 0, 0, 2, 2, 1, 0, 0, 1] }), {
+      ...given,
+      yaws: [45, -45],
+    });
+    expect(plate.yawed[0].value).toBeCloseTo(0, 6);
+    expect(plate.yawed[1].value).toBeCloseTo(2 * Math.SQRT2, 5);
+  });
+});
+
+describe("stance and shells in the survey", () => {
+  it("a wheel that hovers, and one that touches along a line", () => {
+    const { set } = car(8000, 3);
+    const positions = set.positions.slice();
+    const wheel = set.parts.findIndex(({ name }) => name === "wheel-rear-left");
+    for (let t = 0; t < set.partOf.length; t++)
+      if (set.partOf[t] === wheel) for (const k of [2, 5, 8]) positions[9 * t + k] += 0.012;
+    const survey = surveyBody({ ...set, positions }, { ...given, cell: 0.02 });
+    expect(finding(survey, "wheel-hovers")).toMatchObject({
+      severity: "warning",
+      part: "wheel-rear-left",
+      count: 1,
+      message:
+        "1 of 4 wheels do not touch the ground (rear-left; up to 12 mm above it): the ground is at the body's lowest point. The gap is narrower than two cells of 20 mm: the mesh closes it here and there, and what is left is a jet that no tyre has.",
+    });
+    expect(survey.wheels.find(({ part }) => part === "wheel-rear-left")).toMatchObject({ position: "rear-left", contact: null });
+    expect(finding(surveyBody(set, { ...given, cell: 0.2 }), "contact-line")).toMatchObject({ severity: "note", count: 4 });
+  });
+
+  it("above a million triangles the slow checks are left out, which is said, unless they are asked for", () => {
+    const plate: number[] = [];
+    for (let row = 0; row < 501; row++)
+      for (let column = 0; column < 1000; column++) {
+        const [x, y] = [column / 250, row / 250];
+        const [across, along] = [(column + 1) / 250, (row + 1) / 250];
+        plate.push(x, y, 0, across, y, 0, across, along, 0, x, y, 0, across, along, 0, x, along, 0);
+      }
+    const survey = surveyBody(bodyOf({ plate }), given);
+    expect(survey.topology.selfIntersections).toBeNull();
+    expect(finding(survey, "checks-left-out")?.message).toMatch(/^The body has 10\d{5} triangles, more than a million/);
+  });
+
+  it("lists shells with their parts", () => {
+    const survey = surveyBody(car(6000).set, given);
+    expect(survey.shells).toHaveLength(7);
+    expect(survey.shells.every(({ closed }) => closed)).toBe(true);
+    expect(survey.shells[0].parts).toHaveLength(7);
+    expect(survey.shells.reduce((sum, { volume }) => sum + volume, 0)).toBeCloseTo(survey.volume, 9);
   });
 });
 

@@ -9,6 +9,8 @@ export interface Mirror {
   kind: "whole" | "half" | "none";
   /** How the cut of a half looks; null for the others. */
   cut: "open" | "lid" | null;
+  /** Area of the lid on the cut; 0 without one. */
+  lid: number;
   /** Coordinate of the plane on that axis. */
   plane: number;
   /** whole and none: greatest distance of a mirrored vertex to the surface, over the sampled vertices; half: of the cut from its plane. */
@@ -36,20 +38,20 @@ const FLAT_SHARE = 0.5;
 export function mirrorOf(mesh: SurfaceMesh, bounds: Box, axis: number): Mirror {
   const length = Math.max(...bounds.max.map((value, k) => value - bounds.min[k]));
   const plane = (bounds.min[axis] + bounds.max[axis]) / 2;
-  if (!(length > 0)) return { kind: "none", cut: null, plane, deviation: 0 };
+  if (!(length > 0)) return { kind: "none", cut: null, lid: 0, plane, deviation: 0 };
   const cuts = [bounds.min[axis], bounds.max[axis]].map((at): Cut => cutAt(mesh, axis, at, IN_PLANE * length));
   const open = cuts.filter((cut) => cut.openSpan >= CUT_LENGTH * length);
-  if (open.length === 1) return { kind: "half", cut: "open", plane: open[0].plane, deviation: open[0].deviation };
+  if (open.length === 1) return { kind: "half", cut: "open", lid: 0, plane: open[0].plane, deviation: open[0].deviation };
   const deviation = mirrorDistance(mesh, bounds, axis, plane, length);
-  if (deviation <= SAME * length) return { kind: "whole", cut: null, plane, deviation };
+  if (deviation <= SAME * length) return { kind: "whole", cut: null, lid: 0, plane, deviation };
   const [lid, other] = cuts[0].lid > cuts[1].lid ? [0, 1] : [1, 0];
   const isLid =
     cuts[lid].lid > 0 &&
     cuts[lid].lid >= LID_SHARE * sideArea(mesh, axis) &&
     flatArea(mesh, axis, other) < FLAT_SHARE * cuts[lid].lid;
   return isLid
-    ? { kind: "half", cut: "lid", plane: cuts[lid].plane, deviation: cuts[lid].deviation }
-    : { kind: "none", cut: null, plane, deviation };
+    ? { kind: "half", cut: "lid", lid: cuts[lid].lid, plane: cuts[lid].plane, deviation: cuts[lid].deviation }
+    : { kind: "none", cut: null, lid: 0, plane, deviation };
 }
 
 function sideArea(mesh: SurfaceMesh, axis: number): number {

@@ -186,7 +186,7 @@ describe("mirrorOf", () => {
   const whole = joined(van.hood, van.cabin);
 
   it("knows a whole body, also where the two sides are cut into triangles differently", () => {
-    expect(mirror(whole)).toEqual({ kind: "whole", cut: null, plane: 0, deviation: 0 });
+    expect(mirror(whole)).toEqual({ kind: "whole", cut: null, lid: 0, plane: 0, deviation: 0 });
     const other = turnedOver(moved(whole, ([x, y, z]) => [x, -y, z]));
     expect(
       mirror(
@@ -212,7 +212,7 @@ describe("mirrorOf", () => {
 
   it("knows a half by its open cut and by its lid", () => {
     const half = halfCar();
-    expect(mirror(half)).toEqual({ kind: "half", cut: "lid", plane: 0, deviation: 0 });
+    expect(mirror(half)).toEqual({ kind: "half", cut: "lid", lid: expect.closeTo(5.39219, 4), plane: 0, deviation: 0 });
     const open: Triangles = [];
     for (let at = 0; at < half.length; at += 9)
       if (![1, 4, 7].every((k) => half[at + k] === 0)) open.push(...half.slice(at, at + 9));
