@@ -21,3 +21,8 @@ export function quantity(dimension: Dimension): (text: string) => number {
 
 /** A coefficient or counts of one, such as `0.001` or `1 count`. */
 export const coefficient = quantity("coefficient");
+
+/** For an option that may hold several values. */
+export function each<T>(parse: (text: string) => T): (text: string, before: T[] | undefined) => T[] {
+  return (text, before) => [...(before ?? []), parse(text)];
+}

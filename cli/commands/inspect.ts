@@ -6,12 +6,16 @@ import { surveyBody } from "../../src/geometry/survey-body.js";
 import type { CommandModule } from "../command.js";
 import { exitCode } from "../context.js";
 import { printSurvey } from "../print/survey.js";
+import { each, quantity } from "../values.js";
 
 interface Options {
   unit?: LengthUnit;
   travel?: SignedAxis;
   up?: SignedAxis;
   wheels?: string[];
+  yaw?: number[];
+  cell?: number;
+  full?: boolean;
 }
 
 const signedAxes = ["+x", "-x", "+y", "-y", "+z", "-z"];
@@ -28,15 +32,30 @@ export const command: CommandModule<Options> = {
       )
       .addOption(new Option("--travel <axis>", "direction the vehicle drives, such as -x").choices(signedAxes))
       .addOption(new Option("--up <axis>", "direction up, such as +z").choices(signedAxes))
-      .option("--wheels <part...>", "parts that are wheels, when their names do not say so");
+      .option("--wheels <part...>", "parts that are wheels, when their names do not say so")
+      .option("--yaw <angle...>", "frontal area across the wind at these angles of yaw too, such as 5deg", each(quantity("angle")))
+      .option(
+        "--cell <length>",
+        "cell of the mesh at the surface to be fit for, such as 20mm; else a two-hundredth of the length",
+        quantity("length"),
+      )
+      .option("--full", "the slow checks (self-intersections, leak test) also above a million triangles");
   },
   examples: [
-    { call: "dragledger inspect body.stl wheels.stl", does: "two files as one body" },
+    { call: "dragledger inspect body.stl wheels.stl --cell 15mm --yaw 5deg", does: "two files as one body, for a finer mesh" },
     { call: "dragledger inspect body.stl --unit mm --travel -x --json", does: "unit and direction given; the result as JSON" },
   ],
   async run({ args, options, print }) {
     const set = await readSurfaces(args[0] as string[]);
-    const survey = surveyBody(set, { unit: options.unit, travel: options.travel, up: options.up, wheelParts: options.wheels });
+    const survey = surveyBody(set, {
+      unit: options.unit,
+      travel: options.travel,
+      up: options.up,
+      wheelParts: options.wheels,
+      yaws: options.yaw,
+      cell: options.cell,
+      full: options.full,
+    });
     const domain = boundingDomain(survey);
     print.document("inspect", { ...survey, domain });
     printSurvey(print, survey, domain);

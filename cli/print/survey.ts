@@ -1,4 +1,4 @@
-import type { Survey } from "../../src/geometry/survey.js";
+import type { ProjectedArea, Survey } from "../../src/geometry/survey.js";
 import type { Box } from "../../src/geometry/vector.js";
 import { fixed, thousands } from "../../src/number-text.js";
 import { printFindings } from "./findings.js";
@@ -21,13 +21,11 @@ export function printSurvey(print: Printer, survey: Survey, domain: Box & { bloc
   );
   print.line(`  length × width × height   ${fixed(length, 3)} × ${fixed(width, 3)} × ${fixed(height, 3)} m`);
   print.line(`  bounds          x ${range(survey.bounds, 0)}, y ${range(survey.bounds, 1)}, z ${range(survey.bounds, 2)} m`);
-  print.line(
-    `  frontal area    ${fixed(survey.frontalArea.value, 5)} m² ± ${survey.frontalArea.error.toExponential(1)} (union silhouette along travel)`,
-  );
+  for (const [title, area] of areas(survey)) print.line(`  ${title.padEnd(15)} ${area}`);
   print.line(`  wetted area     ${fixed(survey.wettedArea, 4)} m²`);
   print.line(`  volume          ${fixed(survey.volume, 4)} m³, centroid (${survey.centroid.map((x) => fixed(x, 3)).join(", ")}) m`);
   print.line(`  symmetry        ${symmetryText(survey)}`);
-  if (survey.wheelbase !== null) print.line(`  wheelbase       ${fixed(survey.wheelbase, 4)} m`);
+  for (const line of stance(survey)) print.line(line);
   print.line(
     `  domain          ${[0, 1, 2].map((i) => fixed(domain.max[i] - domain.min[i], 2)).join(" × ")} m, blockage ${fixed(100 * domain.blockage, 2)} %`,
   );
@@ -42,6 +40,7 @@ export function printSurvey(print: Printer, survey: Survey, domain: Box & { bloc
         { title: "triangles", align: "right" as const },
         { title: "area m²", align: "right" as const },
         { title: "seen from the front m²", align: "right" as const },
+        { title: "alone m²", align: "right" as const },
       ],
       [
         ...survey.parts.map((part) => [
@@ -50,6 +49,7 @@ export function printSurvey(print: Printer, survey: Survey, domain: Box & { bloc
           thousands(part.triangles),
           fixed(part.area, 4),
           fixed(part.frontalVisible, 4),
+          fixed(part.frontalAlone, 4),
         ]),
         [
           "whole",
@@ -57,6 +57,7 @@ export function printSurvey(print: Printer, survey: Survey, domain: Box & { bloc
           thousands(survey.triangles),
           fixed(survey.wettedArea, 4),
           fixed(survey.frontalArea.value, 4),
+          "",
         ],
       ],
       bold,
@@ -68,15 +69,24 @@ export function printSurvey(print: Printer, survey: Survey, domain: Box & { bloc
     print.line(
       table(
         [
+          { title: "wheel" },
           { title: "part" },
           { title: "centre m" },
-          ...["radius m", "width m", "fit error mm"].map((title) => ({ title, align: "right" as const })),
+          ...["radius m", "axle height m", "width m", "contact mm", "fit error mm"].map((title) => ({
+            title,
+            align: "right" as const,
+          })),
         ],
         survey.wheels.map((wheel) => [
+          wheel.position,
           wheel.part,
           wheel.centre.map((x) => fixed(x, 3)).join(", "),
           fixed(wheel.radius, 4),
+          fixed(wheel.axleHeight, 4),
           fixed(wheel.width, 3),
+          wheel.contact === null
+            ? `none, gap ${fixed(1000 * wheel.gap, 1)}`
+            : `${fixed(1000 * wheel.contact.length, 0)} × ${fixed(1000 * wheel.contact.width, 0)}`,
           fixed(1000 * wheel.fitError, 2),
         ]),
         bold,
@@ -97,6 +107,34 @@ export function printSurvey(print: Printer, survey: Survey, domain: Box & { bloc
   }
   print.line();
   print.line(verdictLine(print, survey));
+}
+
+/** Silhouette areas, what the whole vehicle has where the body is a half, and areas at yaw. */
+function areas(survey: Survey): [string, string][] {
+  const text = ({ value, error }: ProjectedArea): string => `${fixed(value, 5)} m² ± ${error.toExponential(1)}`;
+  const lines: [string, string][] = [["frontal area", `${text(survey.frontalArea)} (union silhouette along travel)`]];
+  for (const seen of survey.yawed)
+    lines.push([`  yaw ${fixed((180 / Math.PI) * seen.yaw, 1)} deg`, `${text(seen)} (across the wind, whole vehicle)`]);
+  lines.push(["side, plan area", `${fixed(survey.sideArea.value, 4)} m², ${fixed(survey.planArea.value, 4)} m²`]);
+  if (survey.doubled !== null)
+    lines.push([
+      "doubled",
+      `frontal area ${fixed(survey.doubled.frontalArea, 5)} m², plan area ${fixed(survey.doubled.planArea, 4)} m², wetted area ${fixed(survey.doubled.wettedArea, 4)} m², volume ${fixed(survey.doubled.volume, 4)} m³: the whole vehicle, since the body is a half`,
+    ]);
+  return lines;
+}
+
+/** Wheelbase and how the body stands on its wheels. */
+function stance({ wheelbase, stance: { track, overhangs, clearance } }: Survey): string[] {
+  const lines: string[] = [];
+  const metres = (value: number | null): string => (value === null ? "-" : fixed(value, 3));
+  if (wheelbase !== null) lines.push(`  wheelbase       ${fixed(wheelbase, 4)} m`);
+  if (track.front !== null || track.rear !== null)
+    lines.push(`  track           front ${metres(track.front)} m, rear ${metres(track.rear)} m`);
+  if (overhangs !== null) lines.push(`  overhangs       front ${metres(overhangs.front)} m, rear ${metres(overhangs.rear)} m`);
+  if (clearance !== null && wheelbase !== null)
+    lines.push(`  clearance       ${metres(clearance.height)} m above the ground (${clearance.part})`);
+  return lines;
 }
 
 function symmetryText({ symmetry }: Survey): string {
