@@ -1,199 +1,216 @@
 import type { SurfaceMesh } from "../surface-mesh.js";
 import type { Occurrence } from "../topology.js";
+import { eachMeetingPair, type TriangleTree, triangleTree } from "../triangle-tree.js";
 import type { Vector3 } from "../vector.js";
+import { addPlace, type PartPair, pairEntry } from "./part-pairs.js";
 
-/** Pairs of triangles that pass through each other. */
+/** Pairs of triangles that pass through each other. A pair counts in `perPart` for each of its parts, once. */
 export interface Crossings {
   /** Pairs within one shell: the surface cuts itself. */
   within: Occurrence;
-  /** Pairs of different shells: bodies that overlap, as wheels in arches may. */
-  between: Occurrence;
+  /** Pairs of different shells of one part. */
+  betweenShells: Occurrence;
+  /** Pairs of different shells and parts: parts that overlap, as wheels in arches may. */
+  betweenParts: Occurrence;
+  /** The parts that overlap, most pairs first. */
+  partPairs: PartPair[];
 }
 
-/** Above so many triangles the search takes longer than all the rest of a survey. */
-const MOST_TRIANGLES = 1_500_000;
-/** Entries of triangles in cells, per triangle, above which cells are made larger. */
-const MOST_ENTRIES = 24;
-const MOST_PLACES = 10;
-
 /**
- * Counts pairs of triangles of which an edge of one pierces the inside of the other. Pairs that share a vertex, touch, or lie in one
- * plane do not count. Triangles are put into the cells of a grid about as large as they are; a pair is tried in the first cell that
- * both are in. Sides of planes are computed in doubles from float32 coordinates, and what is nearer than their rounding counts as
- * touching.
- *
- * Null for more than 1.5 million triangles.
+ * Counts pairs of triangles of which an edge of one pierces the inside of the other. Pairs that share an edge, touch, or lie in one
+ * plane do not count. Sides of planes are computed in doubles from the float32 coordinates, and what is nearer than the rounding of
+ * that sum counts as touching: the count is that of the surface as stored, not of one that is moved by a tolerance.
  *
  * @param shellOf 1 per triangle
  * @param parts number of parts
+ * @param tree of the same mesh, where it is there already
  */
-export function findCrossings(mesh: SurfaceMesh, shellOf: Uint32Array, parts: number): Crossings | null {
-  const triangles = mesh.partOf.length;
-  if (triangles > MOST_TRIANGLES) return null;
-  const none = (): Occurrence => ({ count: 0, places: [], perPart: new Uint32Array(parts) });
-  const found: Crossings = { within: none(), between: none() };
-  const boxes = boxesOf(mesh);
-  const grid = gridOf(boxes, triangles);
-  if (grid === null) return found;
-  const { start, members } = grid;
-  const pierce = new Piercing(mesh);
-  for (let cell = 0; cell + 1 < start.length; cell++)
-    for (let p = start[cell]; p < start[cell + 1]; p++) {
-      const s = members[p];
-      for (let q = p + 1; q < start[cell + 1]; q++) {
-        const t = members[q];
-        if (!boxesMeet(boxes, s, t) || firstCommonCell(grid, boxes, s, t) !== cell || shareVertex(mesh.corners, s, t)) continue;
-        const place = pierce.place(s, t);
-        if (place === null) continue;
-        const into = shellOf[s] === shellOf[t] ? found.within : found.between;
-        into.count++;
-        into.perPart[mesh.partOf[s]]++;
-        if (into.places.length < MOST_PLACES) into.places.push(place);
-      }
-    }
-  return found;
+export function findCrossings(
+  mesh: SurfaceMesh,
+  shellOf: Uint32Array,
+  parts: number,
+  tree: TriangleTree = triangleTree(mesh),
+): Crossings {
+  const search = new CrossingSearch(mesh, shellOf, parts, tree.extent);
+  eachMeetingPair(tree, 0, (s, t) => search.visit(s, t));
+  return search.result();
 }
 
-/** 6 per triangle: least x y z, greatest x y z. */
-function boxesOf({ vertices, corners }: SurfaceMesh): Float32Array {
-  const boxes = new Float32Array(2 * corners.length);
-  for (let h = 0, to = 0; h < corners.length; h += 3, to += 6)
-    for (let axis = 0; axis < 3; axis++) {
-      const a = vertices[3 * corners[h] + axis];
-      const b = vertices[3 * corners[h + 1] + axis];
-      const c = vertices[3 * corners[h + 2] + axis];
-      boxes[to + axis] = Math.min(a, b, c);
-      boxes[to + 3 + axis] = Math.max(a, b, c);
-    }
-  return boxes;
-}
+/** The same search for a caller that goes through the pairs with a purpose of its own. */
+export class CrossingSearch {
+  private readonly within: Occurrence;
+  private readonly betweenShells: Occurrence;
+  private readonly betweenParts: Occurrence;
+  private readonly pairs = new Map<number, PartPair>();
+  private readonly piercing: Piercing;
 
-function boxesMeet(boxes: Float32Array, s: number, t: number): boolean {
-  const a = 6 * s;
-  const b = 6 * t;
-  return (
-    boxes[a] <= boxes[b + 3] &&
-    boxes[b] <= boxes[a + 3] &&
-    boxes[a + 1] <= boxes[b + 4] &&
-    boxes[b + 1] <= boxes[a + 4] &&
-    boxes[a + 2] <= boxes[b + 5] &&
-    boxes[b + 2] <= boxes[a + 5]
-  );
-}
-
-function shareVertex(corners: Uint32Array, s: number, t: number): boolean {
-  for (let i = 3 * s; i < 3 * s + 3; i++) {
-    const vertex = corners[i];
-    if (vertex === corners[3 * t] || vertex === corners[3 * t + 1] || vertex === corners[3 * t + 2]) return true;
+  constructor(
+    private readonly mesh: SurfaceMesh,
+    private readonly shellOf: Uint32Array,
+    parts: number,
+    private readonly extent: number,
+  ) {
+    const none = (): Occurrence => ({ count: 0, places: [], perPart: new Uint32Array(parts) });
+    this.within = none();
+    this.betweenShells = none();
+    this.betweenParts = none();
+    this.piercing = new Piercing(mesh);
   }
-  return false;
-}
 
-interface Grid {
-  cell: number;
-  low: Vector3;
-  columns: number;
-  rows: number;
-  /** Triangles of cell k, ascending: `members[start[k], start[k + 1])`. */
-  start: Uint32Array;
-  members: Uint32Array;
-}
-
-/** Cells so large that a triangle lies in few, and so many that a cell holds few. Null without extent. */
-function gridOf(boxes: Float32Array, triangles: number): Grid | null {
-  const low: Vector3 = [Infinity, Infinity, Infinity];
-  const high: Vector3 = [-Infinity, -Infinity, -Infinity];
-  let extents = 0;
-  for (let at = 0; at < boxes.length; at += 6) {
-    for (let axis = 0; axis < 3; axis++) {
-      low[axis] = Math.min(low[axis], boxes[at + axis]);
-      high[axis] = Math.max(high[axis], boxes[at + 3 + axis]);
-    }
-    extents += Math.max(boxes[at + 3] - boxes[at], boxes[at + 4] - boxes[at + 1], boxes[at + 5] - boxes[at + 2]) / triangles;
+  visit(s: number, t: number): void {
+    if (this.piercing.mayCross(s, t)) this.note(s, t);
   }
-  const extent = Math.max(...high.map((value, axis) => value - low[axis]));
-  if (!(extent > 0)) return null;
-  for (let cell = Math.max(1.5 * extents, extent / 400); ; cell *= 1.5) {
-    const [columns, rows, layers] = high.map((value, axis) => Math.floor((value - low[axis]) / cell) + 1);
-    if (columns * rows * layers > 16e6) continue;
-    const grid = { cell, low, columns, rows };
-    const start = new Uint32Array(columns * rows * layers + 1);
-    let entries = 0;
-    for (let t = 0; t < triangles && entries <= MOST_ENTRIES * triangles + 1e6; t++)
-      eachCell(grid, boxes, t, (at) => {
-        start[at + 1]++;
-        entries++;
-      });
-    if (entries > MOST_ENTRIES * triangles + 1e6) continue;
-    for (let k = 1; k < start.length; k++) start[k] += start[k - 1];
-    const members = new Uint32Array(entries);
-    const next = start.slice();
-    for (let t = 0; t < triangles; t++)
-      eachCell(grid, boxes, t, (at) => {
-        members[next[at]++] = t;
-      });
-    return { ...grid, start, members };
+
+  private note(s: number, t: number): void {
+    const place = this.piercing.place(s, t);
+    if (place === null) return;
+    const { mesh, shellOf, extent } = this;
+    const a = mesh.partOf[s];
+    const b = mesh.partOf[t];
+    const into = shellOf[s] === shellOf[t] ? this.within : a === b ? this.betweenShells : this.betweenParts;
+    into.count++;
+    into.perPart[a]++;
+    if (a !== b) into.perPart[b]++;
+    addPlace(into.places, place, extent);
+    if (into !== this.betweenParts) return;
+    const pair = pairEntry(this.pairs, a, b, (fresh) => fresh);
+    pair.count++;
+    addPlace(pair.places, place, extent, 3);
+  }
+
+  result(): Crossings {
+    const partPairs = [...this.pairs.values()].sort((p, q) => q.count - p.count || p.a - q.a || p.b - q.b);
+    return { within: this.within, betweenShells: this.betweenShells, betweenParts: this.betweenParts, partPairs };
   }
 }
 
-type Frame = Pick<Grid, "cell" | "low" | "columns" | "rows">;
-
-function eachCell({ cell, low, columns, rows }: Frame, boxes: Float32Array, t: number, visit: (cell: number) => void): void {
-  const at = 6 * t;
-  const i0 = Math.floor((boxes[at] - low[0]) / cell);
-  const j0 = Math.floor((boxes[at + 1] - low[1]) / cell);
-  const k0 = Math.floor((boxes[at + 2] - low[2]) / cell);
-  const i1 = Math.floor((boxes[at + 3] - low[0]) / cell);
-  const j1 = Math.floor((boxes[at + 4] - low[1]) / cell);
-  const k1 = Math.floor((boxes[at + 5] - low[2]) / cell);
-  for (let k = k0; k <= k1; k++) for (let j = j0; j <= j1; j++) for (let i = i0; i <= i1; i++) visit((k * rows + j) * columns + i);
-}
-
-/** The lowest cell that both boxes reach into. */
-function firstCommonCell({ cell, low, columns, rows }: Frame, boxes: Float32Array, s: number, t: number): number {
-  const i = Math.floor((Math.max(boxes[6 * s], boxes[6 * t]) - low[0]) / cell);
-  const j = Math.floor((Math.max(boxes[6 * s + 1], boxes[6 * t + 1]) - low[1]) / cell);
-  const k = Math.floor((Math.max(boxes[6 * s + 2], boxes[6 * t + 2]) - low[2]) / cell);
-  return (k * rows + j) * columns + i;
-}
+/** Share of a sum of products below which its sign is rounding (Shewchuk, 1997, the static filter of orient3d, with room to spare). */
+const ROUNDING = 1e-15;
 
 /** Tries pairs of triangles: where an edge of one pierces the other. */
 class Piercing {
-  private readonly sides = new Float64Array(3);
+  private readonly vertices: Float32Array;
+  private readonly corners: Uint32Array;
+  /** Plane of a triangle: normal, sums of the magnitudes it is made of, a corner. */
+  private readonly first = new Float64Array(9);
+  private readonly second = new Float64Array(9);
+  private planeOf = -1;
+  private readonly sidesOfT = new Float64Array(3);
+  private readonly sidesOfS = new Float64Array(3);
 
-  constructor(private readonly mesh: SurfaceMesh) {}
+  constructor({ vertices, corners }: SurfaceMesh) {
+    this.vertices = vertices;
+    this.corners = corners;
+  }
 
-  /** Where triangle s or t is pierced by an edge of the other; null where none is. */
+  /** Whether the triangles have no common edge and each has corners on both sides of the other's plane. */
+  mayCross(s: number, t: number): boolean {
+    if (this.shareEdge(3 * s, 3 * t)) return false;
+    // Pairs come in rows with the same first triangle.
+    if (this.planeOf !== s) {
+      this.plane(s, this.first);
+      this.planeOf = s;
+    }
+    if (!this.straddles(this.first, t, this.sidesOfT)) return false;
+    this.plane(t, this.second);
+    return this.straddles(this.second, s, this.sidesOfS);
+  }
+
+  private shareEdge(s: number, t: number): boolean {
+    const { corners } = this;
+    const a = corners[t];
+    const b = corners[t + 1];
+    const c = corners[t + 2];
+    let common = 0;
+    for (let h = s; h < s + 3; h++) {
+      const vertex = corners[h];
+      if (vertex === a || vertex === b || vertex === c) common++;
+    }
+    return common > 1;
+  }
+
+  private plane(t: number, into: Float64Array): void {
+    const { vertices, corners } = this;
+    const a = 3 * corners[3 * t];
+    const b = 3 * corners[3 * t + 1];
+    const c = 3 * corners[3 * t + 2];
+    const ax = vertices[a];
+    const ay = vertices[a + 1];
+    const az = vertices[a + 2];
+    const ux = vertices[b] - ax;
+    const uy = vertices[b + 1] - ay;
+    const uz = vertices[b + 2] - az;
+    const vx = vertices[c] - ax;
+    const vy = vertices[c + 1] - ay;
+    const vz = vertices[c + 2] - az;
+    const yz = uy * vz;
+    const zy = uz * vy;
+    const zx = uz * vx;
+    const xz = ux * vz;
+    const xy = ux * vy;
+    const yx = uy * vx;
+    into[0] = yz - zy;
+    into[1] = zx - xz;
+    into[2] = xy - yx;
+    into[3] = ROUNDING * (Math.abs(yz) + Math.abs(zy));
+    into[4] = ROUNDING * (Math.abs(zx) + Math.abs(xz));
+    into[5] = ROUNDING * (Math.abs(xy) + Math.abs(yx));
+    into[6] = ax;
+    into[7] = ay;
+    into[8] = az;
+  }
+
+  /** Sides of the corners of t: six times the signed volume, 0 where it is not above rounding. Whether there are both. */
+  private straddles(plane: Float64Array, t: number, sides: Float64Array): boolean {
+    const { vertices, corners } = this;
+    let above = false;
+    let below = false;
+    for (let k = 0; k < 3; k++) {
+      const p = 3 * corners[3 * t + k];
+      const x = vertices[p] - plane[6];
+      const y = vertices[p + 1] - plane[7];
+      const z = vertices[p + 2] - plane[8];
+      const sum = plane[0] * x + plane[1] * y + plane[2] * z;
+      const bound = plane[3] * Math.abs(x) + plane[4] * Math.abs(y) + plane[5] * Math.abs(z);
+      if (sum > bound) above = true;
+      else if (sum < -bound) below = true;
+      sides[k] = Math.abs(sum) > bound ? sum : 0;
+    }
+    return above && below;
+  }
+
+  /** Where triangle s or t is pierced by an edge of the other; null where none is. After `mayCross` of the same pair. */
   place(s: number, t: number): Vector3 | null {
-    return this.pierced(s, t) ?? this.pierced(t, s);
+    return this.pierced(s, t, this.sidesOfT) ?? this.pierced(t, s, this.sidesOfS);
   }
 
   /** Where an edge of t pierces s. */
-  private pierced(s: number, t: number): Vector3 | null {
-    const { corners } = this.mesh;
-    const [a, b, c] = [3 * corners[3 * s], 3 * corners[3 * s + 1], 3 * corners[3 * s + 2]];
-    for (let k = 0; k < 3; k++) this.sides[k] = this.volume(a, b, c, 3 * corners[3 * t + k]);
-    const [d0, d1, d2] = this.sides;
-    if ((d0 >= 0 && d1 >= 0 && d2 >= 0) || (d0 <= 0 && d1 <= 0 && d2 <= 0)) return null;
+  private pierced(s: number, t: number, sides: Float64Array): Vector3 | null {
+    const { corners, vertices } = this;
+    const a = 3 * corners[3 * s];
+    const b = 3 * corners[3 * s + 1];
+    const c = 3 * corners[3 * s + 2];
     for (let k = 0; k < 3; k++) {
       const next = k === 2 ? 0 : k + 1;
-      if (this.sides[k] * this.sides[next] >= 0) continue;
+      if (sides[k] * sides[next] >= 0) continue;
       const p = 3 * corners[3 * t + k];
       const q = 3 * corners[3 * t + next];
       const e = this.volume(p, q, a, b);
+      if (e === 0) continue;
       const f = this.volume(p, q, b, c);
+      if (e > 0 !== f > 0 || f === 0) continue;
       const g = this.volume(p, q, c, a);
-      if (!((e > 0 && f > 0 && g > 0) || (e < 0 && f < 0 && g < 0))) continue;
-      const share = this.sides[k] / (this.sides[k] - this.sides[next]);
-      const { vertices } = this.mesh;
-      return [0, 1, 2].map((axis) => vertices[p + axis] + share * (vertices[q + axis] - vertices[p + axis])) as Vector3;
+      if (e > 0 !== g > 0 || g === 0) continue;
+      const share = sides[k] / (sides[k] - sides[next]);
+      const at = (axis: number): number => vertices[p + axis] + share * (vertices[q + axis] - vertices[p + axis]);
+      return [at(0), at(1), at(2)];
     }
     return null;
   }
 
   /** Six times the signed volume of a tetrahedron of vertices; 0 where it is not above the rounding of the sum. */
   private volume(a: number, b: number, c: number, d: number): number {
-    const { vertices } = this.mesh;
+    const { vertices } = this;
     const ax = vertices[a] - vertices[d];
     const ay = vertices[a + 1] - vertices[d + 1];
     const az = vertices[a + 2] - vertices[d + 2];
@@ -203,13 +220,9 @@ class Piercing {
     const cx = vertices[c] - vertices[d];
     const cy = vertices[c + 1] - vertices[d + 1];
     const cz = vertices[c + 2] - vertices[d + 2];
-    const x = by * cz - bz * cy;
-    const y = bz * cx - bx * cz;
-    const z = bx * cy - by * cx;
-    const sum = ax * x + ay * y + az * z;
-    // Rounding of the products (Shewchuk, 1997, the static filter of orient3d, with room to spare).
+    const sum = ax * (by * cz - bz * cy) + ay * (bz * cx - bx * cz) + az * (bx * cy - by * cx);
     const bound =
-      1e-15 *
+      ROUNDING *
       (Math.abs(ax) * (Math.abs(by * cz) + Math.abs(bz * cy)) +
         Math.abs(ay) * (Math.abs(bz * cx) + Math.abs(bx * cz)) +
         Math.abs(az) * (Math.abs(bx * cy) + Math.abs(by * cx)));

@@ -1,9 +1,9 @@
 import { type Finding, finding } from "../../finding.js";
 import type { MeshTopology, Occurrence } from "../topology.js";
 import type { Part } from "../triangle-set.js";
-import type { Vector3 } from "../vector.js";
 import type { Mirror } from "../vehicle/mirror.js";
 import type { Crossings } from "./crossings.js";
+import { lengthWords, partsOf, scaledPlaces } from "./finding-words.js";
 
 /** What the topology (and the crossings, where they were looked for) mean for a mesh, with figures. `scale`: metres per mesh unit. */
 export function topologyFindings(
@@ -16,17 +16,17 @@ export function topologyFindings(
   const findings: Finding[] = [];
   const add = (code: string, severity: Finding["severity"], found: Occurrence, message: string, remedy: string): void => {
     if (found.count === 0) return;
-    const where = partsOf(found, parts);
+    const where = partsOf(found.perPart, parts);
     findings.push(
       finding(code, severity, `${message} ${where.text}.`, remedy, {
         count: found.count,
         part: where.only,
-        places: found.places.map((at) => at.map((value) => value * scale) as Vector3),
+        places: scaledPlaces(found.places, scale),
       }),
     );
   };
   const borders = `${topology.borderCount} ${topology.borderCount === 1 ? "border" : "borders"}`;
-  const widest = topology.borders.length > 0 ? metres(topology.borders[0].span * scale) : "";
+  const widest = topology.borders.length > 0 ? lengthWords(topology.borders[0].span * scale) : "";
   add(
     "open-edges",
     mirror.kind === "half" ? "note" : "warning",
@@ -64,7 +64,7 @@ export function topologyFindings(
     `${topology.duplicate.count} triangles lie on another one with the same corners: areas count twice:`,
     "Remove the doubled surface; often a part was exported twice.",
   );
-  if (crossings !== null)
+  if (crossings !== null) {
     add(
       "self-intersections",
       "warning",
@@ -72,6 +72,7 @@ export function topologyFindings(
       `${crossings.within.count} pairs of triangles of one shell pass through each other. The surface folds through itself there, and the mesh takes what it meets first:`,
       "Repair the fold, or separate what should be two overlapping shells.",
     );
+  }
   add(
     "degenerate-triangles",
     "note",
@@ -81,21 +82,3 @@ export function topologyFindings(
   );
   return findings;
 }
-
-/** In words where something was found, the parts with most first; `only`: the part's name when there is but one. */
-function partsOf(found: Occurrence, parts: Part[]): { text: string; only: string | null } {
-  const ranked = parts
-    .map(({ name }, k) => ({ name, count: found.perPart[k] }))
-    .filter(({ count }) => count > 0)
-    .sort((a, b) => b.count - a.count);
-  const text = ranked
-    .slice(0, 5)
-    .map(({ name, count }) => `${name} ${count}`)
-    .join(", ");
-  return {
-    text: ranked.length > 5 ? `${text} and ${ranked.length - 5} more parts` : text,
-    only: ranked.length === 1 ? ranked[0].name : null,
-  };
-}
-
-const metres = (value: number): string => `${Number(value.toPrecision(3))} m`;
