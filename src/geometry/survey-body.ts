@@ -28,7 +28,7 @@ import { fitWheels, type VehicleAxes, type WheelFit } from "./vehicle/wheels.js"
 export interface SurveyWishes {
   /** names of the parts that are wheels, instead of those whose names say so */
   wheelParts?: string[];
-  /** degrees: the frontal area is wanted at these angles of yaw too */
+  /** radians: the frontal area is wanted at these angles of yaw too */
   yaws?: number[];
   /** metres: cell of the mesh at the surface that the body has to be fit for; a two-hundredth of the length where it is not given */
   cell?: number;

@@ -116,7 +116,7 @@ export interface Survey {
   /** Areas of the union silhouette seen from the side and from above; of a half body, of the half. */
   sideArea: ProjectedArea;
   planArea: ProjectedArea;
-  /** Frontal areas across the wind at the angles of yaw that were asked for, of the whole vehicle. Degrees, positive with wind from the left. */
+  /** Frontal areas across the wind at the angles of yaw that were asked for, of the whole vehicle. Radians, positive with wind from the left. */
   yawed: ({ yaw: number } & ProjectedArea)[];
   /** What the whole vehicle has, for a half body (twice the half, a lid on the cut left out); null for any other. */
   doubled: { frontalArea: number; planArea: number; wettedArea: number; volume: number } | null;

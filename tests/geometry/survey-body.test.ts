@@ -238,18 +238,19 @@ describe("topology findings", () => {
 });
 
 // A box of a, b, c seen along n: bc |nx| + ca |ny| + ab |nz| (published for 4 x 1.8 x 1.4 at 10 degrees of yaw: 3.45414533).
+const radians = (degrees: number): number => (degrees * Math.PI) / 180;
 describe("areas seen from the front, the side, above, and at yaw", () => {
   const sizes = [4, 1.8, 1.4];
   const whole = box([0, -0.9, 0], [4, 0.9, 1.4]);
   const atYaw = (yaw: number): number =>
-    sizes[1] * sizes[2] * Math.cos((yaw * Math.PI) / 180) + sizes[0] * sizes[2] * Math.sin((yaw * Math.PI) / 180);
+    sizes[1] * sizes[2] * Math.cos(radians(yaw)) + sizes[0] * sizes[2] * Math.sin(radians(yaw));
 
   it("of a box", () => {
-    const survey = surveyBody(bodyOf({ body: whole }), { ...given, yaws: [0, 5, 10, -10] });
+    const survey = surveyBody(bodyOf({ body: whole }), { ...given, yaws: [0, 5, 10, -10].map(radians) });
     expect(survey.frontalArea.value).toBeCloseTo(1.8 * 1.4, 6);
     expect(survey.sideArea.value).toBeCloseTo(4 * 1.4, 6);
     expect(survey.planArea.value).toBeCloseTo(4 * 1.8, 6);
-    expect(survey.yawed.map(({ yaw }) => yaw)).toEqual([0, 5, 10, -10]);
+    expect(survey.yawed.map(({ yaw }) => yaw)).toEqual([0, 5, 10, -10].map(radians));
     expect(survey.yawed[1].value).toBeCloseTo(atYaw(5), 6);
     expect(survey.yawed[2].value).toBeCloseTo(3.45414533, 6);
     expect(survey.yawed[3].value).toBeCloseTo(survey.yawed[2].value, 6);
@@ -259,7 +260,7 @@ describe("areas seen from the front, the side, above, and at yaw", () => {
     const open = box([0, 0, 0], [4, 0.9, 1.4]).filter(
       (_, at, all) => ![1, 4, 7].every((k) => all[9 * Math.floor(at / 9) + k] === 0),
     );
-    const survey = surveyBody(bodyOf({ body: open }), { ...given, yaws: [10] });
+    const survey = surveyBody(bodyOf({ body: open }), { ...given, yaws: [radians(10)] });
     expect(survey.symmetry.kind).toBe("half");
     expect(survey.yawed[0].value).toBeCloseTo(3.45414533, 6);
     expect(survey.doubled?.frontalArea).toBeCloseTo(1.8 * 1.4, 6);
@@ -269,7 +270,7 @@ describe("areas seen from the front, the side, above, and at yaw", () => {
     // A plate that runs rearward and to the right along (1, 1): seen edge-on at 45 degrees.
     const plate = surveyBody(bodyOf({ plate: [0, 0, 0, 2, 2, 0, 2, 2, 1, 0, 0, 0, 2, 2, 1, 0, 0, 1] }), {
       ...given,
-      yaws: [45, -45],
+      yaws: [45, -45].map(radians),
     });
     expect(plate.yawed[0].value).toBeCloseTo(0, 6);
     expect(plate.yawed[1].value).toBeCloseTo(2 * Math.SQRT2, 5);

@@ -4,7 +4,7 @@ import type { Vector3 } from "../vector.js";
 import { silhouette } from "./silhouette.js";
 
 /**
- * The area of the union silhouette across the wind at an angle of yaw (degrees): the wind blows along cos(yaw) · rearward +
+ * The area of the union silhouette across the wind at an angle of yaw (radians): the wind blows along cos(yaw) · rearward +
  * sin(yaw) · right, so at a positive angle it comes from the left. A half body is completed by its mirror image first, since at yaw
  * the two halves cover each other. Mesh unit squared.
  *
@@ -19,8 +19,7 @@ export function yawedAreas(
   if (yaws.length === 0) return [];
   const whole = half === null ? mesh : completed(mesh, half.axis, half.plane);
   return yaws.map((yaw) => {
-    const angle = (yaw * Math.PI) / 180;
-    const along = rearward.map((value, k) => value * Math.cos(angle) + right[k] * Math.sin(angle)) as Vector3;
+    const along = rearward.map((value, k) => value * Math.cos(yaw) + right[k] * Math.sin(yaw)) as Vector3;
     const { area, error } = silhouette(whole, along);
     return { yaw, area, error };
   });
