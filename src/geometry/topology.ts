@@ -1,3 +1,4 @@
+import { type OpenBorder, openBorders } from "./checks/open-loops.js";
 import { NO_EDGE, nextInTriangle } from "./edges.js";
 import { measures } from "./measures.js";
 import { type Shells, shellsOf } from "./shells.js";
@@ -10,14 +11,6 @@ export interface Occurrence {
   places: Vector3[];
   /** 1 per part */
   perPart: Uint32Array;
-}
-
-/** A connected set of open edges: the border of a hole or of a sheet. Mesh unit and axes. */
-export interface OpenBorder {
-  edges: number;
-  centre: Vector3;
-  /** Diagonal of its bounding box. */
-  span: number;
 }
 
 export interface MeshTopology {
@@ -36,9 +29,40 @@ export interface MeshTopology {
   insideOut: Occurrence;
   /** Shells without open, non-manifold or flipped edges. */
   closedShells: number;
-  /** Largest first, at most ten. */
+  /** Longest first, at most a hundred. */
   borders: OpenBorder[];
   borderCount: number;
+  /** 1 per part: borders that run along it. */
+  bordersPerPart: Uint32Array;
+  /** 1 per part: edges of a single triangle when the part is looked at without the others; more than its open edges where it is joined to others. */
+  openAlone: Uint32Array;
+}
+
+/** Topology of one part. An edge between two parts counts as joined: the body decides. */
+export interface PartTopology {
+  openEdges: number;
+  /** Edges that would be open if the part were alone. */
+  openAlone: number;
+  borders: number;
+  nonManifoldEdges: number;
+  flippedEdges: number;
+  degenerate: number;
+  duplicate: number;
+  insideOut: number;
+}
+
+/** The same counts part by part, one entry per part. An edge of several parts that is not open is counted with its first triangle's. */
+export function topologyByPart(topology: MeshTopology): PartTopology[] {
+  return Array.from(topology.openAlone, (openAlone, part) => ({
+    openEdges: topology.open.perPart[part],
+    openAlone,
+    borders: topology.bordersPerPart[part],
+    nonManifoldEdges: topology.nonManifold.perPart[part],
+    flippedEdges: topology.flipped.perPart[part],
+    degenerate: topology.degenerate.perPart[part],
+    duplicate: topology.duplicate.perPart[part],
+    insideOut: topology.insideOut.perPart[part],
+  }));
 }
 
 const MOST_PLACES = 10;
@@ -54,7 +78,7 @@ export function topologyOf(mesh: SurfaceMesh, parts: number): MeshTopology {
   const duplicate = none();
   const shells = shellsOf(mesh);
   const unsound = new Uint8Array(shells.count);
-  const openEdges: number[] = [];
+  const openAlone = new Uint32Array(parts);
   const note = (into: Occurrence, triangle: number, place: () => Vector3): void => {
     into.count++;
     into.perPart[mesh.partOf[triangle]]++;
@@ -70,15 +94,21 @@ export function topologyOf(mesh: SurfaceMesh, parts: number): MeshTopology {
     for (let end = h + 3; h < end; h++) {
       const other = ring[h];
       if (other > h && ring[other] === h) {
+        const beyond = mesh.partOf[(other / 3) | 0];
+        if (beyond !== mesh.partOf[t]) {
+          openAlone[mesh.partOf[t]]++;
+          openAlone[beyond]++;
+        }
         if (corners[other] !== corners[h]) continue;
         const edge = h;
         note(flipped, t, () => edgeMiddle(mesh, edge));
       } else if (other === h) {
         const edge = h;
         note(open, t, () => edgeMiddle(mesh, edge));
-        openEdges.push(h);
+        openAlone[mesh.partOf[t]]++;
       } else {
         if (other < h && ring[other] === h) continue;
+        if (isOnlyOfPart(mesh, h)) openAlone[mesh.partOf[t]]++;
         if (!isLowest(ring, h)) continue;
         const edge = h;
         note(nonManifold, t, () => edgeMiddle(mesh, edge));
@@ -89,7 +119,7 @@ export function topologyOf(mesh: SurfaceMesh, parts: number): MeshTopology {
   const closedShells = unsound.reduce((sum, value) => sum + (value === 0 ? 1 : 0), 0);
   const insideOut = none();
   if (closedShells > 0) noteInsideOut(mesh, shells, unsound, insideOut);
-  const borders = bordersOf(mesh, openEdges);
+  const borders = openBorders(mesh, openEdges(ring, open.count), parts);
   return {
     open,
     nonManifold,
@@ -99,9 +129,26 @@ export function topologyOf(mesh: SurfaceMesh, parts: number): MeshTopology {
     shells,
     insideOut,
     closedShells,
-    borders: borders.slice(0, MOST_PLACES),
-    borderCount: borders.length,
+    borders: borders.longest,
+    borderCount: borders.count,
+    bordersPerPart: borders.perPart,
+    openAlone,
   };
+}
+
+/** Half-edges that are alone, ascending. */
+function openEdges(ring: Uint32Array, count: number): Uint32Array {
+  const found = new Uint32Array(count);
+  if (count === 0) return found;
+  for (let h = 0, k = 0; h < ring.length; h++) if (ring[h] === h) found[k++] = h;
+  return found;
+}
+
+/** Whether no other half-edge of the ring belongs to a triangle of the same part. */
+function isOnlyOfPart({ ring, partOf }: SurfaceMesh, h: number): boolean {
+  const part = partOf[(h / 3) | 0];
+  for (let other = ring[h]; other !== h; other = ring[other]) if (partOf[(other / 3) | 0] === part) return false;
+  return true;
 }
 
 /** Whether no half-edge of the ring is below `h`. */
@@ -154,49 +201,6 @@ function noteInsideOut(mesh: SurfaceMesh, shells: Shells, unsound: Uint8Array, i
     into.perPart[mesh.partOf[t]]++;
     if (into.places.length < MOST_PLACES) into.places.push(groups[shell].areaCentroid);
   }
-}
-
-/** Open edges that hang together by vertices, the widest first. */
-function bordersOf({ vertices, corners }: SurfaceMesh, openEdges: number[]): OpenBorder[] {
-  const parent = new Map<number, number>();
-  const root = (vertex: number): number => {
-    let at = vertex;
-    for (let above = parent.get(at) as number; above !== at; above = parent.get(at) as number) {
-      parent.set(at, parent.get(above) as number);
-      at = above;
-    }
-    return at;
-  };
-  for (const h of openEdges) {
-    const a = corners[h];
-    const b = corners[nextInTriangle(h)];
-    if (!parent.has(a)) parent.set(a, a);
-    if (!parent.has(b)) parent.set(b, b);
-    parent.set(root(a), root(b));
-  }
-  const found = new Map<number, { edges: number; low: Vector3; high: Vector3 }>();
-  for (const h of openEdges) {
-    const key = root(corners[h]);
-    let border = found.get(key);
-    if (border === undefined) {
-      border = { edges: 0, low: [Infinity, Infinity, Infinity], high: [-Infinity, -Infinity, -Infinity] };
-      found.set(key, border);
-    }
-    border.edges++;
-    for (const vertex of [corners[h], corners[nextInTriangle(h)]])
-      for (let axis = 0; axis < 3; axis++) {
-        const value = vertices[3 * vertex + axis];
-        border.low[axis] = Math.min(border.low[axis], value);
-        border.high[axis] = Math.max(border.high[axis], value);
-      }
-  }
-  return [...found.values()]
-    .map(({ edges, low, high }) => ({
-      edges,
-      centre: low.map((value, axis) => (value + high[axis]) / 2) as Vector3,
-      span: Math.hypot(high[0] - low[0], high[1] - low[1], high[2] - low[2]),
-    }))
-    .sort((a, b) => b.span - a.span || b.edges - a.edges);
 }
 
 const vertexAt = ({ vertices }: SurfaceMesh, v: number): Vector3 => [vertices[3 * v], vertices[3 * v + 1], vertices[3 * v + 2]];

@@ -1,7 +1,7 @@
 import { describe, expect, it } from "vitest";
 import { edgeRings, NO_EDGE } from "../../src/geometry/edges.js";
 import { surfaceMesh } from "../../src/geometry/surface-mesh.js";
-import { topologyOf } from "../../src/geometry/topology.js";
+import { topologyByPart, topologyOf } from "../../src/geometry/topology.js";
 import { weld } from "../../src/geometry/weld.js";
 import { bodyOf, box, joined, random, shifted, shuffled, sphere, type Triangles, torus, turnedOver } from "./shapes.js";
 
@@ -94,9 +94,49 @@ describe("topologyOf", () => {
     expect(found.open.count).toBe(4 + 3);
     expect([...found.open.perPart]).toEqual([4, 3]);
     expect(found.borderCount).toBe(2);
-    expect(found.borders[0]).toEqual({ edges: 3, centre: [6.5, 2, 0], span: 5 });
+    expect(found.borders[0]).toEqual({ edges: 3, length: 12, centre: [6.5, 2, 0], span: 5, closed: true, parts: [1] });
+    expect(found.borders[1]).toMatchObject({ edges: 4, length: 4, closed: true, parts: [0] });
     expect(found.borders[1].span).toBeCloseTo(Math.SQRT2, 12);
+    expect([...found.bordersPerPart]).toEqual([1, 1]);
     expect(found.closedShells).toBe(0);
+  });
+
+  it("keeps the hundred longest borders and counts all", () => {
+    const found = topology({
+      strip: Array.from({ length: 130 }, (_, k) => [3 * k, 0, 0, 3 * k + 1 + k / 200, 0, 0, 3 * k, 1, 0]).flat(),
+    });
+    expect(found.borderCount).toBe(130);
+    expect(found.borders).toHaveLength(100);
+    const lengths = found.borders.map(({ length }) => length);
+    expect(lengths).toEqual([...lengths].sort((a, b) => b - a));
+    expect(found.borders[0].centre[0]).toBeCloseTo(3 * 129 + (1 + 129 / 200) / 2, 4);
+  });
+
+  it("joins borders that touch in a vertex, and tells one that ends at an edge of three triangles", () => {
+    const bow: Triangles = [0, 0, 0, 1, 0, 0, 0, 1, 0, 0, 0, 0, -1, 0, 0, 0, -1, 0];
+    expect(topology({ bow }).borders).toMatchObject([{ edges: 6, closed: true }]);
+    const wall = (x: number, y: number): Triangles => [0, 0, 0, x, y, 0, 0, 0, 1];
+    expect(topology({ fan: joined(wall(1, 0), wall(0, 1), wall(-1, -1)) }).borders).toMatchObject([{ edges: 6, closed: false }]);
+  });
+
+  it("counts part by part, with what would be open if a part were alone", () => {
+    // Two triangles of the cube's top in a part of their own, and a fin of a third part on the edge of a second cube.
+    const fin: Triangles = [5, 0, 0, 5, 0, 1, 4, -1, 0];
+    const found = topologyByPart(
+      topology({ sides: joined(cube.slice(0, 90), shifted(cube, [5, 0, 0])), lid: cube.slice(90), fin }),
+    );
+    expect(
+      found.map(({ openEdges, openAlone, borders, nonManifoldEdges }) => [openEdges, openAlone, borders, nonManifoldEdges]),
+    ).toEqual([
+      [0, 4, 0, 1],
+      [0, 4, 0, 0],
+      [2, 3, 1, 0],
+    ]);
+    const alone = topologyByPart(topology({ cube: joined(cube, cube.slice(0, 9)), line: [1, 2, 3, 1, 2, 3, 4, 5, 6] }));
+    expect(alone).toEqual([
+      { openEdges: 0, openAlone: 0, borders: 0, nonManifoldEdges: 3, flippedEdges: 0, degenerate: 0, duplicate: 1, insideOut: 0 },
+      { openEdges: 0, openAlone: 0, borders: 0, nonManifoldEdges: 0, flippedEdges: 0, degenerate: 1, duplicate: 0, insideOut: 0 },
+    ]);
   });
 
   it("counts edges of three and four triangles once each", () => {
@@ -144,7 +184,7 @@ describe("topologyOf", () => {
     expect(found.open.count).toBe(60);
     expect(found.open.places).toHaveLength(10);
     expect(found.open.places[0]).toEqual([1, 0, 0]);
-    expect(found.borders).toHaveLength(10);
+    expect(found.borders).toHaveLength(20);
     expect(found.borderCount).toBe(20);
   });
 
