@@ -45,6 +45,10 @@ export function printLedger(print: Printer, runs: LedgerRun[]): void {
     const { total } = run;
     if (total.clFront && total.clRear)
       print.line(`axles: front lift Cl ${estimate(total.clFront, 4)}, rear lift Cl ${estimate(total.clRear, 4)}`);
+    if (total.cdWind && total.csWind)
+      print.line(
+        `wind axes: Cd ${estimate(total.cdWind, 4)} along the air, side force Cs ${estimate(total.csWind, 4)}; the table has the vehicle's axes, Cs ${estimate(total.cs, 4)}`,
+      );
     if (total.cda) print.line(`CdA: ${estimate(total.cda, 4)} m²`);
     print.line(`${run.closing.ok ? print.colours.green("closes") : print.colours.red("does not close")}: ${run.closing.message}`);
     printFindings(print, run.findings);
@@ -64,7 +68,22 @@ function referenceText({ reference }: LedgerRun): string {
   return parts.join(", ");
 }
 
-const csvKeys = ["cd", "cl", "cs", "clFront", "clRear", "cm", "cdPressure", "cdFriction", "cda", "drag", "lift", "side"] as const;
+const csvKeys = [
+  "cd",
+  "cl",
+  "cs",
+  "clFront",
+  "clRear",
+  "cm",
+  "cdPressure",
+  "cdFriction",
+  "cda",
+  "drag",
+  "lift",
+  "side",
+  "cdWind",
+  "csWind",
+] as const;
 
 /** One row per run and part; values and half-widths in columns of their own. */
 export function ledgerCsv(runs: LedgerRun[]): string {

@@ -1,3 +1,4 @@
+import { onsetFlow } from "../flow/onset.js";
 import type { CasePlan } from "./plan.js";
 import { label } from "./template-text.js";
 
@@ -7,6 +8,7 @@ const limitOverPrediction = 4;
 /** What the templates see of a plan, as `it`. Numbers in SI and case axes. */
 export function caseView(plan: CasePlan) {
   const { half, domain, mesh, flow, air, reference, parts, condition } = plan;
+  const onset = onsetFlow(condition);
   const final = mesh.finalLayer.value;
   const expansion = mesh.layerExpansion.value;
   const layers = mesh.layers.value;
@@ -20,7 +22,12 @@ export function caseView(plan: CasePlan) {
     side: !half.value ? 0 : domain.max.value[1] === 0 ? -1 : 1,
     movingGround: condition.ground === "moving",
     speed: flow.speed.value,
-    velocity: [flow.speed.value, 0, 0],
+    velocity: flow.velocity.value,
+    road: flow.road.value,
+    /** which side the air comes from at yaw: the left (1), the right (-1), neither (0) */
+    windward: Math.sign(condition.yaw),
+    along: onset.along,
+    across: onset.across,
     k: flow.k.value,
     omega: flow.omega.value,
     nut: flow.nut.value,

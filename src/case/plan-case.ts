@@ -1,6 +1,6 @@
-import { inputProblem } from "../errors.js";
 import { airProperties } from "../flow/air.js";
 import { inletTurbulence } from "../flow/inlet.js";
+import { onsetFlow } from "../flow/onset.js";
 import type { Vector3 } from "../geometry/vector.js";
 import type { Condition, Study } from "../study/study.js";
 import { caseBounds, partsInside, wholeFrontalArea } from "./body-in-case.js";
@@ -16,7 +16,7 @@ import { turningWheels } from "./wheels.js";
  * Every number of one case. Pure. `frame` is what all cases of the study share, `body` the variant, `cells` what is predicted for it
  * in the grid of the frame.
  *
- * @throws Problem(input) `not-computed` at yaw; as `turningWheels`.
+ * @throws Problem(input) as `turningWheels`.
  */
 export function planCase(given: {
   study: Study;
@@ -26,13 +26,6 @@ export function planCase(given: {
   condition: Condition;
 }): CasePlan {
   const { study, frame, body, condition } = given;
-  if (condition.yaw !== 0)
-    throw inputProblem({
-      code: "not-computed",
-      message: `Condition ${condition.name} has a yaw of ${((180 / Math.PI) * condition.yaw).toPrecision(3)} deg; cases are written for air from straight ahead.`,
-      where: study.path,
-      remedy: "Set yaw to 0.",
-    });
   const { length: overall } = extentsOf(frame);
   const { kinematicViscosity, density } = airProperties(study.air);
   const air = `${(study.air.temperature - 273.15).toFixed(1)} degC, ${(study.air.pressure / 100).toFixed(2)} hPa, ${Number((100 * study.air.humidity).toFixed(1))} % humidity`;
@@ -98,13 +91,33 @@ function extentsOf({ bounds: { min, max } }: StudyFrame): { length: number } {
 
 function flowOf(
   { grid: { domain } }: StudyFrame,
-  { speed, name }: Condition,
+  condition: Condition,
   kinematicViscosity: number,
   overall: number,
 ): CasePlan["flow"] {
+  const { speed, yaw, name } = condition;
+  const { velocity, road } = onsetFlow(condition);
   const inlet = inletTurbulence({ speed, kinematicViscosity, distance: domain.distances.ahead });
   return {
     speed: planned(speed, "m/s", `condition ${name}`, source.study),
+    velocity: planned(
+      velocity,
+      "m/s",
+      yaw === 0
+        ? "from straight ahead"
+        : `at a yaw of ${Number(((180 / Math.PI) * yaw).toPrecision(6))} deg, from the ${yaw > 0 ? "left" : "right"}`,
+      source.axes,
+    ),
+    road: planned(
+      road,
+      "m/s",
+      condition.ground === "fixed"
+        ? "not used: the ground stands still"
+        : yaw === 0
+          ? "the road moves with the air"
+          : "the road moves with the air's part along the vehicle; the rest is cross wind",
+      source.definition,
+    ),
     reynolds: planned(
       (speed * overall) / kinematicViscosity,
       "",

@@ -45,7 +45,17 @@ export interface CasePlan {
   placement: { orientation: Orientation; scale: number; rotation: [Vector3, Vector3, Vector3]; shift: Vector3 };
   half: Planned<boolean>;
   air: { density: Planned<number>; kinematicViscosity: Planned<number> };
-  flow: { speed: Planned<number>; reynolds: Planned<number>; k: Planned<number>; omega: Planned<number>; nut: Planned<number> };
+  flow: {
+    /** m/s: of the air relative to the vehicle, the one that coefficients are made with */
+    speed: Planned<number>;
+    velocity: Planned<Vector3>;
+    /** m/s: of the road relative to the vehicle, rearward, where it moves */
+    road: Planned<number>;
+    reynolds: Planned<number>;
+    k: Planned<number>;
+    omega: Planned<number>;
+    nut: Planned<number>;
+  };
   reference: {
     /** m², whole vehicle */
     area: Planned<number>;

@@ -1,5 +1,6 @@
 import { inputProblem } from "../errors.js";
 import { type Finding, finding } from "../finding.js";
+import { onsetFlow } from "../flow/onset.js";
 import { type Placement, placeDirection, placePoint } from "../geometry/place.js";
 import type { Survey, Wheel } from "../geometry/survey.js";
 import type { Vector3 } from "../geometry/vector.js";
@@ -39,7 +40,7 @@ export function turningWheels(
         where,
         remedy: "Take it out of the rotating rule, or give the tyre as a part of its own.",
       });
-    turning.set(name, turningAbout(wheels, placement, condition.speed, { name, where }));
+    turning.set(name, turningAbout(wheels, placement, onsetFlow(condition).road, { name, where }));
   }
   return turning;
 }

@@ -6,6 +6,7 @@ import type { Entry, Estimate, LedgerRun } from "./ledger.js";
 import { ledgerFindings } from "./ledger-findings.js";
 import type { PartSeries } from "./part-series.js";
 import { forcePerCoefficient } from "./reference.js";
+import { windAxes } from "./wind-axes.js";
 import { type LedgerWindow, windowOf } from "./window.js";
 import { estimateFrom } from "./window-estimate.js";
 
@@ -48,6 +49,7 @@ function entryOf(series: PartSeries, { whole, reference, card }: CaseRecord, win
   const cl = estimate(series.cl, lift, isWhole ? window.lift : undefined);
   const cs = maybe(series.cs, lift);
   const newtons = forcePerCoefficient(reference);
+  const wind = windAxes(series, card?.condition.yaw ?? 0);
   return {
     cd,
     cl,
@@ -55,6 +57,8 @@ function entryOf(series: PartSeries, { whole, reference, card }: CaseRecord, win
     clFront: maybe(axles?.front ?? null, lift),
     clRear: maybe(axles?.rear ?? null, lift),
     cm: maybe(series.cm, lift),
+    cdWind: maybe(wind?.drag ?? null, drag),
+    csWind: maybe(wind?.side ?? null, lift),
     cdPressure: maybe(series.cdPressure, drag),
     cdFriction: maybe(series.cdFriction, drag),
     cda: times(cd, reference.area),

@@ -15,6 +15,9 @@ export interface Entry {
   clFront: Estimate | null;
   clRear: Estimate | null;
   cm: Estimate | null;
+  /** At yaw, drag along the air and side force to its right (wind axes); null at zero yaw and where it is not known. */
+  cdWind: Estimate | null;
+  csWind: Estimate | null;
   cdPressure: Estimate | null;
   cdFriction: Estimate | null;
   /** m² */

@@ -85,7 +85,7 @@ const entries: (Omit<StudyKey, "expects" | "example" | "unit"> & Partial<Pick<St
   {
     key: "speed",
     title: "Speed",
-    description: "Speed of the vehicle in still air, one or a list; every variant is computed at each.",
+    description: "Speed of the oncoming air, that of the vehicle in still air, one or a list; every variant is computed at each.",
     required: true,
     quantity: {
       dimension: "speed",
@@ -97,10 +97,11 @@ const entries: (Omit<StudyKey, "expects" | "example" | "unit"> & Partial<Pick<St
   {
     key: "yaw",
     title: "Yaw",
-    description: "Angle of the oncoming air to the direction of travel; this version computes none but 0.",
+    description:
+      "Angle of the oncoming air to the vehicle's axis, one or a list, positive when it comes from the left; every variant is computed at each, whole, and the road moves with the air's part along the vehicle.",
     default: "0 deg",
-    choices: ["0 deg", 0],
-    single: true,
+    example: "[0 deg, 5 deg]",
+    quantity: { dimension: "angle", min: -Math.PI / 6, max: Math.PI / 6, range: "-30 to 30 deg" },
   },
   {
     key: "ground",

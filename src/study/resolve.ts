@@ -8,6 +8,8 @@ import type { PartRule, Study } from "./study.js";
 
 /** Speeds closer than this, relative, are the same point of a sweep. */
 const SAME_SPEED = 1e-6;
+/** Radians: yaws that differ by less are one; a hundredth of a millionth of a degree. */
+const SAME_YAW = 1e-10;
 
 /**
  * A study from a document that fits the schema, and all that is wrong with it beyond the schema: names, baseline, axes, doubled
@@ -30,6 +32,7 @@ export function resolveStudy(document: StudyDocument, path: string): { study: St
     folder,
     air,
     speeds: document.speed,
+    yaws: document.yaw.map((yaw) => yaw + 0),
     ground: document.ground,
     baseline: document.baseline ?? variants[0]?.name ?? "",
     variants,
@@ -50,7 +53,13 @@ export function resolveStudy(document: StudyDocument, path: string): { study: St
     },
     stop,
   };
-  const faults = [...variantFaults(study), ...ruleFaults(parts), ...speedFaults(study.speeds), ...fileFaults(document)];
+  const faults = [
+    ...variantFaults(study),
+    ...ruleFaults(parts),
+    ...speedFaults(study.speeds),
+    ...yawFaults(study.yaws),
+    ...fileFaults(document),
+  ];
   if (body.travel[1] === body.up[1])
     faults.push({
       path: ["body", "up"],
@@ -132,6 +141,22 @@ function speedFaults(speeds: number[]): Fault[] {
         at: "value" as const,
         code: "study-same-speed",
         message: `Keys 'speed[${twin}]' and 'speed[${k}]' are the same speed, ${Number(speed.toPrecision(6))} m/s.`,
+        remedy: "Remove one of the two.",
+      },
+    ];
+  });
+}
+
+function yawFaults(yaws: number[]): Fault[] {
+  return yaws.flatMap((yaw, k) => {
+    const twin = yaws.findIndex((other) => Math.abs(other - yaw) <= SAME_YAW);
+    if (twin >= k) return [];
+    return [
+      {
+        path: ["yaw", k],
+        at: "value" as const,
+        code: "study-same-yaw",
+        message: `Keys 'yaw[${twin}]' and 'yaw[${k}]' are the same angle, ${Number(((180 / Math.PI) * yaw).toPrecision(6))} deg.`,
         remedy: "Remove one of the two.",
       },
     ];

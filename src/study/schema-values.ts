@@ -2,7 +2,7 @@ import { z } from "zod";
 import { type StudyKey, studyKey } from "./keys.js";
 import { shownValue } from "./message-text.js";
 import { nameFault } from "./names.js";
-import { expectedQuantity, readQuantity } from "./quantity.js";
+import { readQuantity } from "./quantity.js";
 
 /** Longest list that a study takes anywhere. */
 export const MOST_IN_LIST = 1000;
@@ -66,38 +66,16 @@ export function quantityOr<const Word extends string>(key: string, ...words: Wor
     .meta(about(key));
 }
 
-/** A required quantity or a list of them, read as a list in SI. */
+/** A quantity or a list of them, read as a list in SI; required unless the key has a default. */
 export function quantities(key: string) {
   const entry = studyKey(key);
-  return oneOrMore
-    .transform((given, context) => {
-      const list = Array.isArray(given) ? given : [given];
-      return list.map((each, k) =>
-        quantityOf(each, entry, (message) => context.addIssue({ code: "custom", message, path: Array.isArray(given) ? [k] : [] })),
-      );
-    })
-    .meta(about(key));
-}
-
-/** Angles of which none but 0 is computed. Another is reported without words: the fault of a `single` key has its own. */
-export function zeroAngles(key: string) {
-  const entry = studyKey(key);
-  return oneOrMore
-    .transform((given, context) => {
-      for (const each of Array.isArray(given) ? given : [given]) {
-        const reading = readQuantity(each, "angle");
-        if ("fault" in reading)
-          context.addIssue({
-            code: "custom",
-            message: `is ${shownValue(given)}, which ${reading.fault}; expected ${expectedQuantity("angle")}`,
-            params: { worded: true },
-          });
-        else if (reading.value !== 0) context.addIssue({ code: "custom", message: "" });
-      }
-      return 0;
-    })
-    .prefault(entry.default as string)
-    .meta({ ...about(key), enum: [...entry.choices!] });
+  const list = oneOrMore.transform((given, context) => {
+    const all = Array.isArray(given) ? given : [given];
+    return all.map((each, k) =>
+      quantityOf(each, entry, (message) => context.addIssue({ code: "custom", message, path: Array.isArray(given) ? [k] : [] })),
+    );
+  });
+  return (entry.default === undefined ? list : list.prefault(entry.default as string)).meta(about(key));
 }
 
 export function choice<const Choices extends readonly [string, ...string[]]>(key: string, choices: Choices) {

@@ -1,6 +1,6 @@
 import { z } from "zod";
 import { LONGEST_NAME, NAME_PATTERN } from "./names.js";
-import { about, choice, MOST_IN_LIST, name, only, quantities, quantity, quantityOr, text, zeroAngles } from "./schema-values.js";
+import { about, choice, MOST_IN_LIST, name, only, quantities, quantity, quantityOr, text } from "./schema-values.js";
 
 const path = z.string().min(1);
 const signedAxis = ["+x", "-x", "+y", "-y", "+z", "-z"] as const;
@@ -33,7 +33,7 @@ export const studySchema = z
       .prefault({})
       .meta(about("air")),
     speed: quantities("speed"),
-    yaw: zeroAngles("yaw"),
+    yaw: quantities("yaw"),
     ground: choice("ground", ["moving", "fixed"]),
     baseline: text("baseline").optional(),
     variants: z.record(ownName, variant).meta({ ...about("variants"), minProperties: 1 }),

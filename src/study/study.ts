@@ -9,8 +9,9 @@ export interface Study {
   folder: string;
   /** kelvin, pascal, 0..1 */
   air: { temperature: number; pressure: number; humidity: number };
-  /** m/s, one per condition */
+  /** m/s, and radians, positive with the air from the left: every speed is computed at every yaw */
   speeds: number[];
+  yaws: number[];
   ground: "moving" | "fixed";
   baseline: string;
   variants: Variant[];

@@ -98,9 +98,13 @@ describe("messages about keys, word for word", () => {
     expect(await problem(`${least}floor: 1\n`)).toMatchObject({
       message: "Key 'floor' is 1, which this version does not compute; the only value possible is 0.",
     });
-    expect(await problem(`${least}yaw: [0 deg, 5 deg]\n`)).toMatchObject({
-      code: "not-computed",
-      message: `Key 'yaw' is ["0 deg","5 deg"], which this version does not compute; the only value possible is 0 deg.`,
+    expect(await problem(`${least}yaw: [0 deg, 45 deg]\n`)).toMatchObject({
+      code: "study-value",
+      message: "Key 'yaw[1]' is \"45 deg\" (0.785398 rad); expected -30 to 30 deg.",
+    });
+    expect(await problem(`${least}yaw: [5 deg, 0, 5.0 deg]\n`)).toMatchObject({
+      code: "study-same-yaw",
+      message: "Keys 'yaw[0]' and 'yaw[2]' are the same angle, 5 deg.",
     });
     expect(await problem(`${least}yaw: 5\n`)).toMatchObject({
       code: "study-value",

@@ -63,6 +63,21 @@ describe("conditions", () => {
     expect(conditions("[30 m/s, 30.00004 m/s]").map((condition) => condition.name)).toEqual(["30ms", "30.00004ms"]);
   });
 
+  test("are every yaw at each speed, named where it is not zero", () => {
+    const study = parseStudy(`${least.replace("30 m/s", "[30 m/s, 20 m/s]")}yaw: [0 deg, -5 deg, 7.5 deg]\n`, "/s/a.yaml");
+    expect(conditionsOf(study).map(({ name }) => name)).toEqual([
+      "30ms",
+      "30ms-yaw-5deg",
+      "30ms-yaw7.5deg",
+      "20ms",
+      "20ms-yaw-5deg",
+      "20ms-yaw7.5deg",
+    ]);
+    expect(conditionsOf(study)[1]).toEqual({ name: "30ms-yaw-5deg", speed: 30, yaw: expect.closeTo((-5 * Math.PI) / 180, 12), ground: "moving" });
+    const near = parseStudy(`${least}yaw: [0.001 deg, 0.0012 deg, 0]\n`, "/s/a.yaml");
+    expect(conditionsOf(near).map(({ name }) => name)).toEqual(["30ms-yaw0.001deg", "30ms-yaw0.0012deg", "30ms"]);
+  });
+
   test("name the folder of a case with the variant", () => {
     const [condition] = conditions("108 km/h");
     expect(caseName("open-bed", condition!)).toBe("open-bed-30ms");

@@ -33,6 +33,7 @@ describe("a study file", () => {
       folder,
       air: { temperature: 288.15, pressure: 101325, humidity: 0 },
       speeds: [30],
+      yaws: [0],
       ground: "moving",
       baseline: "open-bed",
       variants: [
@@ -118,7 +119,9 @@ ground: fixed
 
   test("may name zero yaw in any way", () => {
     for (const yaw of ["0", "0 deg", "0.0 rad", "[0 deg]", "-0"])
-      expect(parseStudy(`${least}yaw: ${yaw}\n`, "/s/a.yaml").speeds).toEqual([30]);
+      expect(parseStudy(`${least}yaw: ${yaw}\n`, "/s/a.yaml").yaws).toEqual([0]);
+    expect(parseStudy(least, "/s/a.yaml").yaws).toEqual([0]);
+    expect(parseStudy(`${least}yaw: [-5 deg, 0.1 rad]\n`, "/s/a.yaml").yaws).toEqual([expect.closeTo((-5 * Math.PI) / 180, 12), 0.1]);
   });
 
   test("may have variants with the names of an object's own members", () => {

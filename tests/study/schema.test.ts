@@ -78,7 +78,6 @@ describe("the JSON Schema", () => {
     ["spped: 3", ".spped"],
     ["zones: {}", ".zones"],
     ["floor: 1", ".floor"],
-    ["yaw: 5 deg", ".yaw"],
     ["mesh: { levels: 2 }", ".mesh.levels"],
     ["mesh: { half: yes }", ".mesh.half"],
     ["solver: { start: ladder }", ".solver.start"],
