@@ -4,6 +4,8 @@ import { studentQuantile } from "./student.js";
 
 /** Independent samples (or whole periods) that an interval must rest on. */
 export const fewestSamples = 10;
+/** With fewer, a t quantile has less than one degree of freedom and says nothing: the half-width is not known. */
+const fewestForWidth = 2;
 /** Change over the window that matters when no half-width is asked for, as a share of the mean. */
 const smallShare = 1e-3;
 /** Significance that a trend must have: one history in a hundred without drift is called drifting. */
@@ -69,7 +71,8 @@ export function windowMean(values: Float64Array, firstRow: number, target: numbe
   const drifts = significant && Math.abs(change) > mattering(target, trend.centre) / 2;
   let halfWidth = 0;
   if (longRun > 0) {
-    const quantile = effectiveSamples > 1 ? studentQuantile(0.5 + confidence / 2, effectiveSamples - 1) : Number.POSITIVE_INFINITY;
+    const quantile =
+      effectiveSamples >= fewestForWidth ? studentQuantile(0.5 + confidence / 2, effectiveSamples - 1) : Number.POSITIVE_INFINITY;
     halfWidth = quantile * Math.sqrt(longRun / Math.max(1, count - 1));
   }
   if (significant && !drifts) halfWidth += Math.abs(change) / 2;

@@ -249,4 +249,15 @@ describe("no mean", () => {
     expect(settling.firstRow).toBeGreaterThanOrEqual(6);
     expect(settling.firstRow + settling.rows).toBe(600);
   });
+
+  // A t quantile with a hundredth of a degree of freedom is 1e77: it once reached the screen.
+  test("a half-width is unknown or of the size of the values, never a monster (seeds 1 to 200)", () => {
+    for (let seed = 1; seed <= 200; seed++) {
+      const values = autoregressive(new MinimalStandard(seed), 60 + seed, seed % 2 ? 0.999 : 0.9).map(
+        (value) => 0.3 + 0.01 * value,
+      );
+      const { halfWidth } = settle(values, { halfWidth: 0.001 });
+      if (Number.isFinite(halfWidth)) expect(halfWidth).toBeLessThan(50);
+    }
+  });
 });
