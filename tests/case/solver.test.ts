@@ -4,6 +4,8 @@ import { execa } from "execa";
 import { describe, expect, test } from "vitest";
 import { prepareStudy } from "../../src/case/prepare.js";
 import { readRunCard } from "../../src/case/read-run-card.js";
+import { buildLedger } from "../../src/ledger/build.js";
+import { readCaseRecord } from "../../src/ledger/case-record.js";
 import { boundaryPatches } from "../../src/openfoam/boundary.js";
 import { parseDictionary } from "../../src/openfoam/dictionary.js";
 import { findSolver } from "../../src/openfoam/environment.js";
@@ -78,5 +80,41 @@ describe("a prepared case in the real solver", () => {
     const surface = await readFile(join(path, "postProcessing/surface/10/body.vtk"), "utf8");
     expect(surface).toMatch(/^POLYGONS \d+ /m);
     expect(surface).toMatch(/^wallShearStress 3 /m);
+  }, 120_000);
+
+  test("at yaw: air in by the front and one side, out by the others; wind axes agree with the forces; both signs mirror each other", async (context) => {
+    if (solver === null) return context.skip("OpenFOAM is not installed");
+    const study = await cartStudy({
+      variants: { plain: cartParts },
+      keys: { yaw: "[8 deg, -8 deg]", mesh: "{ cells: 8 thousand, y-plus: 300, layers: 0 }", solver: "{ most-iterations: 30 }" },
+    });
+    const cases = await prepareStudy(study);
+    expect(cases.map(({ path }) => path.split("/").at(-1))).toEqual(["plain-30ms-yaw8deg", "plain-30ms-yaw-8deg"]);
+    const lasts: { cd: number; cs: number; cl: number }[] = [];
+    for (const { path, plan, condition } of cases) {
+      const env = { ...solver.env, PWD: path, PATH: `${solver.path}:${solver.env.PATH ?? ""}` };
+      await execa("/bin/sh", ["./Allrun"], { cwd: path, env, extendEnv: false });
+      const table = async (object: string) => {
+        const name = `postProcessing/${object}/0/coefficient.dat`;
+        const { columns } = readTable(await readFile(join(path, name)), name);
+        return (label: string): number => columns.find(({ name: own }) => own === label)!.values.at(-1)!;
+      };
+      const [own, wind] = [await table("coefficients"), await table("wind-axes")];
+      const yaw = plan.condition.yaw;
+      expect([condition, wind("Cd")]).toEqual([
+        condition,
+        expect.closeTo(own("Cd") * Math.cos(yaw) + own("Cs") * Math.sin(yaw), 6),
+      ]);
+      expect(wind("Cs")).toBeCloseTo(own("Cs") * Math.cos(yaw) - own("Cd") * Math.sin(yaw), 6);
+      // A box pushed from the left is pushed to the right.
+      expect(Math.sign(own("Cs"))).toBe(Math.sign(yaw));
+      const ledger = buildLedger(await readCaseRecord(path));
+      expect(ledger.closing.ok).toBe(true);
+      expect(ledger.total.cdWind).not.toBeNull();
+      lasts.push({ cd: own("Cd"), cs: own("Cs"), cl: own("Cl") });
+    }
+    const [left, right] = lasts as [(typeof lasts)[0], (typeof lasts)[0]];
+    expect(Math.abs(right.cs / left.cs + 1)).toBeLessThan(0.1);
+    expect(Math.abs(right.cd / left.cd - 1)).toBeLessThan(0.1);
   }, 120_000);
 });
