@@ -61,8 +61,8 @@ export function findOverlaps(
   return { crossings: crossing.result(), coincident: coincident.result() };
 }
 
-/** Cosine of the angle between normals above which a closer look is taken: a first sieve only. */
-const NEARLY_PARALLEL = 0.999;
+/** What the cosine of two unit vectors in float32 may be off by, with room to spare. */
+const COSINE_ROUNDING = 1e-6;
 
 class CoincidentSearch {
   readonly tolerance: number;
@@ -70,7 +70,10 @@ class CoincidentSearch {
   private readonly opposite: Overlay = { count: 0, area: 0 };
   private readonly pairs = new Map<number, CoincidentPair>();
   private readonly places: Vector3[] = [];
-  /** 3 per triangle, of length 1; zeros without area. */
+  /**
+   * 4 per triangle: unit normal (zeros without area), and how far the cosine to another normal may be off 1: a triangle whose corners are
+   * within the tolerance of a plane is tilted against it by at most twice the tolerance over its least height.
+   */
   private readonly normals: Float32Array;
   /** 1 per triangle. */
   private readonly areas: Float32Array;
@@ -82,7 +85,7 @@ class CoincidentSearch {
   ) {
     this.tolerance = TOLERANCE * extent;
     const triangles = mesh.partOf.length;
-    this.normals = new Float32Array(3 * triangles);
+    this.normals = new Float32Array(4 * triangles);
     this.areas = new Float32Array(triangles);
     const { vertices, corners } = mesh;
     for (let t = 0; t < triangles; t++) {
@@ -101,18 +104,25 @@ class CoincidentSearch {
       const length = Math.sqrt(x * x + y * y + z * z);
       this.areas[t] = length / 2;
       if (length === 0) continue;
-      this.normals[3 * t] = x / length;
-      this.normals[3 * t + 1] = y / length;
-      this.normals[3 * t + 2] = z / length;
+      const wx = vx - ux;
+      const wy = vy - uy;
+      const wz = vz - uz;
+      const longest = Math.max(ux * ux + uy * uy + uz * uz, vx * vx + vy * vy + vz * vz, wx * wx + wy * wy + wz * wz);
+      this.normals[4 * t] = x / length;
+      this.normals[4 * t + 1] = y / length;
+      this.normals[4 * t + 2] = z / length;
+      this.normals[4 * t + 3] = COSINE_ROUNDING + (4 * this.tolerance * this.tolerance * longest) / (length * length);
     }
   }
 
   visit(s: number, t: number): void {
     const { normals } = this;
-    const a = 3 * s;
-    const b = 3 * t;
+    const a = 4 * s;
+    const b = 4 * t;
     const cosine = normals[a] * normals[b] + normals[a + 1] * normals[b + 1] + normals[a + 2] * normals[b + 2];
-    if (cosine < NEARLY_PARALLEL && cosine > -NEARLY_PARALLEL) return;
+    const off = 1 - Math.abs(cosine);
+    if (off > normals[a + 3] && off > normals[b + 3]) return;
+    if (cosine === 0) return;
     // The larger one's plane, the smaller one's corners; of equal ones the earlier one's plane.
     const larger = this.areas[s] > this.areas[t] || (this.areas[s] === this.areas[t] && s < t) ? s : t;
     this.look(larger, larger === s ? t : s, cosine > 0);
@@ -121,9 +131,9 @@ class CoincidentSearch {
   private look(large: number, small: number, sameWay: boolean): void {
     const { vertices, corners, partOf } = this.mesh;
     const p = 3 * corners[3 * large];
-    const nx = this.normals[3 * large];
-    const ny = this.normals[3 * large + 1];
-    const nz = this.normals[3 * large + 2];
+    const nx = this.normals[4 * large];
+    const ny = this.normals[4 * large + 1];
+    const nz = this.normals[4 * large + 2];
     let common = 0;
     for (let k = 0; k < 3; k++) {
       const v = corners[3 * small + k];
@@ -142,10 +152,9 @@ class CoincidentSearch {
     const axis = Math.abs(nx) >= Math.abs(ny) && Math.abs(nx) >= Math.abs(nz) ? 0 : Math.abs(ny) >= Math.abs(nz) ? 1 : 2;
     const shrink = axis === 0 ? nx : axis === 1 ? ny : nz;
     clip.load(vertices, corners, large, small, axis, shrink < 0);
-    const length = clip.longestOfSmall();
     if (!clip.meet(this.tolerance)) return;
     const area = clip.area() / Math.abs(shrink);
-    if (!(area > 2 * this.tolerance * length)) return;
+    if (!(area > 2 * this.tolerance * clip.longestOfSmall())) return;
     const place = this.middle(axis, p, nx, ny, nz);
     const a = partOf[large];
     const b = partOf[small];
@@ -203,12 +212,14 @@ class Clip {
       this.small[2 * k] = vertices[to + i];
       this.small[2 * k + 1] = vertices[to + j];
     }
-    const [ax, ay, bx, by, cx, cy] = this.small;
-    if ((bx - ax) * (cy - ay) - (by - ay) * (cx - ax) >= 0) return;
-    this.small[2] = cx;
-    this.small[3] = cy;
-    this.small[4] = bx;
-    this.small[5] = by;
+    const { small: of } = this;
+    if ((of[2] - of[0]) * (of[5] - of[1]) - (of[3] - of[1]) * (of[4] - of[0]) >= 0) return;
+    const x = of[2];
+    const y = of[3];
+    of[2] = of[4];
+    of[3] = of[5];
+    of[4] = x;
+    of[5] = y;
   }
 
   longestOfSmall(): number {

@@ -138,6 +138,8 @@ export function sheetFindings(sheets: SheetPart[], parts: Part[], scale: number)
 
 /** Shares of a part's area: below the first nothing is said, from the second on it is a warning. */
 const THIN = { note: 0.01, warning: 0.1 };
+/** A wall thicker than a cell's diagonal has cell middles in it everywhere, however it lies: thin, but not lost. */
+const LOST = Math.sqrt(3);
 const GAP = { note: 0.01, warning: 0.25 };
 
 /** Parts thinner than the cells can show. `scale`: metres per mesh unit. */
@@ -145,11 +147,11 @@ export function thicknessFindings(thickness: Thickness, parts: Part[], scale: nu
   const worth = thickness.thin.filter(({ share }) => share >= THIN.note);
   const words = ({ part, share, least, median, cell }: ThinPart): string =>
     `${parts[part].name} (${shareWords(share)} of its area, mostly ${lengthWords(median * scale)}, least ${lengthWords(least * scale)}, cell ${lengthWords(cell * scale)})`;
-  return bySeverity(worth, ({ share }) => share >= THIN.warning).map(([severity, found]) =>
+  return bySeverity(worth, ({ share, median, cell }) => share >= THIN.warning && median < LOST * cell).map(([severity, found]) =>
     finding(
       "thin-part",
       severity,
-      `${counted(found.length, "part is", "parts are")} thinner than ${thickness.cells} surface cells: ${firstOf(found.map(words), 4)}. The mesh can lose such a wall or tear holes into it. ${sampled(thickness)}`,
+      `${counted(found.length, "part is", "parts are")} thinner than ${thickness.cells} surface cells: ${firstOf(found.map(words), 4)}. ${severity === "warning" ? "The mesh can lose such a wall or tear holes into it." : "The mesh rounds such a wall off, and can tear it below one cell."} ${sampled(thickness)}`,
       "Refine there to at least two cells across, or give the part more thickness.",
       {
         count: found.length,

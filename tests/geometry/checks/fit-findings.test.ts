@@ -1,3 +1,4 @@
+import { fileURLToPath } from "node:url";
 import { describe, expect, it } from "vitest";
 import type { Finding } from "../../../src/finding.js";
 import { cellFitOf } from "../../../src/geometry/checks/cell-fit.js";
@@ -14,6 +15,7 @@ import {
   thicknessFindings,
 } from "../../../src/geometry/checks/fit-findings.js";
 import { findSlivers } from "../../../src/geometry/checks/slivers.js";
+import { readSurfaces } from "../../../src/geometry/files/read.js";
 import { surfaceMesh } from "../../../src/geometry/surface-mesh.js";
 import { topologyOf } from "../../../src/geometry/topology.js";
 import { car } from "../car.js";
@@ -53,6 +55,19 @@ describe("findings on fitness", () => {
     );
   });
 
+  it("has no warning on the sample pickup at a two-hundredth of its length", async () => {
+    const names = ["bed-cover", "bed", "cab", "hood", "mirror-left", "mirror-right", "tailgate", "underbody"];
+    const wheels = ["front-left", "front-right", "rear-left", "rear-right"].map((name) => `wheel-${name}`);
+    const folder = fileURLToPath(new URL("../../../sample-geometry/geometry/", import.meta.url));
+    const set = await readSurfaces([...names, ...wheels].map((name) => `${folder}${name}.stl`));
+    const found = ofSet(set, 5.2 / 200, 1);
+    expect(found.filter(({ severity }) => severity !== "note")).toEqual([]);
+    expect(found.map(({ code }) => code)).toEqual(["parts-overlap", "thin-part", "narrow-gap"]);
+    expect(found[0].message).toContain("bed-cover and bed 400");
+    expect(found[1].message).toContain("bed-cover");
+    expect(found[2].message).toMatch(/cab and mirror-left .*, cab and mirror-right/);
+  });
+
   it("names parts that reach into each other", () => {
     const found = findings({ fender: block, wheel: box([500, 200, 100], [1300, 800, 900]) }, 20);
     expect(brief(found)).toEqual([["parts-overlap", "note", null, found[0].count]]);
@@ -89,6 +104,10 @@ describe("findings on fitness", () => {
     expect(found.message).toMatch(
       /^1 part is thinner than 2 surface cells: plate \(94 % of its area, mostly 30 mm, least 30 mm, cell 20 mm\)\. The mesh can lose such a wall or tear holes into it\. \(\d+ rays from all triangles\.\)$/,
     );
+    // Between the diagonal of a cell and two cells.
+    const [thick] = findings({ plate: box([0, 0, 0], [1000, 1000, 37]) }, 20);
+    expect(thick).toMatchObject({ code: "thin-part", severity: "note", part: "plate" });
+    expect(thick.message).toContain("The mesh rounds such a wall off, and can tear it below one cell.");
     const lug = box([1100, 400, 400], [1300, 600, 430]);
     expect(brief(findings({ block: joined(block, lug) }, 20))).toEqual([["thin-part", "note", "block", 1]]);
   });
