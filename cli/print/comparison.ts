@@ -17,7 +17,12 @@ const labels: Record<string, { label: string; decimals: number }> = {
 };
 
 export function printComparison(print: Printer, comparison: Comparison): void {
-  print.heading(`${comparison.b.variant} minus ${comparison.a.variant}`);
+  const { a, b } = comparison;
+  print.heading(
+    a.condition === b.condition
+      ? `${b.variant} minus ${a.variant}  ${a.condition}`
+      : `${b.variant} at ${b.condition} minus ${a.variant} at ${a.condition}`,
+  );
   print.line(`  ${comparison.sentence}`);
   print.line();
   const row = (difference: Difference): string[] => {

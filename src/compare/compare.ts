@@ -72,8 +72,8 @@ export function compareRuns(a: CaseRecord, b: CaseRecord): Comparison {
   }
   const total = differences.find((each) => each.part === null && each.name === "cd")!;
   return {
-    a: { path: a.path, variant: a.variant },
-    b: { path: b.path, variant: b.variant },
+    a: { path: a.path, variant: a.variant, condition: a.condition },
+    b: { path: b.path, variant: b.variant, condition: b.condition },
     comparable,
     differences,
     smallestResolvable: total.halfWidth,

@@ -20,8 +20,8 @@ export interface Difference {
 }
 
 export interface Comparison {
-  a: { path: string; variant: string };
-  b: { path: string; variant: string };
+  a: { path: string; variant: string; condition: string };
+  b: { path: string; variant: string; condition: string };
   comparable: boolean;
   differences: Difference[];
   /** smallest difference of the total drag coefficient that this pair can resolve */

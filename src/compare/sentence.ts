@@ -12,7 +12,9 @@ const sameArea = 1e-9;
 export function sentenceOf(a: CaseRecord, b: CaseRecord, differences: Difference[]): string {
   const of = (name: string) => differences.find((each) => each.part === null && each.name === name);
   const [cd, cl, cda, force] = [of("cd"), of("cl"), of("cda"), of("drag")];
-  if (!cd) return `${b.variant} and ${a.variant} cannot be compared.`;
+  const named = (record: CaseRecord): string =>
+    a.condition === b.condition ? record.variant : `${record.variant} at ${record.condition}`;
+  if (!cd) return `${named(b)} and ${named(a)} cannot be compared.`;
   const ownAreas = differentAreas(a, b);
   const main = ownAreas && cda ? cda : cd;
   const effect =
@@ -25,7 +27,7 @@ export function sentenceOf(a: CaseRecord, b: CaseRecord, differences: Difference
     cl ? `lift ${inCounts(cl)} (${cl.verdict})` : null,
   ].filter((text) => text !== null);
   const size = main === cda ? `${withHalfWidth(cda, 1, 4)} m² of CdA` : `${inCounts(cd)} of Cd`;
-  return `${b.variant} against ${a.variant}: ${effect}, ${size} ${how}; ${also.join(", ")}.`;
+  return `${named(b)} against ${named(a)}: ${effect}, ${size} ${how}; ${also.join(", ")}.`;
 }
 
 export function differentAreas({ reference: a }: CaseRecord, { reference: b }: CaseRecord): boolean {

@@ -18,6 +18,7 @@ export interface TriangleTree {
 export const LEAF = 4;
 /** A run of triangles with one code is put in order again by a finer grid when it is longer than this. */
 const LONG_RUN = 16;
+const MOST_PAIRS = { each: 200, more: 20e6 };
 
 /**
  * Builds the tree: triangles are sorted by the Morton code of their box's middle (Lauterbach and others, 2009), 10 bits an axis,
@@ -142,11 +143,13 @@ function sortAlongCurve(boxes: Float32Array, order: Uint32Array): void {
 
 /**
  * Calls `visit` once for each pair of triangles whose boxes are nowhere farther apart than `margin`, in the order of the tree: parts of
- * the tree whose boxes are farther apart are left out as a whole.
+ * the tree whose boxes are farther apart are left out as a whole. Ends early, and returns false, after 200 pairs a triangle and 20
+ * million more: surfaces have about nine, only triangles thrown together have so many.
  */
-export function eachMeetingPair(tree: TriangleTree, margin: number, visit: (s: number, t: number) => void): void {
+export function eachMeetingPair(tree: TriangleTree, margin: number, visit: (s: number, t: number) => void): boolean {
   const { order, boxes, leaves, nodes } = tree;
   const triangles = order.length;
+  let left = MOST_PAIRS.each * triangles + MOST_PAIRS.more;
   const within = (leaf: number): void => {
     const end = Math.min(triangles, LEAF * (leaf + 1));
     for (let p = LEAF * leaf; p < end; p++) tryAgainst(p, p + 1, end);
@@ -167,8 +170,10 @@ export function eachMeetingPair(tree: TriangleTree, margin: number, visit: (s: n
         boxes[b + 1] <= y1 &&
         z0 <= boxes[b + 5] &&
         boxes[b + 2] <= z1
-      )
+      ) {
+        left--;
         visit(order[p], order[q]);
+      }
   };
   // Both nodes are of one level.
   const between = (m: number, n: number): void => {
@@ -183,6 +188,7 @@ export function eachMeetingPair(tree: TriangleTree, margin: number, visit: (s: n
       nodes[b + 2] - margin > nodes[a + 5]
     )
       return;
+    if (left < 0) return;
     if (m < leaves) {
       between(2 * m, 2 * n);
       between(2 * m, 2 * n + 1);
@@ -205,4 +211,5 @@ export function eachMeetingPair(tree: TriangleTree, margin: number, visit: (s: n
     between(2 * node, 2 * node + 1);
   };
   inside(1);
+  return left >= 0;
 }

@@ -26,6 +26,8 @@ export interface CoincidentFaces {
   pairs: CoincidentPair[];
   /** Up to ten, in the middle of what is shared. */
   places: Vector3[];
+  /** False where there were so many pairs to try that the search ended early: there may be more. */
+  complete: boolean;
 }
 
 /** Of the body's extent: 4 µm on a car, some ten times what float32 coordinates are rounded by. */
@@ -41,8 +43,8 @@ const TOLERANCE = 1e-6;
  */
 export function findCoincident(mesh: SurfaceMesh, tree: TriangleTree = triangleTree(mesh)): CoincidentFaces {
   const search = new CoincidentSearch(mesh, tree.extent);
-  eachMeetingPair(tree, search.tolerance, (s, t) => search.visit(s, t));
-  return search.result();
+  const complete = eachMeetingPair(tree, search.tolerance, (s, t) => search.visit(s, t));
+  return search.result(complete);
 }
 
 /** `findCrossings` and `findCoincident` in one go through the pairs, in two thirds of the time of both. */
@@ -54,11 +56,11 @@ export function findOverlaps(
 ): { crossings: Crossings; coincident: CoincidentFaces } {
   const crossing = new CrossingSearch(mesh, shellOf, parts, tree.extent);
   const coincident = new CoincidentSearch(mesh, tree.extent);
-  eachMeetingPair(tree, coincident.tolerance, (s, t) => {
+  const complete = eachMeetingPair(tree, coincident.tolerance, (s, t) => {
     crossing.visit(s, t);
     coincident.visit(s, t);
   });
-  return { crossings: crossing.result(), coincident: coincident.result() };
+  return { crossings: crossing.result(complete), coincident: coincident.result(complete) };
 }
 
 /** What the cosine of two unit vectors in float32 may be off by, with room to spare. */
@@ -185,10 +187,10 @@ class CoincidentSearch {
     return place;
   }
 
-  result(): CoincidentFaces {
+  result(complete: boolean): CoincidentFaces {
     const area = (pair: CoincidentPair): number => pair.same.area + pair.opposite.area;
     const pairs = [...this.pairs.values()].sort((p, q) => area(q) - area(p) || p.a - q.a || p.b - q.b);
-    return { tolerance: this.tolerance, same: this.same, opposite: this.opposite, pairs, places: this.places };
+    return { tolerance: this.tolerance, same: this.same, opposite: this.opposite, pairs, places: this.places, complete };
   }
 }
 

@@ -14,6 +14,8 @@ export interface Crossings {
   betweenParts: Occurrence;
   /** The parts that overlap, most pairs first. */
   partPairs: PartPair[];
+  /** False where there were so many pairs to try that the search ended early: there may be more. */
+  complete: boolean;
 }
 
 /**
@@ -32,8 +34,8 @@ export function findCrossings(
   tree: TriangleTree = triangleTree(mesh),
 ): Crossings {
   const search = new CrossingSearch(mesh, shellOf, parts, tree.extent);
-  eachMeetingPair(tree, 0, (s, t) => search.visit(s, t));
-  return search.result();
+  const complete = eachMeetingPair(tree, 0, (s, t) => search.visit(s, t));
+  return search.result(complete);
 }
 
 /** The same search for a caller that goes through the pairs with a purpose of its own. */
@@ -78,9 +80,9 @@ export class CrossingSearch {
     addPlace(pair.places, place, extent, 3);
   }
 
-  result(): Crossings {
+  result(complete: boolean): Crossings {
     const partPairs = [...this.pairs.values()].sort((p, q) => q.count - p.count || p.a - q.a || p.b - q.b);
-    return { within: this.within, betweenShells: this.betweenShells, betweenParts: this.betweenParts, partPairs };
+    return { within: this.within, betweenShells: this.betweenShells, betweenParts: this.betweenParts, partPairs, complete };
   }
 }
 

@@ -19,8 +19,14 @@ import type { SheetPart } from "./sheets.js";
 import type { Slivers } from "./slivers.js";
 import type { Thickness, ThinPart } from "./thickness.js";
 
+const early = (complete: boolean): string => (complete ? "" : " The search ended early: there are more.");
+
 /** Shells that reach into each other: allowed, and normal for wheels, mirrors and the like; worth knowing where it was not meant. `scale`: metres per mesh unit. */
-export function overlapFindings({ betweenShells, betweenParts, partPairs }: Crossings, parts: Part[], scale: number): Finding[] {
+export function overlapFindings(
+  { betweenShells, betweenParts, partPairs, complete }: Crossings,
+  parts: Part[],
+  scale: number,
+): Finding[] {
   const findings: Finding[] = [];
   if (betweenParts.count > 0) {
     const listed = partPairs.map((pair) => `${pairWords(pair, parts)} ${pair.count}`);
@@ -28,7 +34,7 @@ export function overlapFindings({ betweenShells, betweenParts, partPairs }: Cros
       finding(
         "parts-overlap",
         "note",
-        `${counted(partPairs.length, "pair of parts reaches", "pairs of parts reach")} into each other (pairs of triangles that cross): ${firstOf(listed, 6)}. The mesh keeps what is outside of both, so wetted area is less than the sum of the parts.`,
+        `${counted(partPairs.length, "pair of parts reaches", "pairs of parts reach")} into each other (pairs of triangles that cross): ${firstOf(listed, 6)}. The mesh keeps what is outside of both, so wetted area is less than the sum of the parts.${early(complete)}`,
         "Nothing, where it is meant; else move the parts apart or join them along one edge.",
         { count: betweenParts.count, places: scaledPlaces(placesInTurn(partPairs.map((pair) => pair.places)), scale) },
       ),
@@ -40,7 +46,7 @@ export function overlapFindings({ betweenShells, betweenParts, partPairs }: Cros
       finding(
         "shells-overlap",
         "note",
-        `${counted(betweenShells.count, "pair of triangles of different shells of one part crosses", "pairs of triangles of different shells of one part cross")}: the part is made of pieces that reach into each other, and the mesh keeps what is outside of all: ${where.text}.`,
+        `${counted(betweenShells.count, "pair of triangles of different shells of one part crosses", "pairs of triangles of different shells of one part cross")}: the part is made of pieces that reach into each other, and the mesh keeps what is outside of all: ${where.text}.${early(complete)}`,
         "Nothing, where it is meant; else unite the pieces.",
         { count: betweenShells.count, part: where.only, places: scaledPlaces(betweenShells.places, scale) },
       ),
@@ -96,7 +102,7 @@ export function coincidentFindings(coincident: CoincidentFaces, parts: Part[], s
           apart
             ? "The mesh takes either part at random, so force moves between their entries in the ledger, and areas count twice."
             : "Areas count twice."
-        }`,
+        }${early(coincident.complete)}`,
         "Remove one of the two skins, or set one back by more than a cell.",
         more(same, "same"),
       ),
@@ -108,7 +114,7 @@ export function coincidentFindings(coincident: CoincidentFaces, parts: Part[], s
       finding(
         "touching-faces",
         "note",
-        `${areaWords(coincident.opposite.area * scale ** 2)} of surface lies on surface that faces the other way, within ${within} (${listed(opposite, "opposite")}). Where solids touch, no air is lost; a sheet folded onto itself has no thickness, and the mesh may take either of its sides.`,
+        `${areaWords(coincident.opposite.area * scale ** 2)} of surface lies on surface that faces the other way, within ${within} (${listed(opposite, "opposite")}). Where solids touch, no air is lost; a sheet folded onto itself has no thickness, and the mesh may take either of its sides.${early(coincident.complete)}`,
         "Let solids overlap by a cell instead of touching; give a folded sheet thickness, or keep one side of it.",
         more(opposite, "opposite"),
       ),

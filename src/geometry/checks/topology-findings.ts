@@ -69,7 +69,7 @@ export function topologyFindings(
       "self-intersections",
       "warning",
       crossings.within,
-      `${crossings.within.count} pairs of triangles of one shell pass through each other. The surface folds through itself there, and the mesh takes what it meets first:`,
+      `${crossings.within.count} pairs of triangles of one shell pass through each other${crossings.complete ? "" : " (the search ended early: there are more)"}. The surface folds through itself there, and the mesh takes what it meets first:`,
       "Repair the fold, or separate what should be two overlapping shells.",
     );
   }

@@ -121,6 +121,17 @@ describe("findCrossings", () => {
     expect(sum).toBeGreaterThan(2000);
   });
 
+  it("ends early on triangles thrown together in heaps, and says so", () => {
+    // 8000 triangles across all of a cube: 32 million pairs of boxes, more than 200 each and 20 million.
+    const next = random(3);
+    const heap = Array.from({ length: 8000 }, () =>
+      [0, 0, 0, 1, 1, 1].map((v) => v + 1e-3 * next()).concat([next(), next(), next()]),
+    ).flat();
+    const found = crossings({ heap });
+    expect(found.complete).toBe(false);
+    expect(crossings({ few: heap.slice(0, 9 * 500) }).complete).toBe(true);
+  });
+
   it("has none in nothing", () => {
     expect(counts({})).toEqual({ within: 0, between: 0 });
     expect(counts({ a: [1, 1, 1, 1, 1, 1, 1, 1, 1] })).toEqual({ within: 0, between: 0 });
