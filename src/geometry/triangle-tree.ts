@@ -18,7 +18,7 @@ export interface TriangleTree {
 export const LEAF = 4;
 /** A run of triangles with one code is put in order again by a finer grid when it is longer than this. */
 const LONG_RUN = 16;
-const MOST_PAIRS = { each: 200, more: 20e6 };
+const MOST_PAIRS = { each: 200, more: 5e6 };
 
 /**
  * Builds the tree: triangles are sorted by the Morton code of their box's middle (Lauterbach and others, 2009), 10 bits an axis,
@@ -143,7 +143,7 @@ function sortAlongCurve(boxes: Float32Array, order: Uint32Array): void {
 
 /**
  * Calls `visit` once for each pair of triangles whose boxes are nowhere farther apart than `margin`, in the order of the tree: parts of
- * the tree whose boxes are farther apart are left out as a whole. Ends early, and returns false, after 200 pairs a triangle and 20
+ * the tree whose boxes are farther apart are left out as a whole. Ends early, and returns false, after 200 pairs a triangle and 5
  * million more: surfaces have about nine, only triangles thrown together have so many.
  */
 export function eachMeetingPair(tree: TriangleTree, margin: number, visit: (s: number, t: number) => void): boolean {
