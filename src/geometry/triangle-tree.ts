@@ -199,7 +199,18 @@ export function eachMeetingPair(tree: TriangleTree, margin: number, visit: (s: n
     const from = LEAF * (n - leaves);
     const to = Math.min(triangles, from + LEAF);
     const end = Math.min(triangles, LEAF * (m - leaves + 1));
-    for (let p = LEAF * (m - leaves); p < end; p++) tryAgainst(p, from, to);
+    for (let p = LEAF * (m - leaves); p < end; p++) {
+      const c = 6 * p;
+      if (
+        boxes[c] - margin <= nodes[b + 3] &&
+        nodes[b] - margin <= boxes[c + 3] &&
+        boxes[c + 1] - margin <= nodes[b + 4] &&
+        nodes[b + 1] - margin <= boxes[c + 4] &&
+        boxes[c + 2] - margin <= nodes[b + 5] &&
+        nodes[b + 2] - margin <= boxes[c + 5]
+      )
+        tryAgainst(p, from, to);
+    }
   };
   const inside = (node: number): void => {
     if (node >= leaves) {
