@@ -57,7 +57,7 @@ export function enclosedCavities(flood: AirFlood): Cavities {
     if (points < LEAST_POINTS) return;
     const layer = (cell / 4) * sides * step ** 2;
     const { place, clearance } = placeIn(flood, space, points);
-    const kind = Math.abs(about.winding(place)) > INSIDE ? "inside" : "air";
+    const kind = about.depth(place) > INSIDE ? "inside" : "air";
     const volume = points * step ** 3 + LAYER * layer;
     sums[kind].count++;
     sums[kind].volume += volume;

@@ -2,8 +2,9 @@ import type { SurfaceMesh } from "../surface-mesh.js";
 import type { TriangleTree } from "../triangle-tree.js";
 import type { Box, Vector3 } from "../vector.js";
 import { bitAt, placeAt, reachedFromRim } from "./bit-lattice.js";
+import { clearLattice } from "./clear-lattice.js";
 import { type AirFlood, type Cut, floodAir } from "./flood.js";
-import { INSIDE, type Membrane, membranesOf } from "./membranes.js";
+import { hasBorder, INSIDE, type Membrane, membranesOf } from "./membranes.js";
 import { narrowestAt } from "./narrowest.js";
 import { eachSpace, placeIn, sizeOf } from "./spaces.js";
 
@@ -15,14 +16,14 @@ export interface Leak {
   asked?: number;
   /** Whether air gets inside. Where it does and `holes` is empty, the way in was not found. */
   reached: boolean;
-  /** The widest way in first, at most six. `width`: diameter of the largest ball that passes. */
+  /** The widest way in first, at most six. `width`: diameter of the largest ball that passes, `centre`: where it does. */
   holes: Hole[];
 }
 
 export interface Hole {
   centre: Vector3;
   width: number;
-  /** The hole may be so much wider than `width`. */
+  /** The hole may be so much wider than `width`, or, where it is many cells wide, so much narrower. */
   doubt?: number;
 }
 
@@ -32,12 +33,18 @@ const CELLS = 200;
 /** Points that are tried for being inside, and how far from the surface they must be: cells, and share of the body's extent. */
 const MOST_SAMPLES = 60_000;
 const DEEP_SHARE = 1 / 80;
+/** Cells along the body above which holes are looked for with larger cells first, and how much larger these are. */
+const COARSE = 100;
+const COARSER = 4;
+/** Steps about a film's points that cover its hole: more than a film ends beside the edges of its hole. */
+const COVER = 4;
 /** Points about holes whose winding is looked at. */
 const MOST_LOOKS = 1_500_000;
 
 /**
  * Whether air gets inside of a body that is meshed with cells of a given edge, and where. Air gets inside where a ball whose diameter is
- * that edge can come from outside, without touching the surface, to a place that the surface winds about more than half a time.
+ * that edge can come from outside, without touching the surface, to a place that the surface winds about more than half a time,
+ * either way round.
  *
  * The flood (`floodAir`) finds every way that is 1.37 cells wide or wider, however the lattice lies, and some that are narrower; the
  * film across each hole is then looked up (`membranesOf`) and its narrowest place measured by exact distances, and holes narrower than
@@ -70,23 +77,69 @@ export function findLeak(
 export function leakOf(flood: AirFlood, mesh: SurfaceMesh): Leak {
   const { cell, asked, lattice } = flood;
   const answer = (reached: boolean, holes: Hole[] = []): Leak => ({ cell, ...(asked !== cell && { asked }), reached, holes });
-  const { membranes, complete } = membranesOf(flood, mesh, MOST_LOOKS);
-  if (membranes.length === 0) return answer(false);
-  const rooms = complete ? roomsBehind(flood, membranes) : { bits: flood.reached, inside: deepPoints(flood) };
-  if (rooms.inside.length === 0) return answer(false);
-  const holes: Hole[] = [];
-  let closed = 0;
-  for (const membrane of membranes) {
-    const narrow = narrowestAt(flood, membrane.inner);
-    if (narrow.width < cell) {
-      closed++;
-      for (const point of membrane.outer) clearBit(flood, flood.clear, point);
-    } else if (membrane.inner.some((point) => isSet(flood, rooms.bits, point))) holes.push(narrow);
-  }
-  if (closed > 0) flood.reached = reachedFromRim(lattice, flood.clear);
-  const reached = rooms.inside.some((point) => isSet(flood, flood.reached, point));
+  if (!hasBorder(mesh)) return answer(false);
+  const { ways, narrow, lost } = waysIn(flood, mesh);
+  for (const { outer } of narrow) for (const point of outer) clearBit(flood, flood.clear, point);
+  if (narrow.length > 0) flood.reached = reachedFromRim(lattice, flood.clear);
+  const reached = ways.length > 0 || lost.some((point) => isSet(flood, flood.reached, point));
+  const holes = ways.map(({ hole }) => hole);
   holes.sort((a, b) => b.width - a.width || a.centre[0] - b.centre[0] || a.centre[1] - b.centre[1]);
-  return answer(reached, reached ? holes.slice(0, MOST_HOLES) : []);
+  return answer(reached, holes.slice(0, MOST_HOLES));
+}
+
+interface Way {
+  hole: Hole;
+  /** Points of its film. */
+  film: Vector3[];
+  /** Distance of points of the lattice that the film was found on. */
+  step: number;
+}
+
+/**
+ * The films of a flood: those a cell wide or wider that lead into rooms; those that are narrower; and, where there were too many films to
+ * follow all, points inside that air reaches. Holes many cells wide are looked for with larger cells first and then covered, since
+ * the film across one has as many points as the hole has squares of a step.
+ */
+function waysIn(flood: AirFlood, mesh: SurfaceMesh): { ways: Way[]; narrow: Membrane[]; lost: number[] } {
+  const { bounds, cut, cell, lattice } = flood;
+  const extent = Math.max(...bounds.max.map((value, axis) => value - bounds.min[axis]));
+  const ways: Way[] = [];
+  let open = flood;
+  if (extent > COARSE * cell) {
+    const { lattice: wide, clear } = clearLattice(mesh, bounds, (COARSER * cell) / 2, (COARSER * cell) / 4, cut);
+    const coarse: AirFlood = { ...flood, cell: COARSER * cell, lattice: wide, clear, reached: reachedFromRim(wide, clear) };
+    ways.push(...waysIn(coarse, mesh).ways);
+    if (ways.length > 0) {
+      const covered = flood.clear.slice();
+      for (const way of ways) cover(lattice, covered, way);
+      open = { ...flood, clear: covered, reached: reachedFromRim(lattice, covered) };
+    }
+  }
+  const { membranes, complete } = membranesOf(open, mesh, MOST_LOOKS);
+  if (membranes.length === 0) return { ways, narrow: [], lost: [] };
+  const rooms = complete ? roomsBehind(open, membranes) : { bits: open.reached, inside: deepPoints(open) };
+  const narrow: Membrane[] = [];
+  for (const membrane of membranes) {
+    const hole = narrowestAt(open, membrane.inner);
+    if (hole.width < cell) narrow.push(membrane);
+    else if (rooms.inside.length > 0 && membrane.inner.some((point) => isSet(open, rooms.bits, point)))
+      ways.push({ hole, film: membrane.inner.map((point) => placeAt(lattice, ...splitPoint(open, point))), step: lattice.step });
+  }
+  return { ways, narrow, lost: complete ? [] : rooms.inside };
+}
+
+/** Clears the bits of points about a film, so far that nothing is left open between it and the edges where it ends. */
+function cover({ origin, step, size, rowWords }: AirFlood["lattice"], bits: Uint32Array, way: Way): void {
+  const reach = COVER * way.step;
+  for (const place of way.film) {
+    const low = place.map((value, axis) => Math.max(0, Math.ceil((value - reach - origin[axis]) / step)));
+    const high = place.map((value, axis) => Math.min(size[axis] - 1, Math.floor((value + reach - origin[axis]) / step)));
+    for (let k = low[2]; k <= high[2]; k++)
+      for (let j = low[1]; j <= high[1]; j++) {
+        const row = (k * size[1] + j) * rowWords;
+        for (let i = low[0]; i <= high[0]; i++) bits[row + (i >>> 5)] &= ~(1 << (i & 31));
+      }
+  }
 }
 
 function splitPoint({ lattice: { size } }: AirFlood, point: number): Vector3 {
@@ -123,7 +176,7 @@ function deepPoints(flood: AirFlood): number[] {
       for (let i = stride >> 1; i < size[0]; i += stride) {
         if (bitAt(lattice, reached, i, j, k) === 0) continue;
         const place = placeAt(lattice, i, j, k);
-        if (about.winding(place) > INSIDE && about.distance(place, far) >= far) deep.push((k * size[1] + j) * size[0] + i);
+        if (about.depth(place) > INSIDE && about.distance(place, far) >= far) deep.push((k * size[1] + j) * size[0] + i);
       }
   return deep;
 }
@@ -140,7 +193,7 @@ function roomsBehind(flood: AirFlood, membranes: Membrane[]): { bits: Uint32Arra
   const far = deepOf(flood);
   eachSpace(lattice, open, (space) => {
     const { place, clearance } = placeIn(flood, space, sizeOf(lattice, space).points);
-    if (clearance < far || about.winding(place) < INSIDE) return;
+    if (clearance < far || about.depth(place) < INSIDE) return;
     for (const word of space.words) bits[word] |= space.own[word];
     const [i, j, k] = place.map((value, axis) => Math.round((value - lattice.origin[axis]) / lattice.step));
     inside.push((k * lattice.size[1] + j) * lattice.size[0] + i);

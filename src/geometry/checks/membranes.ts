@@ -6,7 +6,7 @@ import type { AirFlood } from "./flood.js";
 
 /**
  * The film across one hole: neighbouring points of the lattice, both reached by air, between which the number of times that the
- * surface winds about a point passes one half. Point numbers: (k · rows + j) · columns + i.
+ * surface winds about a point, of either sign, passes one half. Point numbers: (k · rows + j) · columns + i.
  */
 export interface Membrane {
   inner: number[];
@@ -42,7 +42,7 @@ export function membranesOf(
     const key = (k * rows + j) * columns + i;
     let value = known.get(key);
     if (value === undefined) {
-      value = about.winding(placeAt(lattice, i, j, k)) > INSIDE ? 1 : 0;
+      value = about.depth(placeAt(lattice, i, j, k)) > INSIDE ? 1 : 0;
       known.set(key, value);
     }
     return value;
@@ -109,6 +109,12 @@ export function membranesOf(
     }
   }
   return { membranes, complete: known.size <= most };
+}
+
+/** Whether a surface has edges at which films can end; where it has none, it has no holes. */
+export function hasBorder({ corners, ring }: Pick<SurfaceMesh, "corners" | "ring">): boolean {
+  for (let h = 0; h < corners.length; h++) if (isBorder(corners, ring, h)) return true;
+  return false;
 }
 
 /** Whether the triangles at a half-edge's edge run along it more often one way than the other; said of its lowest half-edge only. */

@@ -5,7 +5,7 @@ import { INSIDE } from "./membranes.js";
 import type { SurfaceAbout } from "./winding.js";
 
 /** Of a film's points those count as its middle that are nearly as far from the surface as the farthest. */
-const NEARLY = 0.9;
+const NEARLY = 0.97;
 /** The film's widest place is searched to this share of a step. */
 const FINEST = 1 / 32;
 /** Distances along the film's normal, in steps, over which the surface may come nearer than at the film. */
@@ -14,6 +14,9 @@ const BESIDE = [-1.5, -1.25, -1, -0.75, -0.5, -0.25, 0, 0.25, 0.5, 0.75, 1, 1.25
 const ROUNDS = 4;
 const FARTHEST = 4;
 const THROUGH = 1.5;
+/** The film across a wide opening is bent, and how wide it is depends on where one looks: beyond so many steps, by such a share. */
+const WIDE = 12;
+const WIDE_DOUBT = 0.2;
 /** Points of a film that are looked at. */
 const MOST_POINTS = 4000;
 
@@ -60,10 +63,7 @@ function widestNear(
     const { u, v } = across(normal);
     const ball = (place: Vector3): number => {
       // A line that does not lead from outside to inside says nothing of the hole.
-      if (
-        about.winding(moved(place, normal, -THROUGH * step)) > INSIDE ||
-        about.winding(moved(place, normal, THROUGH * step)) < INSIDE
-      )
+      if (about.depth(moved(place, normal, -THROUGH * step)) > INSIDE || about.depth(moved(place, normal, THROUGH * step)) < INSIDE)
         return 0;
       let distance = Infinity;
       for (const by of BESIDE) distance = about.distance(moved(place, normal, by * step), distance);
@@ -93,7 +93,8 @@ function widestNear(
   }
   // Where no line was found that leads through, the film's point itself has to do.
   if (radius === 0) return { centre: start, width: 2 * about.distance(start), doubt: step };
-  return { centre, width: 2 * radius, doubt: 4 * FINEST * step };
+  const width = 2 * radius;
+  return { centre, width, doubt: width > WIDE * step ? WIDE_DOUBT * width : 4 * FINEST * step };
 }
 
 const moved = (from: Vector3, along: Vector3, by: number): Vector3 => [
@@ -112,7 +113,7 @@ function normalAt(about: SurfaceAbout, place: Vector3, by: number): Vector3 {
       [0, 1, 0],
       [0, 0, 1],
     ] as Vector3[]
-  ).map((axis) => about.winding(moved(place, axis, by)) - about.winding(moved(place, axis, -by))) as Vector3;
+  ).map((axis) => about.depth(moved(place, axis, by)) - about.depth(moved(place, axis, -by))) as Vector3;
   return Math.hypot(...slope) > 0 ? normalised(slope) : [1, 0, 0];
 }
 
@@ -121,10 +122,10 @@ function ontoFilm(about: SurfaceAbout, place: Vector3, normal: Vector3, reach: n
   const room = Math.min(reach, about.distance(place, reach));
   let low = -room;
   let high = room;
-  if (!(about.winding(moved(place, normal, low)) < INSIDE && about.winding(moved(place, normal, high)) > INSIDE)) return place;
+  if (!(about.depth(moved(place, normal, low)) < INSIDE && about.depth(moved(place, normal, high)) > INSIDE)) return place;
   for (let k = 0; k < 12; k++) {
     const middle = (low + high) / 2;
-    if (about.winding(moved(place, normal, middle)) > INSIDE) high = middle;
+    if (about.depth(moved(place, normal, middle)) > INSIDE) high = middle;
     else low = middle;
   }
   return moved(place, normal, (low + high) / 2);

@@ -40,6 +40,11 @@ export class SurfaceAbout {
     return direct + this.windingOf(image[0], image[1], image[2]);
   }
 
+  /** The winding without its sign: a body that is turned inside out has an inside as well. */
+  depth(point: Vector3): number {
+    return Math.abs(this.winding(point));
+  }
+
   private windingOf(px: number, py: number, pz: number): number {
     const { dipoles, stack } = this;
     const { order, leaves, nodes } = this.tree;

@@ -8,7 +8,20 @@ import type { TriangleSet } from "../../../src/geometry/triangle-set.js";
 import type { Vector3 } from "../../../src/geometry/vector.js";
 import { cabWithHole } from "../cab.js";
 import { car } from "../car.js";
-import { bodyOf, box, directions, joined, moved, random, shifted, shuffled, sphere, type Triangles, turned } from "../shapes.js";
+import {
+  bodyOf,
+  box,
+  directions,
+  joined,
+  moved,
+  random,
+  shifted,
+  shuffled,
+  sphere,
+  type Triangles,
+  turned,
+  turnedOver,
+} from "../shapes.js";
 
 /** `aside`: how far the lattice's first point lies below where it would. */
 function leakIn(
@@ -205,11 +218,50 @@ describe("findLeak", () => {
     expect(leakOf(Array.from({ length: 9 * 2000 }, () => next()))).toBeNull();
   });
 
-  const motorcycle = "/usr/share/doc/openfoam-examples/examples/resources/geometry/motorBike.obj.gz";
-  it.skipIf(!existsSync(motorcycle))("the motorcycle at two cell sizes: nothing gets in that needs a wider way", async () => {
-    const set = await readSurfaces([motorcycle]);
-    const [coarse, fine] = [0.04, 0.02].map((cell) => leakIn(set, cell));
-    for (const { holes, cell } of [coarse, fine]) for (const { width } of holes) expect(width).toBeGreaterThanOrEqual(cell);
-    if (coarse.reached) expect(fine.reached).toBe(true);
+  it("a body turned inside out leaks through the same hole", () => {
+    const shape = shellWithWindow(-0.1, 0.5, 0.3, 0.8);
+    const [one, other] = [leakOf(shape), leakOf(turnedOver(shape))];
+    expect(other.holes[0].width).toBeCloseTo(one.holes[0].width, 3);
   });
+
+  it("of a hole many cells wide and a narrow one both are found, the wide one once", () => {
+    const cab = cabWithHole([0, 0, 0], [4, 1.5, 1.4], 0.06, [0.7, 0.6]);
+    const open: Triangles = [];
+    for (let at = 0; at < cab.length; at += 9) if (![2, 5, 8].every((k) => cab[at + k] === 0)) open.push(...cab.slice(at, at + 9));
+    const { holes } = leakIn(bodyOf({ open }), 0.025);
+    expect(holes).toHaveLength(2);
+    expect(holes[0].centre[2]).toBeCloseTo(0, 1);
+    expect(Math.abs(holes[0].width - 1.5)).toBeLessThan(0.1);
+    expect(apart(holes[1].centre, [4, 0.7, 0.6])).toBeLessThan(0.025);
+    expect(holes[1].width).toBeCloseTo(0.06, 2);
+  });
+
+  const examples = "/usr/share/doc/openfoam-examples/examples";
+  const whole = `${examples}/resources/geometry/motorBike.obj.gz`;
+  const holed = `${examples}/mesh/snappyHexMesh/motorBike_leakDetection/constant/triSurface/motorBike-wo-visor-w-deletedElementsOnBack.obj.gz`;
+  it.skipIf(!existsSync(whole) || !existsSync(holed))(
+    "the motorcycle at two cell sizes: its tyres are open at the ground; without visor and some triangles of the back there too",
+    async () => {
+      const bike = await readSurfaces([whole]);
+      for (const cell of [0.02, 0.04]) {
+        const { holes } = leakIn(bike, cell);
+        expect(holes.length).toBeGreaterThan(0);
+        for (const { centre, width } of holes) {
+          expect(centre[2]).toBeLessThan(0.01);
+          expect(width).toBeGreaterThanOrEqual(cell);
+        }
+      }
+      const damaged = await readSurfaces([holed]);
+      // The visor's place is at (0.43, 0, 1.11) and 11 by 20 cm large, the back's at (0.97, 0, 1.22), 24 mm wide.
+      const at = (cell: number): boolean[] => {
+        const { holes } = leakIn(damaged, cell);
+        return [
+          [0.43, 0, 1.11],
+          [0.975, 0.008, 1.224],
+        ].map((place) => holes.some(({ centre }) => apart(centre, place as Vector3) < 0.1));
+      };
+      expect(at(0.015)).toEqual([true, true]);
+      expect(at(0.04)).toEqual([true, false]);
+    },
+  );
 });
