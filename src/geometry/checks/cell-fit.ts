@@ -1,14 +1,14 @@
 import type { SurfaceMesh } from "../surface-mesh.js";
 import { type TriangleTree, triangleTree } from "../triangle-tree.js";
 import { GapSearch, type Gaps } from "./gaps.js";
-import { type CutPlane, findSheets, type SheetPart, sheetMask } from "./sheets.js";
+import { type CutPlane, findSheets, type OpenParts, partSides } from "./sheets.js";
 import { surfaceSamples } from "./surface-samples.js";
 import { CELLS_ACROSS, type Thickness, ThicknessSearch } from "./thickness.js";
 import { WallRays } from "./wall-rays.js";
 
 /** What the cells at a surface are too coarse for. */
 export interface CellFit {
-  sheets: SheetPart[];
+  open: OpenParts;
   thickness: Thickness;
   gaps: Gaps;
 }
@@ -29,11 +29,11 @@ export function cellFitOf(
   tree: TriangleTree = triangleTree(mesh),
 ): CellFit {
   const samples = surfaceSamples(mesh, cellOfPart.length, cellOfPart);
-  const sheets = findSheets(mesh, openPerPart, samples, cut, tree);
-  const sheet = sheetMask(sheets, cellOfPart.length);
-  const rays = new WallRays(mesh, tree, sheet);
-  const thickness = new ThicknessSearch(mesh, cellOfPart, sheet, samples, rays);
-  const gaps = new GapSearch(mesh, cellOfPart, sheet, samples, rays);
+  const open = findSheets(mesh, openPerPart, samples, cut, tree);
+  const sides = partSides(open, cellOfPart.length);
+  const rays = new WallRays(mesh, tree, sides);
+  const thickness = new ThicknessSearch(mesh, cellOfPart, sides, samples, rays);
+  const gaps = new GapSearch(mesh, cellOfPart, sides, samples, rays);
   const { triangles, points } = samples;
   for (let k = 0; k < triangles.length; k++) {
     const reach = CELLS_ACROSS * cellOfPart[mesh.partOf[triangles[k]]];
@@ -44,5 +44,5 @@ export function cellFitOf(
     // Looking whether the surface is covered has ended what was seen.
     if (rays.hits === hits || rays.cast(triangles[k], points, 3 * k, reach)) gaps.see(k);
   }
-  return { sheets, thickness: thickness.result(), gaps: gaps.result() };
+  return { open, thickness: thickness.result(), gaps: gaps.result() };
 }

@@ -122,25 +122,42 @@ export function coincidentFindings(coincident: CoincidentFaces, parts: Part[], s
   return findings;
 }
 
-/** Parts without an inside. `scale`: metres per mesh unit. */
+/** Open parts without an inside. `scale`: metres per mesh unit. */
 export function sheetFindings(sheets: SheetPart[], parts: Part[], scale: number): Finding[] {
   if (sheets.length === 0) return [];
   return [
     finding(
       "sheet-part",
       "note",
-      `${counted(sheets.length, "part is a sheet", "parts are sheets")}, open and with air on both sides: ${firstOf(
-        sheets.map(({ part, openEdges }) => `${parts[part].name} (${counted(openEdges, "open edge")})`),
-      )}. The mesh closes around both sides, and forces of both go into the part's one entry; the thickness is lost.`,
+      `${counted(sheets.length, "part is a sheet", "parts are sheets")}, open and with air on both sides: ${openParts(sheets, parts)}. The mesh closes around both sides, and forces of both go into the part's one entry; the thickness is lost.`,
       "Nothing, where a thin panel is meant; else close the part to a solid of at least two cells.",
-      {
-        count: sheets.length,
-        part: sheets.length === 1 ? parts[sheets[0].part].name : null,
-        places: scaledPlaces(sheets.map(({ place }) => place).slice(0, 10), scale),
-      },
+      whereOf(sheets, parts, scale),
     ),
   ];
 }
+
+/** Open parts that are inside out; closed ones are `topologyFindings`'s. `scale`: metres per mesh unit. */
+export function inwardFindings(inward: SheetPart[], parts: Part[], scale: number): Finding[] {
+  if (inward.length === 0) return [];
+  return [
+    finding(
+      "inward-part",
+      "warning",
+      `${counted(inward.length, "open part faces", "open parts face")} inwards: ${openParts(inward, parts)}. The mesh does not mind, but volume is wrong, and thickness cannot be judged there.`,
+      "Turn the normals of these parts outwards.",
+      whereOf(inward, parts, scale),
+    ),
+  ];
+}
+
+const openParts = (found: SheetPart[], parts: Part[]): string =>
+  firstOf(found.map(({ part, openEdges }) => `${parts[part].name} (${counted(openEdges, "open edge")})`));
+
+const whereOf = (found: SheetPart[], parts: Part[], scale: number) => ({
+  count: found.length,
+  part: found.length === 1 ? parts[found[0].part].name : null,
+  places: scaledPlaces(found.map(({ place }) => place).slice(0, 10), scale),
+});
 
 /** Shares of a part's area: below the first nothing is said, from the second on it is a warning. */
 const THIN = { note: 0.01, warning: 0.1 };

@@ -2,6 +2,7 @@ import type { SurfaceMesh } from "../surface-mesh.js";
 import { type TriangleTree, triangleTree } from "../triangle-tree.js";
 import type { Vector3 } from "../vector.js";
 import { NarrowWidths } from "./narrow-widths.js";
+import { PART_SIDES } from "./sheets.js";
 import { type SurfaceSamples, surfaceSamples } from "./surface-samples.js";
 import { CELLS_ACROSS } from "./thickness.js";
 import { type FacingWall, WallRays } from "./wall-rays.js";
@@ -38,21 +39,21 @@ export interface Gaps {
  * Gaps in the air: from each sample a ray along the outward normal to the next wall, which must face the surface within 45° (a
  * corner or a hollow of the surface does not) and be nearer than two cells of the finer of the two parts. Rays that leave a solid began
  * inside it; gaps inside another solid do not count, nor do walls that share a corner, or that touch (nearer than a millionth of
- * the body's extent). The two sides of a sheet both count.
+ * the body's extent). The two sides of a sheet both count, and of a part that is inside out its back.
  *
  * @param cellOfPart 1 per part: edge of the surface cells there, mesh unit
- * @param sheet 1 per part: not 0 for parts without an inside (see `findSheets`)
+ * @param sides 1 per part: one of `PART_SIDES`
  * @param samples of the same mesh, about a cell apart
  */
 export function gapsOf(
   mesh: SurfaceMesh,
   cellOfPart: ArrayLike<number>,
-  sheet: ArrayLike<number> = new Uint8Array(cellOfPart.length),
+  sides: ArrayLike<number> = new Uint8Array(cellOfPart.length),
   samples: SurfaceSamples = surfaceSamples(mesh, cellOfPart.length, cellOfPart),
   tree: TriangleTree = triangleTree(mesh),
 ): Gaps {
-  const rays = new WallRays(mesh, tree, sheet);
-  const search = new GapSearch(mesh, cellOfPart, sheet, samples, rays);
+  const rays = new WallRays(mesh, tree, sides);
+  const search = new GapSearch(mesh, cellOfPart, sides, samples, rays);
   const { triangles, points } = samples;
   for (let k = 0; k < triangles.length; k++)
     if (rays.cast(triangles[k], points, 3 * k, CELLS_ACROSS * cellOfPart[mesh.partOf[triangles[k]]])) search.see(k);
@@ -66,7 +67,7 @@ export class GapSearch {
   constructor(
     private readonly mesh: SurfaceMesh,
     private readonly cellOfPart: ArrayLike<number>,
-    private readonly sheet: ArrayLike<number>,
+    private readonly sides: ArrayLike<number>,
     private readonly samples: SurfaceSamples,
     private readonly rays: WallRays,
   ) {}
@@ -76,11 +77,12 @@ export class GapSearch {
     const { rays, samples } = this;
     const t = samples.triangles[k];
     const part = this.mesh.partOf[t];
-    const ahead = rays.inFront(1);
-    const back = this.sheet[part] ? rays.inFront(-1) : null;
+    const side = this.sides[part];
+    const ahead = side === PART_SIDES.inward ? null : rays.inFront(1);
+    const back = side === PART_SIDES.solid ? null : rays.inFront(-1);
     if (back !== null) this.note(k, part, back);
     if (ahead === null || !this.isNarrow(ahead)) return;
-    const covers = this.sheet[part] ? 0 : rays.covers(t, samples.points, 3 * k);
+    const covers = side === PART_SIDES.sheet ? 0 : rays.covers(t, samples.points, 3 * k);
     // Below zero: the ray entered more than it left. With the part's own wall, the part is inside out and this is no gap; with another's,
     // the body has a hole somewhere behind.
     if (covers > 0 || (covers < 0 && this.mesh.partOf[ahead.triangle] === part)) return;

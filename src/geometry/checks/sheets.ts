@@ -1,18 +1,29 @@
+import { twiceAreaVector } from "../area-vector.js";
 import { RayCaster } from "../ray-hits.js";
 import type { SurfaceMesh } from "../surface-mesh.js";
 import { type TriangleTree, triangleTree } from "../triangle-tree.js";
 import type { Vector3 } from "../vector.js";
 import type { SurfaceSamples } from "./surface-samples.js";
 
-/** A part with open edges whose back is in the air too: it has no inside. */
+/** A part with open edges whose back is in the air. */
 export interface SheetPart {
   part: number;
   openEdges: number;
-  /** Share of its area behind which no wall ends the inside. */
+  /** Share of its area that says so. */
   exposed: number;
   /** Mesh unit and axes. */
   place: Vector3;
 }
+
+export interface OpenParts {
+  /** Both sides are in the air: the part has no inside. */
+  sheets: SheetPart[];
+  /** The back is in the air and the front is inside: a hollow part whose normals point inwards. */
+  inward: SheetPart[];
+}
+
+/** How rays are to take a part: as a solid, as a sheet, or as a solid that is inside out. */
+export const PART_SIDES = { solid: 0, sheet: 1, inward: 2 } as const;
 
 /** The plane of a half body: rays that reach it go on in the mirrored half. */
 export interface CutPlane {
@@ -28,9 +39,9 @@ const EXPOSED = 0.5;
 const TOUCHING = 1e-6;
 
 /**
- * Finds the parts that are sheets: with open edges, and with more than half of their area such that a ray against the normal meets
- * nothing, or the outside of something. A skin with a hole is none: behind it, the rays meet the inside of the skin. 300 rays a part at
- * most, evenly from the samples.
+ * Tells parts with open edges that are sheets, or hollow and inside out: those of which for more than half of their area a ray against the
+ * normal leaves no more solids than it enters. A skin with a hole is neither: such rays leave it on its other side. Where the rays
+ * along the normal enter more than they leave, the part is inside out. 300 samples a part at most, evenly.
  *
  * @param openPerPart 1 per part: open edges
  */
@@ -40,15 +51,17 @@ export function findSheets(
   samples: SurfaceSamples,
   cut: CutPlane | null = null,
   tree: TriangleTree = triangleTree(mesh),
-): SheetPart[] {
-  if (openPerPart.every((count) => count === 0)) return [];
+): OpenParts {
+  if (openPerPart.every((count) => count === 0)) return { sheets: [], inward: [] };
   const { partOf } = mesh;
-  const counts = new Uint32Array(openPerPart.length);
+  const parts = openPerPart.length;
+  const counts = new Uint32Array(parts);
   for (const t of samples.triangles) counts[partOf[t]]++;
   const rays = new BackRays(mesh, tree, cut);
-  const seen = new Uint32Array(openPerPart.length);
-  const sampled = new Float64Array(openPerPart.length);
-  const exposed = new Float64Array(openPerPart.length);
+  const seen = new Uint32Array(parts);
+  const sampled = new Float64Array(parts);
+  const both = new Float64Array(parts);
+  const turned = new Float64Array(parts);
   const places = new Map<number, Vector3>();
   samples.triangles.forEach((t, k) => {
     const part = partOf[t];
@@ -56,23 +69,26 @@ export function findSheets(
     const step = Math.max(1, Math.floor(counts[part] / MOST_RAYS));
     if (seen[part]++ % step !== 0) return;
     sampled[part] += samples.areas[k];
-    if (!rays.isExposed(t, samples.points, 3 * k)) return;
-    exposed[part] += samples.areas[k];
+    if (rays.left(t, samples.points, 3 * k, -1) > 0) return;
+    (rays.left(t, samples.points, 3 * k, 1) < 0 ? turned : both)[part] += samples.areas[k];
     if (!places.has(part)) places.set(part, [samples.points[3 * k], samples.points[3 * k + 1], samples.points[3 * k + 2]]);
   });
-  return Array.from(openPerPart, (openEdges, part) => ({
-    part,
-    openEdges,
-    exposed: sampled[part] > 0 ? exposed[part] / sampled[part] : 0,
-    place: places.get(part) ?? ([0, 0, 0] as Vector3),
-  })).filter((sheet) => sheet.exposed > EXPOSED);
+  const over = (areas: Float64Array): SheetPart[] =>
+    Array.from(openPerPart, (openEdges, part) => ({
+      part,
+      openEdges,
+      exposed: sampled[part] > 0 ? areas[part] / sampled[part] : 0,
+      place: places.get(part) ?? ([0, 0, 0] as Vector3),
+    })).filter((sheet) => sheet.exposed > EXPOSED);
+  return { sheets: over(both), inward: over(turned) };
 }
 
-/** 1 per part: 1 for sheets. */
-export function sheetMask(sheets: SheetPart[], parts: number): Uint8Array {
-  const mask = new Uint8Array(parts);
-  for (const { part } of sheets) mask[part] = 1;
-  return mask;
+/** 1 per part: one of `PART_SIDES`. */
+export function partSides({ sheets, inward }: OpenParts, parts: number): Uint8Array {
+  const sides = new Uint8Array(parts);
+  for (const { part } of sheets) sides[part] = PART_SIDES.sheet;
+  for (const { part } of inward) sides[part] = PART_SIDES.inward;
+  return sides;
 }
 
 class BackRays {
@@ -88,38 +104,40 @@ class BackRays {
     this.touching = TOUCHING * tree.extent;
   }
 
-  /** Whether the ray against the normal meets nothing, or the outside of something. */
-  isExposed(t: number, points: Float64Array, at: number): boolean {
-    const normal = this.areaVector(t);
+  /**
+   * Walls that a ray along the normal (`way` 1) or against it (-1) leaves less those that it enters, on its whole way: 1 behind the skin
+   * of a solid, whatever is inside it; 0 in the air; less than 0 in front of a skin that is inside out.
+   */
+  left(t: number, points: Float64Array, at: number, way: 1 | -1): number {
+    const normal = twiceAreaVector(this.mesh, t);
     const length = Math.hypot(...normal);
-    if (!(length > 0)) return false;
+    if (!(length > 0)) return way < 0 ? 1 : 0;
     const from: Vector3 = [points[at], points[at + 1], points[at + 2]];
-    const along = normal.map((value) => -value / length) as Vector3;
-    const first = this.first(from, along, t);
-    if (this.cut === null) return first === null || first.outside;
+    const along = normal.map((value) => (way * value) / length) as Vector3;
+    if (this.cut === null) return this.balance(from, along, t, Infinity);
     const { axis, plane } = this.cut;
     const toPlane = (plane - from[axis]) / along[axis];
-    if (!(toPlane > 0) || toPlane === Infinity || (first !== null && first.distance < toPlane))
-      return first === null || first.outside;
+    if (!(toPlane > 0 && toPlane < Infinity)) return this.balance(from, along, t, Infinity);
     const mirrored = from.map((value, k) => value + toPlane * along[k]) as Vector3;
     const back = along.slice() as Vector3;
     back[axis] = -back[axis];
-    const second = this.first(mirrored, back, -1);
-    return second === null || second.outside;
+    return this.balance(from, along, t, toPlane) + this.balance(mirrored, back, -1, Infinity);
   }
 
-  private first(from: Vector3, along: Vector3, except: number): { distance: number; outside: boolean } | null {
-    const { caster } = this;
-    if (caster.hits(...from, ...along, this.touching, Infinity, except) === 0) return null;
-    const [x, y, z] = this.areaVector(caster.of[0]);
-    return { distance: caster.at[0], outside: x * along[0] + y * along[1] + z * along[2] < 0 };
-  }
-
-  private areaVector(t: number): Vector3 {
-    const { vertices, corners } = this.mesh;
-    const [a, b, c] = [3 * corners[3 * t], 3 * corners[3 * t + 1], 3 * corners[3 * t + 2]];
-    const u = [0, 1, 2].map((k) => vertices[b + k] - vertices[a + k]);
-    const v = [0, 1, 2].map((k) => vertices[c + k] - vertices[a + k]);
-    return [u[1] * v[2] - u[2] * v[1], u[2] * v[0] - u[0] * v[2], u[0] * v[1] - u[1] * v[0]];
+  private balance(from: Vector3, along: Vector3, except: number, to: number): number {
+    const { caster, touching } = this;
+    const hits = caster.hits(...from, ...along, touching, to, except);
+    let left = 0;
+    let [lastAt, lastOut] = [-Infinity, false];
+    for (let k = 0; k < hits; k++) {
+      const [x, y, z] = twiceAreaVector(this.mesh, caster.of[k]);
+      const out = x * along[0] + y * along[1] + z * along[2] > 0;
+      // A ray through a common edge meets both triangles.
+      if (caster.at[k] - lastAt <= 1e-3 * touching && out === lastOut) continue;
+      left += out ? 1 : -1;
+      lastAt = caster.at[k];
+      lastOut = out;
+    }
+    return left;
   }
 }

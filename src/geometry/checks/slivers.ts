@@ -1,3 +1,4 @@
+import { twiceAreaVector } from "../area-vector.js";
 import { NO_EDGE } from "../edges.js";
 import type { SurfaceMesh } from "../surface-mesh.js";
 import type { Vector3 } from "../vector.js";
@@ -75,8 +76,9 @@ export function findSlivers(mesh: SurfaceMesh, parts: number, extent: number): S
 }
 
 /** Whether the triangle has neighbours that are no slivers, and is turned by more than 90° against each. */
-function facesAway({ vertices, corners, ring }: SurfaceMesh, t: number, isSliver: Set<number>): boolean {
-  const normal = normalOf(vertices, corners, t);
+function facesAway(mesh: SurfaceMesh, t: number, isSliver: Set<number>): boolean {
+  const { corners, ring } = mesh;
+  const normal = twiceAreaVector(mesh, t);
   let neighbours = 0;
   for (let h = 3 * t; h < 3 * t + 3; h++) {
     const other = ring[h];
@@ -84,18 +86,10 @@ function facesAway({ vertices, corners, ring }: SurfaceMesh, t: number, isSliver
     const beyond = (other / 3) | 0;
     if (isSliver.has(beyond)) continue;
     neighbours++;
-    const [x, y, z] = normalOf(vertices, corners, beyond);
+    const [x, y, z] = twiceAreaVector(mesh, beyond);
     if (normal[0] * x + normal[1] * y + normal[2] * z >= 0) return false;
   }
   return neighbours > 0;
-}
-
-/** Twice the area, as a vector. */
-function normalOf(vertices: Float32Array, corners: Uint32Array, t: number): Vector3 {
-  const [a, b, c] = [3 * corners[3 * t], 3 * corners[3 * t + 1], 3 * corners[3 * t + 2]];
-  const u = [0, 1, 2].map((k) => vertices[b + k] - vertices[a + k]);
-  const v = [0, 1, 2].map((k) => vertices[c + k] - vertices[a + k]);
-  return [u[1] * v[2] - u[2] * v[1], u[2] * v[0] - u[0] * v[2], u[0] * v[1] - u[1] * v[0]];
 }
 
 function middleOf({ vertices, corners }: SurfaceMesh, t: number): Vector3 {

@@ -2,6 +2,7 @@ import type { SurfaceMesh } from "../surface-mesh.js";
 import { type TriangleTree, triangleTree } from "../triangle-tree.js";
 import type { Vector3 } from "../vector.js";
 import { NarrowWidths } from "./narrow-widths.js";
+import { PART_SIDES } from "./sheets.js";
 import { type SurfaceSamples, surfaceSamples } from "./surface-samples.js";
 import { WallRays } from "./wall-rays.js";
 
@@ -40,18 +41,18 @@ export const CELLS_ACROSS = 2;
  * `findCoincident`'s.
  *
  * @param cellOfPart 1 per part: edge of the surface cells there, mesh unit
- * @param sheet 1 per part: not 0 for parts without an inside (see `findSheets`), which have no thickness
+ * @param sides 1 per part: one of `PART_SIDES`; only solids have a thickness
  * @param samples of the same mesh, about a cell apart
  */
 export function thicknessOf(
   mesh: SurfaceMesh,
   cellOfPart: ArrayLike<number>,
-  sheet: ArrayLike<number> = new Uint8Array(cellOfPart.length),
+  sides: ArrayLike<number> = new Uint8Array(cellOfPart.length),
   samples: SurfaceSamples = surfaceSamples(mesh, cellOfPart.length, cellOfPart),
   tree: TriangleTree = triangleTree(mesh),
 ): Thickness {
-  const rays = new WallRays(mesh, tree, sheet);
-  const search = new ThicknessSearch(mesh, cellOfPart, sheet, samples, rays);
+  const rays = new WallRays(mesh, tree, sides);
+  const search = new ThicknessSearch(mesh, cellOfPart, sides, samples, rays);
   const { triangles, points } = samples;
   for (let k = 0; k < triangles.length; k++)
     if (rays.cast(triangles[k], points, 3 * k, CELLS_ACROSS * cellOfPart[mesh.partOf[triangles[k]]])) search.see(k);
@@ -65,7 +66,7 @@ export class ThicknessSearch {
   constructor(
     private readonly mesh: SurfaceMesh,
     private readonly cellOfPart: ArrayLike<number>,
-    private readonly sheet: ArrayLike<number>,
+    private readonly sides: ArrayLike<number>,
     private readonly samples: SurfaceSamples,
     private readonly rays: WallRays,
   ) {}
@@ -76,7 +77,7 @@ export class ThicknessSearch {
     const { partOf } = this.mesh;
     const t = samples.triangles[k];
     const part = partOf[t];
-    if (this.sheet[part]) return;
+    if (this.sides[part] !== PART_SIDES.solid) return;
     const wall = rays.behind();
     if (wall === null || wall.distance >= CELLS_ACROSS * cellOfPart[partOf[wall.triangle]]) return;
     if (rays.covers(t, samples.points, 3 * k) > 0) return;

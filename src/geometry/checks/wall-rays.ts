@@ -15,7 +15,7 @@ const TOUCHING = 1e-6;
 
 /**
  * Looks from points of a surface along and against its normal for the walls that face it. Solids may overlap: inside is where a ray
- * has entered more of them than it has left. Parts without an inside (`sheet`) do not count as entered or left.
+ * has entered more of them than it has left. Parts that are no solids, or inside out, do not count as entered or left.
  */
 export class WallRays {
   private readonly caster: RayCaster;
@@ -28,11 +28,11 @@ export class WallRays {
   private ny = 0;
   private nz = 0;
 
-  /** `sheet`: 1 per part, not 0 for parts without an inside. */
+  /** `sides`: 1 per part: one of `PART_SIDES`. */
   constructor(
     private readonly mesh: SurfaceMesh,
     tree: TriangleTree,
-    private readonly sheet: ArrayLike<number>,
+    private readonly sides: ArrayLike<number>,
   ) {
     this.caster = new RayCaster(mesh, tree);
     this.touching = TOUCHING * tree.extent;
@@ -60,7 +60,7 @@ export class WallRays {
     for (let k = this.hits - 1; k >= 0; k--) {
       if (caster.at[k] > -this.touching) continue;
       const hit = caster.of[k];
-      if (this.sheet[mesh.partOf[hit]]) continue;
+      if (this.sides[mesh.partOf[hit]]) continue;
       const facing = this.facing(hit);
       // A ray through a common edge meets both triangles.
       if (last >= 0 && this.isSame(last, k, facing)) continue;
@@ -74,7 +74,7 @@ export class WallRays {
   }
 
   /**
-   * The next wall in front of the surface. `way`: 1 along the normal; -1 against it, for sheets, whose other side is in the air too.
+   * The next wall in front of the surface. `way`: 1 along the normal; -1 against it, for sheets and what is inside out, whose back is in the air.
    * Null where there is none, where it does not face the surface (then the ray leaves a solid: the surface is inside one), or where
    * it shares a corner with the triangle.
    */
@@ -85,7 +85,7 @@ export class WallRays {
     if (k < 0 || k >= this.hits) return null;
     const hit = caster.of[k];
     const facing = way * this.facing(hit);
-    const isFacing = this.sheet[mesh.partOf[hit]] ? Math.abs(facing) >= FACING : facing <= -FACING;
+    const isFacing = this.sides[mesh.partOf[hit]] ? Math.abs(facing) >= FACING : facing <= -FACING;
     return isFacing && !this.shareCorner(triangle, hit) ? { distance: way * caster.at[k], triangle: hit } : null;
   }
 
@@ -102,7 +102,7 @@ export class WallRays {
     let left = 0;
     let last = -1;
     for (let k = 0; k < hits; k++) {
-      if (this.sheet[mesh.partOf[caster.of[k]]]) continue;
+      if (this.sides[mesh.partOf[caster.of[k]]]) continue;
       const facing = this.facing(caster.of[k]);
       if (last >= 0 && this.isSame(last, k, facing)) continue;
       last = k;

@@ -206,8 +206,8 @@ describe("gapsOf", () => {
 
   it("sees wheels and mirrors of a car beside its body only where they are near", () => {
     const { set } = car(20_000);
-    const { gaps, sheets, thickness } = fitted(set, 0.02);
-    expect(sheets).toEqual([]);
+    const { gaps, open, thickness } = fitted(set, 0.02);
+    expect(open).toEqual({ sheets: [], inward: [] });
     expect(thickness.thin.filter(({ share }) => share > 0.01)).toEqual([]);
     for (const { a, b } of gaps.narrow) expect(`${set.parts[a].name} ${set.parts[b].name}`).toMatch(/mirror|wheel/);
     expect(fitted(set, 0.002).gaps.narrow).toEqual([]);
@@ -218,7 +218,7 @@ describe("findSheets", () => {
   const sheets = (set: ReturnType<typeof bodyOf>, cut: { axis: number; plane: number } | null = null) => {
     const mesh = surfaceMesh(set);
     const cells = set.parts.map(() => 0.1);
-    return findSheets(mesh, topologyOf(mesh, cells.length).open.perPart, surfaceSamples(mesh, cells.length, cells), cut);
+    return findSheets(mesh, topologyOf(mesh, cells.length).open.perPart, surfaceSamples(mesh, cells.length, cells), cut).sheets;
   };
   const plate: Triangles = [0, 0, 2, 1, 0, 2, 1, 1, 2, 0, 0, 2, 1, 1, 2, 0, 1, 2];
   const cube = box([0, 0, 0], [1, 1, 1]);
@@ -252,10 +252,26 @@ describe("findSheets", () => {
     expect(sheets(bodyOf({ side }), { axis: 1, plane: 0 })).toEqual([]);
   });
 
+  it("does not take a hollow part for a sheet because of what is inside it", () => {
+    const shell = box([0, 0, 0], [4, 1, 1]).slice(18);
+    const found = sheets(bodyOf({ shell, rim: box([0.25, 0.25, 0.25], [3.75, 0.75, 0.75]) }));
+    expect(found).toEqual([]);
+  });
+
+  it("tells a hollow part that is inside out from a sheet, and looks at its gaps from the outside", () => {
+    const tube = turnedOver(box([0, 0, 0], [4, 0.05, 1]).slice(18));
+    const set = bodyOf({ tube, other: box([0, 0.08, 0], [4, 1, 1]) });
+    const found = fitted(set, 0.03);
+    expect(found.open.sheets).toEqual([]);
+    expect(found.open.inward.map(({ part, openEdges }) => [part, openEdges])).toEqual([[0, 4]]);
+    expect(found.thickness.thin).toEqual([]);
+    expect(found.gaps.narrow.map(({ a, b, least }) => [a, b, Number(least.toFixed(5))])).toEqual([[0, 1, 0.03]]);
+  });
+
   it("has no thickness, and both its sides have gaps", () => {
     const set = bodyOf({ plate, above: shifted(cube, [0, 0, 2.02]), below: shifted(cube, [0, 0, 0.97]) });
     const found = fitted(set, 0.02);
-    expect(found.sheets.map(({ part }) => part)).toEqual([0]);
+    expect(found.open.sheets.map(({ part }) => part)).toEqual([0]);
     expect(found.thickness.thin).toEqual([]);
     expect(found.gaps.narrow.map(({ a, b, least }) => [a, b, Number(least.toFixed(5))])).toEqual([
       [0, 1, 0.02],
@@ -289,7 +305,7 @@ describe("cellFitOf", () => {
 
   it("has nothing to say of nothing", () => {
     const found = fitted(bodyOf({}), 1);
-    expect([found.sheets, found.thickness.thin, found.gaps.narrow]).toEqual([[], [], []]);
+    expect([found.open.sheets, found.thickness.thin, found.gaps.narrow]).toEqual([[], [], []]);
   });
 });
 

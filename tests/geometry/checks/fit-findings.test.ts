@@ -9,6 +9,7 @@ import {
   coincidentFindings,
   cutFindings,
   gapFindings,
+  inwardFindings,
   overlapFindings,
   sheetFindings,
   sliverFindings,
@@ -19,7 +20,7 @@ import { readSurfaces } from "../../../src/geometry/files/read.js";
 import { surfaceMesh } from "../../../src/geometry/surface-mesh.js";
 import { topologyOf } from "../../../src/geometry/topology.js";
 import { car } from "../car.js";
-import { bodyOf, box, joined, shifted, type Triangles } from "../shapes.js";
+import { bodyOf, box, joined, shifted, type Triangles, turnedOver } from "../shapes.js";
 
 /** All findings of these checks on a body in millimetres. */
 function findings(parts: Record<string, Triangles>, cell: number): Finding[] {
@@ -36,7 +37,8 @@ function ofSet(set: ReturnType<typeof bodyOf>, cell: number, scale: number): Fin
     ...sliverFindings(findSlivers(mesh, set.parts.length, 1000), set.parts, scale),
     ...overlapFindings(crossings, set.parts, scale),
     ...coincidentFindings(coincident, set.parts, scale),
-    ...sheetFindings(fit.sheets, set.parts, scale),
+    ...sheetFindings(fit.open.sheets, set.parts, scale),
+    ...inwardFindings(fit.open.inward, set.parts, scale),
     ...thicknessFindings(fit.thickness, set.parts, scale),
     ...gapFindings(fit.gaps, set.parts, scale),
   ];
@@ -129,6 +131,12 @@ describe("findings on fitness", () => {
     expect(found).toMatchObject({ code: "sheet-part", severity: "note", part: "sheet" });
     expect(found.message).toBe(
       "1 part is a sheet, open and with air on both sides: sheet (3 open edges). The mesh closes around both sides, and forces of both go into the part's one entry; the thickness is lost.",
+    );
+    const bucket = turnedOver(shifted(block.slice(18), [0, 3000, 0]));
+    const [inward] = findings({ block, bucket }, 20);
+    expect(inward).toMatchObject({ code: "inward-part", severity: "warning", part: "bucket" });
+    expect(inward.message).toBe(
+      "1 open part faces inwards: bucket (4 open edges). The mesh does not mind, but volume is wrong, and thickness cannot be judged there.",
     );
     const needle: Triangles = [0, 0, 3000, 1000, 0, 3000, 500, 0.5, 3000];
     const [sliver] = findings({ block, needle }, 20);
