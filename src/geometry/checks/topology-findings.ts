@@ -26,7 +26,7 @@ export function topologyFindings(
     );
   };
   const borders = `${topology.borderCount} ${topology.borderCount === 1 ? "border" : "borders"}`;
-  const widest = topology.borders.length > 0 ? lengthWords(topology.borders[0].span * scale) : "";
+  const widest = lengthWords(topology.borders.reduce((most, { span }) => Math.max(most, span), 0) * scale);
   add(
     "open-edges",
     mirror.kind === "half" ? "note" : "warning",
