@@ -1,10 +1,13 @@
 import { inputProblem } from "../errors.js";
 import { type Finding, finding } from "../finding.js";
-import { findCrossings } from "./checks/crossings.js";
-import { findLeak } from "./checks/leak.js";
+import { findOverlaps } from "./checks/coincident.js";
+import { cutPlaneDeviation } from "./checks/cut-plane.js";
+import { coincidentFindings, cutFindings, overlapFindings, sliverFindings } from "./checks/fit-findings.js";
+import { findSlivers } from "./checks/slivers.js";
 import { stanceFindings } from "./checks/stance-findings.js";
-import { axesFindings, emptyParts, leakFindings, listedNames, sizeFindings, wheelFindings } from "./checks/survey-findings.js";
+import { axesFindings, emptyParts, listedNames, sizeFindings, wheelFindings } from "./checks/survey-findings.js";
 import { topologyFindings } from "./checks/topology-findings.js";
+import { fitAtCell } from "./fit-at-cell.js";
 import { type Measures, measures } from "./measures.js";
 import { metresPer, vehicleAxes } from "./place.js";
 import { shellMeasures } from "./shell-measures.js";
@@ -13,9 +16,10 @@ import { visibleShares } from "./silhouette/visible-shares.js";
 import { yawedAreas } from "./silhouette/yawed-area.js";
 import { surfaceMesh } from "./surface-mesh.js";
 import type { Orientation, ProjectedArea, ShellSurvey, Survey } from "./survey.js";
-import { leakInMetres, pointInMetres, stanceInMetres, wheelInMetres } from "./survey-metres.js";
-import { topologyOf } from "./topology.js";
+import { bordersInMetres, fitInMetres, leakInMetres, pointInMetres, stanceInMetres, wheelInMetres } from "./survey-metres.js";
+import { topologyByPart, topologyOf } from "./topology.js";
 import type { Part, TriangleSet } from "./triangle-set.js";
+import { triangleTree } from "./triangle-tree.js";
 import { type Box, dot, type Vector3 } from "./vector.js";
 import { axlesOf, joinWheels, wheelbaseOf } from "./vehicle/axles.js";
 import { type Mirror, mirrorOf } from "./vehicle/mirror.js";
@@ -30,14 +34,19 @@ export interface SurveyWishes {
   wheelParts?: string[];
   /** radians: the frontal area is wanted at these angles of yaw too */
   yaws?: number[];
-  /** metres: cell of the mesh at the surface that the body has to be fit for; a two-hundredth of the length where it is not given */
-  cell?: number;
+  /**
+   * metres: cell of the mesh at the surface that the body has to be fit for; a two-hundredth of the length where it is not given; null
+   * leaves out the checks against cells
+   */
+  cell?: number | null;
   /** the slow checks also for bodies of more than a million triangles */
   full?: boolean;
 }
 
 /** Cells along the body that a first study has at the surface. */
 const usualCells = 200;
+/** Metres: what is farther from the plane of a half body's cut is not in it. */
+const cutTolerance = 1e-4;
 /** Above this, self-intersections and the leak test are left out unless asked for. */
 const mostTriangles = 1_000_000;
 
@@ -87,6 +96,7 @@ export function surveyBody(set: TriangleSet, asked: Partial<Orientation> & Surve
   const axles = axlesOf(wheels, vehicle.rearward);
   const wheelbase = wheelbaseOf(axles);
   const topology = topologyOf(mesh, parts.length);
+  const byPart = topologyByPart(topology);
   const lateral = vehicle.right.findIndex((value) => value !== 0);
   const symmetry = mirror(lateral);
   const cut = symmetry.kind === "half" ? { axis: lateral, plane: symmetry.plane } : null;
@@ -97,16 +107,29 @@ export function surveyBody(set: TriangleSet, asked: Partial<Orientation> & Surve
     wheelParts,
   });
   const along = (direction: Vector3): number => extents[direction.findIndex((value) => value !== 0)] * scale;
-  const cell = asked.cell ?? along(vehicle.rearward) / usualCells;
   const leftOut = asked.full !== true && set.partOf.length > mostTriangles;
-  const crossings = leftOut ? null : findCrossings(mesh, topology.shells.shellOf, parts.length);
-  // A surface without open edges cannot leak.
-  const found = leftOut
-    ? null
-    : topology.open.count > 0
-      ? findLeak(mesh, inUnit.whole.bounds, cut)
-      : { cell: 0, reached: false, holes: [] };
-  const leak = found === null ? undefined : leakInMetres(found, scale);
+  const tree = triangleTree(mesh);
+  const overlaps = leftOut ? null : findOverlaps(mesh, topology.shells.shellOf, parts.length, tree);
+  const slivers = findSlivers(mesh, parts.length, tree.extent);
+  const cell = asked.cell === undefined ? along(vehicle.rearward) / usualCells : asked.cell;
+  const fit =
+    cell === null || !(cell > 0)
+      ? null
+      : fitAtCell(
+          {
+            mesh,
+            bounds: inUnit.whole.bounds,
+            parts,
+            openEdges: topology.open.perPart,
+            mayLeak: topology.open.count + topology.nonManifold.count + topology.flipped.count > 0,
+            cut: cut === null ? null : { ...cut, open: symmetry.cut === "open" },
+            scale,
+            tree,
+          },
+          cell / scale,
+          { leakTest: !leftOut },
+        );
+  const leaks = fit === null ? [] : fit.leaks;
   const { whole } = inUnit;
   const volume = cut === null ? whole.volume : halfVolume(whole, cut);
   const findings: Finding[] = [
@@ -114,10 +137,16 @@ export function surveyBody(set: TriangleSet, asked: Partial<Orientation> & Surve
     ...sizeFindings(set, unit, asked.unit !== undefined, Math.max(...extents) * scale),
     ...axesFindings(axes),
     ...emptyParts(parts, inUnit.groups),
-    ...topologyFindings(topology, crossings, parts, scale, symmetry),
-    ...leakFindings(leak),
+    ...topologyFindings(topology, overlaps?.crossings ?? null, parts, scale, symmetry),
+    ...(overlaps === null ? [] : overlapFindings(overlaps.crossings, parts, scale)),
+    ...(overlaps === null ? [] : coincidentFindings(overlaps.coincident, parts, scale)),
+    ...sliverFindings(slivers, parts, scale),
+    ...(cut === null || symmetry.cut !== "open"
+      ? []
+      : cutFindings(cutPlaneDeviation(mesh, cut.axis, cut.plane, cutTolerance / scale), scale)),
+    ...(fit?.findings ?? []),
     ...wheelFindings(parts, fitted, wheels, axles.length, vehicle, scale),
-    ...stanceFindings(stance, parts, scale, cell),
+    ...stanceFindings(stance, parts, scale, cell ?? along(vehicle.rearward) / usualCells),
     ...(leftOut ? [leftOutFinding(set.partOf.length)] : []),
   ];
   const area = (seen: { area: number; error: number }): ProjectedArea => ({
@@ -136,6 +165,7 @@ export function surveyBody(set: TriangleSet, asked: Partial<Orientation> & Surve
       bounds: box(inUnit.groups[k].bounds),
       frontalVisible: shares[k] * front.area * scale ** 2,
       frontalAlone: alone[k].area * scale ** 2,
+      topology: byPart[k],
     })),
     triangles: whole.triangles,
     vertices: mesh.vertices.length / 3,
@@ -177,13 +207,29 @@ export function surveyBody(set: TriangleSet, asked: Partial<Orientation> & Surve
       degenerate: topology.degenerate.count,
       duplicate: topology.duplicate.count,
       shells: topology.shells.count,
-      selfIntersections: crossings === null ? null : crossings.within.count,
+      selfIntersections: overlaps === null ? null : overlaps.crossings.within.count,
+      borders: bordersInMetres(topology.borders, parts, scale),
+      borderCount: topology.borderCount,
     },
     wheels: wheels.map((wheel) => wheelInMetres(wheel, stance, parts, scale)),
     wheelbase: wheelbase === null ? null : wheelbase * scale,
     stance: stanceInMetres(stance, parts, scale),
     symmetry: { kind: symmetry.kind, plane: symmetry.plane * scale, deviation: symmetry.deviation * scale },
-    leak,
+    leak: leaks.length > 0 ? leakInMetres(leaks[0], scale) : undefined,
+    fit: fit === null || cell === null ? null : fitInMetres(fit, cell, parts, scale),
+    slivers: { count: slivers.count, worst: slivers.worst },
+    coincident:
+      overlaps === null
+        ? null
+        : { same: overlaps.coincident.same.area * scale ** 2, opposite: overlaps.coincident.opposite.area * scale ** 2 },
+    overlaps:
+      overlaps === null
+        ? null
+        : overlaps.crossings.partPairs.map(({ a, b, count, places }) => ({
+            parts: [parts[a].name, parts[b].name],
+            pairs: count,
+            place: point(places[0]),
+          })),
     findings,
     verdict: findings.some(({ severity }) => severity === "error")
       ? "not-fit"

@@ -1,5 +1,7 @@
 import type { Leak } from "./checks/leak.js";
-import type { StanceSurvey, Wheel } from "./survey.js";
+import type { OpenBorder } from "./checks/open-loops.js";
+import type { FitAtCell } from "./fit-at-cell.js";
+import type { BorderSurvey, CellFitSurvey, StanceSurvey, Wheel } from "./survey.js";
 import type { Part } from "./triangle-set.js";
 import type { Vector3 } from "./vector.js";
 import type { Stance } from "./vehicle/stance.js";
@@ -50,8 +52,51 @@ export function stanceInMetres({ ground, track, overhangs, clearance }: Stance, 
   };
 }
 
-export const leakInMetres = ({ cell, reached, holes }: Leak, scale: number): Leak => ({
+export const leakInMetres = ({ cell, asked, reached, holes }: Leak, scale: number): Leak => ({
   cell: cell * scale,
+  ...(asked !== undefined && { asked: asked * scale }),
   reached,
-  holes: holes.map(({ centre, width }) => ({ centre: pointInMetres(centre, scale), width: width * scale })),
+  holes: holes.map(({ centre, width, doubt }) => ({
+    centre: pointInMetres(centre, scale),
+    width: width * scale,
+    ...(doubt !== undefined && { doubt: doubt * scale }),
+  })),
 });
+
+export function bordersInMetres(borders: OpenBorder[], parts: Part[], scale: number): BorderSurvey[] {
+  return borders.map((border) => ({
+    edges: border.edges,
+    length: border.length * scale,
+    span: border.span * scale,
+    centre: pointInMetres(border.centre, scale),
+    closed: border.closed,
+    parts: border.parts.map((part) => parts[part].name),
+  }));
+}
+
+export function fitInMetres({ leaks, cavities, cells }: FitAtCell, cell: number, parts: Part[], scale: number): CellFitSurvey {
+  const volume = ({ count, volume: own }: { count: number; volume: number }) => ({ count, volume: own * scale ** 3 });
+  const narrow = ({ least, median, cell: own, place }: { least: number; median: number; cell: number; place: Vector3 }) => ({
+    least: least * scale,
+    median: median * scale,
+    cell: own * scale,
+    place: pointInMetres(place, scale),
+  });
+  return {
+    cell,
+    leaks: leaks.map((leak) => leakInMetres(leak, scale)),
+    enclosed: cavities === null ? null : { inside: volume(cavities.inside), air: volume(cavities.air) },
+    thin: cells.thickness.thin.map((thin) => ({ part: parts[thin.part].name, share: thin.share, ...narrow(thin) })),
+    gaps: cells.gaps.narrow.map((gap) => ({
+      parts: [parts[gap.a].name, parts[gap.b].name],
+      area: gap.area * scale ** 2,
+      ...narrow(gap),
+    })),
+    sheets: cells.open.sheets.map(({ part, openEdges, exposed, place }) => ({
+      part: parts[part].name,
+      openEdges,
+      exposed,
+      place: pointInMetres(place, scale),
+    })),
+  };
+}

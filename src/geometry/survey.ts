@@ -1,5 +1,6 @@
 import type { Finding } from "../finding.js";
 import type { Leak } from "./checks/leak.js";
+import type { PartTopology } from "./topology.js";
 import type { SurfaceFile } from "./triangle-set.js";
 import type { Box, Vector3 } from "./vector.js";
 
@@ -36,6 +37,8 @@ export interface PartSurvey {
   frontalVisible: number;
   /** m²: the part's own silhouette along the flow, as if it were alone; the parts add up to more than the whole where they cover each other. */
   frontalAlone: number;
+  /** Edges and triangles of this part in the whole body, and its open edges if it were alone. */
+  topology: PartTopology;
 }
 
 /** Triangles that hang together by edges. Metres, file axes. */
@@ -61,6 +64,38 @@ export interface Topology {
   shells: number;
   /** Pairs of triangles of one shell that pass through each other; null where the check was left out. Shells may overlap. */
   selfIntersections: number | null;
+  /** Borders of open edges, the longest first, a hundred at most. Metres, file axes. */
+  borders: BorderSurvey[];
+  borderCount: number;
+}
+
+/** Open edges that hang together: the rim of a hole or of a sheet. Metres, file axes. */
+export interface BorderSurvey {
+  edges: number;
+  length: number;
+  /** diagonal of its box, and its middle */
+  span: number;
+  centre: Vector3;
+  /** runs back into itself */
+  closed: boolean;
+  /** names of the parts along it */
+  parts: string[];
+}
+
+/** How the body goes with the cells of a mesh. Metres, m², m³, file axes. */
+export interface CellFitSurvey {
+  /** edge of the surface cells */
+  cell: number;
+  /** the leak test at that cell and at half of it; empty where it was left out or had nothing to look at */
+  leaks: Leak[];
+  /** closed spaces that the cells cannot get into: the body's own insides, and air between parts; null without the leak test */
+  enclosed: { inside: { count: number; volume: number }; air: { count: number; volume: number } } | null;
+  /** parts thinner than two cells: share of their area, least and median thickness */
+  thin: { part: string; share: number; least: number; median: number; cell: number; place: Vector3 }[];
+  /** gaps narrower than two cells: area on both sides, least and median width */
+  gaps: { parts: [string, string]; area: number; least: number; median: number; cell: number; place: Vector3 }[];
+  /** open parts with air on both sides */
+  sheets: { part: string; openEdges: number; exposed: number; place: Vector3 }[];
 }
 
 /** One entry per wheel and part: tyre and rim of one wheel have the same centre, axis, radius and width. */
@@ -135,10 +170,18 @@ export interface Survey {
    */
   symmetry: { kind: "whole" | "half" | "none"; plane: number; deviation: number };
   /**
-   * Whether air gets into the inside through holes, and where, metres, file axes; holes narrower than `cell` count as closed. A
-   * surface without open edges cannot leak; absent where there was nothing to look at.
+   * Whether air gets into the inside through holes, and where, metres, file axes; holes narrower than `cell` count as closed. The first
+   * of `fit.leaks`; absent where there was nothing to look at.
    */
   leak?: Leak;
+  /** Null where no cell was wanted. */
+  fit: CellFitSurvey | null;
+  /** Triangles more than a thousand times as long as high, and the worst of them. */
+  slivers: { count: number; worst: number };
+  /** Area of faces that lie on others, in pairs that face the same way and opposite ways; null where the check was left out. */
+  coincident: { same: number; opposite: number } | null;
+  /** Pairs of parts that reach into each other, with the pairs of triangles that cross; null where the check was left out. */
+  overlaps: { parts: [string, string]; pairs: number; place: Vector3 }[] | null;
   findings: Finding[];
   verdict: "fit" | "fit-with-warnings" | "not-fit";
 }

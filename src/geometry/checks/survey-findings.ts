@@ -5,7 +5,6 @@ import type { Vector3 } from "../vector.js";
 import type { AxesGuess } from "../vehicle/orientation.js";
 import { leastLength, mostLength, type UnitGuess } from "../vehicle/unit-guess.js";
 import type { VehicleAxes, WheelFit } from "../vehicle/wheels.js";
-import type { Leak } from "./leak.js";
 
 /** Names for a message: twelve at most. */
 export function listedNames(names: string[]): string {
@@ -66,23 +65,6 @@ export function axesFindings(axes: AxesGuess): Finding[] {
       ),
     );
   return findings;
-}
-
-/** The ways by which air gets inside; places are the holes. */
-export function leakFindings(leak: Leak | undefined): Finding[] {
-  if (leak === undefined || !leak.reached) return [];
-  const { holes, cell } = leak;
-  const text = (value: number): string => `${Number(value.toPrecision(2))} m`;
-  const { centre, width } = holes[0];
-  return [
-    finding(
-      "leak",
-      "warning",
-      `Air gets into the inside: the widest way in is ${text(width)} wide at (${centre.map((value) => Number(value.toFixed(2))).join(", ")}), to about ${text(2 * cell)}. The mesh would fill the inside, and its walls would count as the body's.`,
-      "Close the hole, or expect the flow to pass through it.",
-      { count: holes.length, places: holes.map((hole) => hole.centre) },
-    ),
-  ];
 }
 
 /** Parts without triangles, unless all are. */

@@ -1,0 +1,98 @@
+import type { Finding } from "../finding.js";
+import { type Cavities, enclosedCavities } from "./checks/cavities.js";
+import { type CellFit, cellFitOf } from "./checks/cell-fit.js";
+import { gapFindings, inwardFindings, sheetFindings, thicknessFindings } from "./checks/fit-findings.js";
+import { type Cut, floodAir } from "./checks/flood.js";
+import { type Leak, leakOf } from "./checks/leak.js";
+import { cavityFindings, leakFindings } from "./checks/leak-findings.js";
+import type { SurfaceMesh } from "./surface-mesh.js";
+import type { Part } from "./triangle-set.js";
+import { type TriangleTree, triangleTree } from "./triangle-tree.js";
+import type { Box } from "./vector.js";
+
+/** What a body is to a mesh of given cells. Mesh unit and axes; findings in metres. */
+export interface FitAtCell {
+  /** The leak test at the surface cell, and at half of it. Empty where there was nothing to test, or it was left out. */
+  leaks: Leak[];
+  /** Closed spaces at the surface cell; null where the leak test was not made. */
+  cavities: Cavities | null;
+  cells: CellFit;
+  findings: Finding[];
+}
+
+/** A body as these checks want it. */
+export interface BodyToFit {
+  mesh: SurfaceMesh;
+  bounds: Box;
+  parts: Part[];
+  /** 1 per part: open edges */
+  openEdges: Uint32Array;
+  /** whether any edge is open, of more than two triangles, or between triangles that face opposite ways: only there can air get in */
+  mayLeak: boolean;
+  /** the plane of a half body, and whether it is open there; null for a whole one */
+  cut: (Cut & { open: boolean }) | null;
+  /** metres per mesh unit */
+  scale: number;
+  /** of the mesh, where it is there already */
+  tree?: TriangleTree;
+}
+
+/**
+ * Checks a body against the cells it is to be meshed with: leaks at that size and at half of it, air that is closed off, thin parts,
+ * narrow gaps, sheets.
+ *
+ * @param cell surface cell of the mesh, mesh unit
+ * @param cellOfPart 1 per part: its own, where parts differ
+ * @param leakTest false leaves out the flood, which takes longest
+ */
+export function fitAtCell(
+  { mesh, bounds, parts, openEdges, mayLeak, cut, scale, tree = triangleTree(mesh) }: BodyToFit,
+  cell: number,
+  { cellOfPart, leakTest = true }: { cellOfPart?: ArrayLike<number>; leakTest?: boolean } = {},
+): FitAtCell {
+  const cells = cellFitOf(mesh, openEdges, cellOfPart ?? new Float64Array(parts.length).fill(cell), cut?.open ? cut : null, tree);
+  const findings = [
+    ...sheetFindings(cells.open.sheets, parts, scale),
+    ...inwardFindings(cells.open.inward, parts, scale),
+    ...thicknessFindings(cells.thickness, parts, scale),
+    ...gapFindings(cells.gaps, parts, scale),
+  ];
+  if (!leakTest || mesh.partOf.length === 0) return { leaks: [], cavities: null, cells, findings };
+  const leaksAt = (edge: number): Leak[] => {
+    const fine = floodAir(mesh, bounds, cut, edge, { tree });
+    return fine === null ? [] : [leakOf(fine, mesh)];
+  };
+  const flood = floodAir(mesh, bounds, cut, cell, { tree });
+  if (flood === null) return { leaks: [], cavities: null, cells, findings: [...leakFindings(null, scale), ...findings] };
+  const leak = leakOf(flood, mesh);
+  const cavities = enclosedCavities(flood);
+  const finer = mayLeak ? leaksAt(cell / 2) : [{ cell: cell / 2, reached: false, holes: [] }];
+  return {
+    leaks: [leak, ...finer],
+    cavities,
+    cells,
+    findings: [...leaksInWords(leak, finer, scale), ...cavityFindings(cavities, scale), ...findings],
+  };
+}
+
+/** What the half cell lets through is worth knowing only where the cell itself lets nothing through. */
+function leaksInWords(leak: Leak, finer: Leak[], scale: number): Finding[] {
+  const own = leakFindings(leak, scale);
+  if (leak.reached) return own;
+  return [
+    ...own,
+    ...finer
+      .flatMap((half) => leakFindings(half, scale))
+      .map(
+        (found): Finding =>
+          found.code === "leak"
+            ? {
+                ...found,
+                code: "leak-at-half-cell",
+                severity: "note",
+                remedy: `${found.remedy} At the cell itself it counts as closed.`,
+              }
+            : found,
+      ),
+  ];
+}
