@@ -48,7 +48,7 @@ export const command: CommandModule<Options> = {
         plan,
       });
       printPlan(print, plan);
-      for (const each of planned) printCaseFindings(print, each);
+      printCaseFindings(print, planned);
       return exitCode.done;
     }
     const prepared = await prepareStudy(study, { again: options.again === true, accept: options.accept === true });
@@ -83,19 +83,23 @@ export const command: CommandModule<Options> = {
         print.colours.bold,
       ),
     );
-    for (const each of prepared) {
-      for (const remark of each.remarks) print.note(`${each.variant} ${each.condition}: ${remark}`);
-      printCaseFindings(print, each);
-    }
+    for (const each of prepared) for (const remark of each.remarks) print.note(`${each.variant} ${each.condition}: ${remark}`);
+    printCaseFindings(print, prepared);
     print.line(`next: dragledger run ${args[0]}`);
     return exitCode.done;
   },
 };
 
-function printCaseFindings(print: Printer, { variant, condition, findings }: PlannedCase): void {
-  if (findings.length === 0) return;
-  print.line(`${variant} ${condition}:`);
-  printFindings(print, findings);
+/** What is odd about each case; what was said of one of them already is not said of the next. */
+function printCaseFindings(print: Printer, cases: PlannedCase[]): void {
+  const said = new Set<string>();
+  for (const { variant, condition, findings } of cases) {
+    const fresh = findings.filter(({ code, message }) => !said.has(`${code} ${message}`));
+    for (const { code, message } of fresh) said.add(`${code} ${message}`);
+    if (fresh.length === 0) continue;
+    print.line(`${variant} ${condition}:`);
+    printFindings(print, fresh, { briefNotes: true });
+  }
 }
 
 const valueText = (value: PlannedNumber["value"]): string =>

@@ -1,11 +1,14 @@
 import { inputProblem } from "../errors.js";
 import { type Finding, finding } from "../finding.js";
 import { readSurfaces } from "../geometry/files/read.js";
+import { fitSurveyed } from "../geometry/fit-at-cell.js";
 import { surveyBody } from "../geometry/survey-body.js";
 import { conditionsOf } from "../study/conditions.js";
 import { requireMatches, rotatingParts } from "../study/part-rules.js";
 import type { Study, Variant } from "../study/study.js";
+import { caseBounds } from "./body-in-case.js";
 import { caseContent } from "./case-content.js";
+import { levelOf } from "./grid.js";
 import { sha256OfFile } from "./hash.js";
 import type { CasePlan } from "./plan.js";
 import { planCase } from "./plan-case.js";
@@ -72,7 +75,14 @@ export async function prepareStudy(study: Study, options: PrepareOptions = {}): 
 function planBodies(study: Study, bodies: VariantBody[]): PlannedCase[] {
   const frame = frameOf(study, bodies, conditionsOf(study));
   const stands = new Map(
-    bodies.map((body) => [body.variant, { body, findings: fitVariant(study, frame, body), ...predictedFor(study, frame, body) }]),
+    bodies.map((body) => [
+      body.variant,
+      {
+        body,
+        findings: [...fitVariant(study, frame, body), ...fitForCells(body, frame)],
+        ...predictedFor(study, frame, body),
+      },
+    ]),
   );
   return studyCases(study).map(({ path, variant, condition }) => {
     const { body, findings, cells, exposed } = stands.get(variant.name)!;
@@ -107,9 +117,22 @@ async function readBody(study: Study, variant: Variant): Promise<VariantBody> {
     set.parts.map(({ name }) => name),
   );
   const { unit, travel, up } = study.body;
-  // Without a rule the survey tells wheels by their names.
-  const survey = surveyBody(set, { unit, travel, up, ...(wheelParts.length > 0 ? { wheelParts } : {}) });
+  // Without a rule the survey tells wheels by their names. Its cells are not known yet: see `fitForCells`.
+  const survey = surveyBody(set, { unit, travel, up, cell: null, ...(wheelParts.length > 0 ? { wheelParts } : {}) });
   return { variant: variant.name, set, survey };
+}
+
+/** Leaks, thin parts, gaps and closed air at the cells that the mesh will have at each part. */
+function fitForCells({ set, survey }: VariantBody, { grid, placement }: StudyFrame): Finding[] {
+  const cellOf = new Map(
+    survey.parts
+      .filter(({ triangles }) => triangles > 0)
+      .map(({ patch, bounds }) => [
+        patch,
+        grid.domain.baseCell / 2 ** levelOf({ patch, bounds: caseBounds(bounds, placement) }, grid),
+      ]),
+  );
+  return fitSurveyed(set, survey, grid.surfaceCell, cellOf).findings;
 }
 
 function requireFit({ variant, survey }: VariantBody): void {

@@ -5,8 +5,11 @@ import { gapFindings, inwardFindings, sheetFindings, thicknessFindings } from ".
 import { type Cut, floodAir } from "./checks/flood.js";
 import { type Leak, leakOf } from "./checks/leak.js";
 import { cavityFindings, leakFindings } from "./checks/leak-findings.js";
-import type { SurfaceMesh } from "./surface-mesh.js";
-import type { Part } from "./triangle-set.js";
+import { metresPer, vehicleAxes } from "./place.js";
+import { type SurfaceMesh, surfaceMesh } from "./surface-mesh.js";
+import type { Survey } from "./survey.js";
+import { topologyOf } from "./topology.js";
+import type { Part, TriangleSet } from "./triangle-set.js";
 import { type TriangleTree, triangleTree } from "./triangle-tree.js";
 import type { Box } from "./vector.js";
 
@@ -73,6 +76,38 @@ export function fitAtCell(
     cells,
     findings: [...leaksInWords(leak, finer, scale), ...cavityFindings(cavities, scale), ...findings],
   };
+}
+
+/**
+ * The same for a body that has been surveyed without cells, once they are known. Cells in metres.
+ *
+ * @param cellOf edge of the cells at each part, by name of its patch; the surface cell where it has none
+ */
+export function fitSurveyed(
+  set: TriangleSet,
+  { unit, symmetry, axes, topology }: Survey,
+  cell: number,
+  cellOf: ReadonlyMap<string, number> = new Map(),
+): FitAtCell {
+  const mesh = surfaceMesh(set);
+  const tree = triangleTree(mesh);
+  const scale = metresPer[unit.value];
+  const open = topologyOf(mesh, set.parts.length).open.perPart;
+  const axis = vehicleAxes(axes).right.findIndex((value) => value !== 0);
+  return fitAtCell(
+    {
+      mesh,
+      bounds: { min: [tree.low[0], tree.low[1], tree.low[2]], max: [tree.high[0], tree.high[1], tree.high[2]] },
+      parts: set.parts,
+      openEdges: open,
+      mayLeak: topology.openEdges + topology.nonManifoldEdges + topology.flippedEdges > 0,
+      cut: symmetry.kind === "half" ? { axis, plane: symmetry.plane / scale, open: topology.openEdges > 0 } : null,
+      scale,
+      tree,
+    },
+    cell / scale,
+    { cellOfPart: set.parts.map(({ patch }) => (cellOf.get(patch) ?? cell) / scale) },
+  );
 }
 
 /** What the half cell lets through is worth knowing only where the cell itself lets nothing through. */

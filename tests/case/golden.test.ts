@@ -55,11 +55,13 @@ describe("the sample study", () => {
     expect(Math.abs(plan.mesh.predictedCells.value / made - 1)).toBeLessThan(0.05);
   });
 
-  test("its bodies stand in the domain without a remark", () => {
-    expect(planned.map(({ variant, findings }) => [variant, findings])).toEqual([
-      ["open-bed", []],
-      ["covered-bed", []],
-      ["tailgate-down", []],
+  test("what its bodies are to its cells: one warning, of the cover that is thinner than a cell", () => {
+    const said = planned.map(({ variant, findings }) => [variant, ...findings.map(({ code, severity }) => `${severity} ${code}`)]);
+    expect(said).toEqual([
+      ["open-bed", "note thin-part", "note narrow-gap"],
+      ["covered-bed", "note enclosed-air", "warning thin-part", "note thin-part", "note narrow-gap"],
+      ["tailgate-down", "note thin-part", "note narrow-gap"],
     ]);
+    expect(planned[1]!.findings[1]).toMatchObject({ part: "bed-cover" });
   });
 });

@@ -174,7 +174,7 @@ export function thicknessFindings(thickness: Thickness, parts: Part[], scale: nu
     finding(
       "thin-part",
       severity,
-      `${counted(found.length, "part is", "parts are")} thinner than ${thickness.cells} surface cells: ${firstOf(found.map(words), 4)}. ${severity === "warning" ? "The mesh can lose such a wall or tear holes into it." : "The mesh rounds such a wall off, and can tear it below one cell."} ${sampled(thickness)}`,
+      `${counted(found.length, "part is", "parts are")} thinner than ${thickness.cells} surface cells: ${firstOf(found.map(words), 4)}. ${severity === "warning" ? "The mesh can lose such a wall or tear holes into it." : "The mesh rounds such a wall off, and can tear it below one cell."}${sampled(thickness)}`,
       "Refine there to at least two cells across, or give the part more thickness.",
       {
         count: found.length,
@@ -195,7 +195,7 @@ export function gapFindings(gaps: Gaps, parts: Part[], scale: number): Finding[]
     finding(
       "narrow-gap",
       severity,
-      `${counted(found.length, "gap is", "gaps are")} narrower than ${gaps.cells} surface cells: between ${firstOf(found.map(words), 4)}. The mesh closes such a gap or fills it with one ragged cell, and the flow through it is not that of the shape. ${sampled(gaps)}`,
+      `${counted(found.length, "gap is", "gaps are")} narrower than ${gaps.cells} surface cells: between ${firstOf(found.map(words), 4)}. The mesh closes such a gap or fills it with one ragged cell, and the flow through it is not that of the shape.${sampled(gaps)}`,
       "Refine there to at least two cells across, or close the gap on purpose, in all variants alike.",
       {
         count: found.length,
@@ -217,9 +217,7 @@ function bySeverity<T>(found: T[], isWarning: (entry: T) => boolean): ["warning"
 }
 
 const sampled = ({ rays, sampledTriangles, triangles }: Pick<Gaps, "rays" | "sampledTriangles" | "triangles">): string =>
-  sampledTriangles < triangles
-    ? `(${rays} rays from ${sampledTriangles} of ${triangles} triangles.)`
-    : `(${rays} rays from all triangles.)`;
+  sampledTriangles < triangles ? ` (${rays} rays from ${sampledTriangles} of ${triangles} triangles.)` : "";
 
 /** The cut of a half body against its plane. `scale`: metres per mesh unit. */
 export function cutFindings(cut: CutDeviation, scale: number): Finding[] {
