@@ -1,10 +1,10 @@
 import type { Finding } from "../finding.js";
-import { type Cavities, enclosedCavities } from "./checks/cavities.js";
+import { type Cavities, enclosedCavities } from "./air/cavities.js";
+import { type Cut, floodAir } from "./air/flood.js";
+import { type Leak, leakOf } from "./air/leak.js";
+import { cavityFindings, leakFindings } from "./air/leak-findings.js";
 import { type CellFit, cellFitOf } from "./checks/cell-fit.js";
 import { gapFindings, inwardFindings, sheetFindings, thicknessFindings } from "./checks/fit-findings.js";
-import { type Cut, floodAir } from "./checks/flood.js";
-import { type Leak, leakOf } from "./checks/leak.js";
-import { cavityFindings, leakFindings } from "./checks/leak-findings.js";
 import { metresPer, vehicleAxes } from "./place.js";
 import { type SurfaceMesh, surfaceMesh } from "./surface-mesh.js";
 import type { Survey } from "./survey.js";

@@ -1,4 +1,4 @@
-import type { Leak } from "./checks/leak.js";
+import type { Leak } from "./air/leak.js";
 import type { OpenBorder } from "./checks/open-loops.js";
 import type { FitAtCell } from "./fit-at-cell.js";
 import type { BorderSurvey, CellFitSurvey, StanceSurvey, Wheel } from "./survey.js";

@@ -1,5 +1,5 @@
 import type { Finding } from "../finding.js";
-import type { Leak } from "./checks/leak.js";
+import type { Leak } from "./air/leak.js";
 import type { PartTopology } from "./topology.js";
 import type { SurfaceFile } from "./triangle-set.js";
 import type { Box, Vector3 } from "./vector.js";

@@ -1,6 +1,6 @@
 import { existsSync } from "node:fs";
 import { describe, expect, it } from "vitest";
-import { findLeak, type Leak } from "../../../src/geometry/checks/leak.js";
+import { findLeak, type Leak } from "../../../src/geometry/air/leak.js";
 import { readSurfaces } from "../../../src/geometry/files/read.js";
 import { measures } from "../../../src/geometry/measures.js";
 import { surfaceMesh } from "../../../src/geometry/surface-mesh.js";

@@ -1,6 +1,6 @@
 import { describe, expect, it } from "vitest";
-import type { Cavity } from "../../../src/geometry/checks/cavities.js";
-import { cavityFindings, keepPointFindings, leakFindings } from "../../../src/geometry/checks/leak-findings.js";
+import type { Cavity } from "../../../src/geometry/air/cavities.js";
+import { cavityFindings, keepPointFindings, leakFindings } from "../../../src/geometry/air/leak-findings.js";
 
 describe("leakFindings", () => {
   it("says where, how wide and at which cell, in metres of a body in millimetres", () => {

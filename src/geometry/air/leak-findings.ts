@@ -1,7 +1,7 @@
 import { type Finding, finding } from "../../finding.js";
+import { counted, lengthWords, scaledPlaces } from "../checks/finding-words.js";
 import type { Vector3 } from "../vector.js";
 import type { Cavities } from "./cavities.js";
-import { counted, lengthWords, scaledPlaces } from "./finding-words.js";
 import type { KeepPointProof } from "./keep-point.js";
 import type { Leak } from "./leak.js";
 

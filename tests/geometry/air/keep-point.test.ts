@@ -1,7 +1,7 @@
 import { describe, expect, it } from "vitest";
-import { type AirFlood, floodAir } from "../../../src/geometry/checks/flood.js";
-import { findKeepPoint, provesKeepPoint } from "../../../src/geometry/checks/keep-point.js";
-import { leakOf } from "../../../src/geometry/checks/leak.js";
+import { type AirFlood, floodAir } from "../../../src/geometry/air/flood.js";
+import { findKeepPoint, provesKeepPoint } from "../../../src/geometry/air/keep-point.js";
+import { leakOf } from "../../../src/geometry/air/leak.js";
 import { measures } from "../../../src/geometry/measures.js";
 import { surfaceMesh } from "../../../src/geometry/surface-mesh.js";
 import type { Vector3 } from "../../../src/geometry/vector.js";
