@@ -1,6 +1,6 @@
-import type { ProjectedArea, Survey } from "../../src/geometry/survey.js";
+import type { CellFitSurvey, ProjectedArea, Survey } from "../../src/geometry/survey.js";
 import type { Box } from "../../src/geometry/vector.js";
-import { fixed, thousands } from "../../src/number-text.js";
+import { fixed, significant, thousands } from "../../src/number-text.js";
 import { printFindings } from "./findings.js";
 import type { Printer } from "./printer.js";
 import { table } from "./table.js";
@@ -101,6 +101,9 @@ export function printSurvey(print: Printer, survey: Survey, domain: Box & { bloc
       `${t.degenerate} degenerate, ${t.duplicate} duplicate triangles`,
   );
 
+  for (const line of borders(survey)) print.line(line);
+  if (survey.fit !== null) print.line(`  ${cellText(survey.fit)}`);
+
   if (survey.findings.length > 0) {
     print.heading("Findings");
     printFindings(print, survey.findings);
@@ -135,6 +138,27 @@ function stance({ wheelbase, stance: { track, overhangs, clearance } }: Survey):
   if (clearance !== null && wheelbase !== null)
     lines.push(`  clearance       ${metres(clearance.height)} m above the ground (${clearance.part})`);
   return lines;
+}
+
+/** The longest open borders: where to look for holes. */
+function borders({ topology: { borders: longest, borderCount } }: Survey): string[] {
+  const lines = longest
+    .slice(0, 3)
+    .map(
+      (border) =>
+        `  open border of ${border.edges} edges, ${fixed(border.length, 3)} m long, ${fixed(border.span, 3)} m across, at (${border.centre.map((x) => fixed(x, 3)).join(", ")}) m: ${border.parts.slice(0, 3).join(", ")}`,
+    );
+  if (borderCount > lines.length) lines.push(`  and ${borderCount - lines.length} more borders`);
+  return lines;
+}
+
+function cellText({ cell, leaks, enclosed }: CellFitSurvey): string {
+  const mm = (metres: number): string => `${fixed(1000 * metres, 1)} mm`;
+  if (leaks.length === 0) return `surface cell ${mm(cell)}: leak test left out`;
+  const tests = leaks.map((leak) => `${leak.reached ? "air gets in" : "no air gets in"} at ${mm(leak.cell)}`).join(", ");
+  const air =
+    enclosed === null || enclosed.air.count === 0 ? "" : `; ${significant(enclosed.air.volume, 2)} m³ of air closed off between parts`;
+  return `surface cell ${mm(cell)}: ${tests}${air}`;
 }
 
 function symmetryText({ symmetry }: Survey): string {
