@@ -37,7 +37,31 @@ describe.skipIf(missing !== null)(`the motorcycle${missing ? ` (${missing})` : "
     expect(survey.triangles).toBeGreaterThan(300_000);
     expect(new Set(survey.parts.map((part: { patch: string }) => part.patch)).size).toBe(67);
     expect(survey.topology.openEdges + survey.topology.nonManifoldEdges).toBeGreaterThan(0);
-    expect(survey.findings.length).toBeGreaterThan(0);
+    // Every finding says what, why, where and what to do.
+    const found = new Map<string, { part: string | null; count: number; message: string; remedy: string; places: number[][] }>(
+      survey.findings.map((finding: { code: string }) => [finding.code, finding]),
+    );
+    for (const { message, remedy, count } of found.values()) {
+      expect(message).toMatch(/\.\)?$/);
+      expect(remedy.length).toBeGreaterThan(5);
+      expect(count).toBeGreaterThan(0);
+    }
+    // Both tyres are open where they stand on the ground, and inside out; a quarter of the triangles is there twice.
+    for (const code of ["open-edges", "non-manifold-edges", "duplicate-triangles", "leak", "inward-part", "thin-part"])
+      expect([...found.keys()]).toContain(code);
+    expect(survey.topology.borders.map(({ parts }: { parts: string[] }) => parts[0]).sort()).toEqual([
+      expect.stringContaining("fr-wh-tyre"),
+      expect.stringContaining("rr-wh-tyre"),
+    ]);
+    // The leak test at the cell and at half of it: the same two ways in, at the lowest points of the wheels.
+    expect(survey.fit.leaks.map(({ cell }: { cell: number }) => cell / survey.fit.cell)).toEqual([1, 0.5]);
+    for (const { reached, holes } of survey.fit.leaks) {
+      expect(reached).toBe(true);
+      const near = (x: number) =>
+        holes.some(({ centre }: { centre: number[] }) => Math.abs(centre[0]! - x) < 0.03 && centre[2]! < 0.01);
+      expect([near(0), near(1.42)]).toEqual([true, true]);
+    }
+    expect(survey.wheels.map(({ position }: { position: string }) => position)).toContain("front");
     expect([0, 3]).toContain(code);
   });
 
