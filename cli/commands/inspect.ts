@@ -1,10 +1,13 @@
 import { Option } from "commander";
 import { boundingDomain } from "../../src/flow/domain.js";
 import { readSurfaces } from "../../src/geometry/files/read.js";
+import { writeRepaired } from "../../src/geometry/files/write-repaired.js";
+import { repair } from "../../src/geometry/repair/repair.js";
 import type { LengthUnit, SignedAxis } from "../../src/geometry/survey.js";
 import { surveyBody } from "../../src/geometry/survey-body.js";
 import type { CommandModule } from "../command.js";
 import { exitCode } from "../context.js";
+import { printRepair } from "../print/repair.js";
 import { printSurvey } from "../print/survey.js";
 import { each, quantity } from "../values.js";
 
@@ -16,6 +19,7 @@ interface Options {
   yaw?: number[];
   cell?: number;
   full?: boolean;
+  repair?: string;
 }
 
 const signedAxes = ["+x", "-x", "+y", "-y", "+z", "-z"];
@@ -39,6 +43,10 @@ export const command: CommandModule<Options> = {
         "cell of the mesh at the surface to be fit for, such as 20mm; else a two-hundredth of the length",
         quantity("length"),
       )
+      .option(
+        "--repair <file.stl>",
+        "write a repaired body to a new file: copies and cracks of rounding removed, triangles facing one way and outwards; lists each change",
+      )
       .option("--full", "the slow checks (self-intersections, leak test) also above a million triangles");
   },
   examples: [
@@ -57,8 +65,15 @@ export const command: CommandModule<Options> = {
       full: options.full,
     });
     const domain = boundingDomain(survey);
-    print.document("inspect", { ...survey, domain });
+    const repaired = options.repair === undefined ? null : repair(set);
+    if (repaired !== null) await writeRepaired(options.repair!, repaired.set);
+    print.document("inspect", {
+      ...survey,
+      domain,
+      ...(repaired !== null && { repair: { path: options.repair, changes: repaired.changes, left: repaired.left } }),
+    });
     printSurvey(print, survey, domain);
+    if (repaired !== null) printRepair(print, options.repair!, repaired);
     return survey.verdict === "not-fit" ? exitCode.no : exitCode.done;
   },
 };

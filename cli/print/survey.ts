@@ -157,7 +157,9 @@ function cellText({ cell, leaks, enclosed }: CellFitSurvey): string {
   if (leaks.length === 0) return `surface cell ${mm(cell)}: leak test left out`;
   const tests = leaks.map((leak) => `${leak.reached ? "air gets in" : "no air gets in"} at ${mm(leak.cell)}`).join(", ");
   const air =
-    enclosed === null || enclosed.air.count === 0 ? "" : `; ${significant(enclosed.air.volume, 2)} m³ of air closed off between parts`;
+    enclosed === null || enclosed.air.count === 0
+      ? ""
+      : `; ${significant(enclosed.air.volume, 2)} m³ of air closed off between parts`;
   return `surface cell ${mm(cell)}: ${tests}${air}`;
 }
 
