@@ -1,12 +1,12 @@
 import { stat } from "node:fs/promises";
 import { resolve } from "node:path";
 import { Option } from "commander";
-import writeFileAtomic from "write-file-atomic";
 import { inputProblem } from "../../src/errors.js";
 import type { History } from "../../src/history/history.js";
 import { lastRows } from "../../src/history/last-rows.js";
 import { readCaseHistories } from "../../src/history/read-case.js";
 import { readHistoryFile } from "../../src/history/read-file.js";
+import { writeWhole } from "../../src/write-whole.js";
 import type { CommandModule } from "../command.js";
 import { exitCode } from "../context.js";
 import { historyCsv, printHistories } from "../print/history.js";
@@ -52,7 +52,7 @@ export const command: CommandModule<Options> = {
     if (options.csv === true) print.raw(historyCsv(read.map(({ history }) => history)));
     else printHistories(print, summaries, options.last);
     if (typeof options.csv === "string") {
-      await writeFileAtomic(options.csv, historyCsv(read.map(({ history }) => history)));
+      await writeWhole(options.csv, historyCsv(read.map(({ history }) => history)));
       print.note(`wrote ${options.csv}`);
     }
     return summaries.some((each) => each.findings.some((found) => found.severity === "error")) ? exitCode.no : exitCode.done;

@@ -1,10 +1,10 @@
 import { existsSync } from "node:fs";
 import { basename, dirname, relative, resolve } from "node:path";
-import writeFileAtomic from "write-file-atomic";
 import { inputProblem } from "../../src/errors.js";
 import { readSurfaces } from "../../src/geometry/files/read.js";
 import { surveyBody } from "../../src/geometry/survey-body.js";
 import { draftStudy } from "../../src/study/draft.js";
+import { writeWhole } from "../../src/write-whole.js";
 import type { CommandModule } from "../command.js";
 import { exitCode } from "../context.js";
 
@@ -42,7 +42,7 @@ export const command: CommandModule<Options> = {
       files: files.map((file) => relative(dirname(path), file)),
       survey,
     });
-    await writeFileAtomic(path, text);
+    await writeWhole(path, text);
     const guesses = text
       .split("\n")
       .filter((line) => line.includes("GUESS"))

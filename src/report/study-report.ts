@@ -1,5 +1,4 @@
 import { dirname, isAbsolute, relative } from "node:path";
-import writeFileAtomic from "write-file-atomic";
 import { compareCases } from "../compare/compare-cases.js";
 import { buildLedger } from "../ledger/build.js";
 import type { CaseRecord } from "../ledger/case-record.js";
@@ -7,6 +6,7 @@ import { settleRecord } from "../ledger/converged.js";
 import { windowOf } from "../ledger/window.js";
 import { packageVersion } from "../package-files.js";
 import type { Study } from "../study/study.js";
+import { writeWhole } from "../write-whole.js";
 import { reportModel } from "./model.js";
 import { readBodies } from "./read-bodies.js";
 import { readMesh } from "./read-mesh.js";
@@ -42,7 +42,7 @@ export async function writeStudyReport(
     }),
     options,
   );
-  await writeFileAtomic(path, page);
+  await writeWhole(path, page);
   return { path, bytes: Buffer.byteLength(page) };
 }
 

@@ -1,7 +1,7 @@
 import { stat } from "node:fs/promises";
 import { resolve } from "node:path";
-import writeFileAtomic from "write-file-atomic";
 import { inputProblem } from "../../errors.js";
+import { writeWhole } from "../../write-whole.js";
 import type { TriangleSet } from "../triangle-set.js";
 import { asciiStl, binaryStl } from "./write-stl.js";
 
@@ -10,7 +10,7 @@ import { asciiStl, binaryStl } from "./write-stl.js";
  * body was read from, by whatever path or link it is named, and over any other only when told. The file appears under its name when it
  * is whole.
  *
- * @throws Problem(input) `would-overwrite-input`, `file-exists`, `not-an-stl-name`, `coordinate-not-finite`.
+ * @throws Problem(input) `would-overwrite-input`, `file-exists`, `not-an-stl-name`, `cannot-write`, `coordinate-not-finite`.
  */
 export async function writeRepaired(path: string, set: TriangleSet, { overwrite = false } = {}): Promise<void> {
   if (!/\.stl$/i.test(path))
@@ -39,5 +39,5 @@ export async function writeRepaired(path: string, set: TriangleSet, { overwrite 
       where: path,
       remedy: "Give another name, or remove the file first.",
     });
-  await writeFileAtomic(path, Buffer.from(set.parts.length > 1 ? asciiStl(set, (part) => part.name) : binaryStl(set)));
+  await writeWhole(path, set.parts.length > 1 ? asciiStl(set, (part) => part.name) : binaryStl(set));
 }
