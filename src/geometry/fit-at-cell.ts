@@ -69,7 +69,8 @@ export function fitAtCell(
   if (flood === null) return { leaks: [], cavities: null, cells, findings: [...leakFindings(null, scale), ...findings] };
   const leak = leakOf(flood, mesh);
   const cavities = enclosedCavities(flood);
-  const finer = mayLeak ? leaksAt(cell / 2) : [{ cell: cell / 2, reached: false, holes: [] }];
+  // What lets a cell through lets half of it through, and where nothing is open nothing passes: the fine flood is the dearest.
+  const finer = leak.reached || !mayLeak ? [{ cell: cell / 2, reached: leak.reached, holes: leak.holes }] : leaksAt(cell / 2);
   return {
     leaks: [leak, ...finer],
     cavities,

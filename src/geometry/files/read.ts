@@ -54,6 +54,40 @@ export async function readSurfaces(paths: string[], { piece = PIECE }: { piece?:
   return into.finish();
 }
 
+/**
+ * The same for one file whose bytes are at hand, not packed. `name` is what the file is called: it tells OBJ from other text and names a
+ * part without a name of its own.
+ *
+ * @throws Problem(input) as `readSurfaces`.
+ */
+export function parseSurface(name: string, bytes: Uint8Array): TriangleSet {
+  if (bytes.length === 0) throw emptyFile(name, "The file is empty (0 bytes).");
+  const opened: Opened = { path: name, packed: false, size: bytes.length, head: bytes.subarray(0, HEAD) };
+  const format = formatOf(opened);
+  const into = new TriangleBuilder();
+  const file: SurfaceFile = { path: name, format, triangles: 0 };
+  into.files.push(file);
+  const reader = readerFor(opened, format, into);
+  // The text readers want white space after the last word.
+  const buffer = new Uint8Array(bytes.length + 1);
+  buffer.set(bytes);
+  buffer[bytes.length] = 10;
+  try {
+    reader.read(buffer, bytes.length, true);
+    reader.finish(bytes.length);
+  } catch (cause) {
+    if (!(cause instanceof TextFault)) throw cause;
+    const lines = new LineCount(cause.byte);
+    lines.add(bytes);
+    throw lines.problem(name, cause);
+  }
+  file.triangles = into.triangles;
+  return into.finish();
+}
+
+const emptyFile = (path: string, message: string): Problem =>
+  inputProblem({ code: "file-empty", message, where: path, remedy: "Export the surface again." });
+
 async function readSurface(path: string, into: TriangleBuilder, piece: number): Promise<void> {
   if (into.files.some((file) => resolve(file.path) === resolve(path)))
     throw inputProblem({
@@ -97,24 +131,12 @@ async function look(path: string): Promise<Opened> {
   const handle = await opening(path);
   try {
     const { size } = await handle.stat();
-    if (size === 0)
-      throw inputProblem({
-        code: "file-empty",
-        message: "The file is empty (0 bytes).",
-        where: path,
-        remedy: "Export the surface again.",
-      });
+    if (size === 0) throw emptyFile(path, "The file is empty (0 bytes).");
     const raw = await bytesAt(handle, 0, HEAD);
     if (raw[0] !== 0x1f || raw[1] !== 0x8b) return { path, packed: false, size, head: raw };
     const tail = await bytesAt(handle, Math.max(0, size - 4), 4);
     const head = await unpackedHead(path);
-    if (head.length === 0)
-      throw inputProblem({
-        code: "file-empty",
-        message: "The packed file holds nothing (0 bytes).",
-        where: path,
-        remedy: "Export the surface again.",
-      });
+    if (head.length === 0) throw emptyFile(path, "The packed file holds nothing (0 bytes).");
     return { path, packed: true, size: tail.length < 4 ? 0 : new DataView(tail.buffer, tail.byteOffset).getUint32(0, true), head };
   } finally {
     await handle.close();
@@ -286,23 +308,35 @@ async function feed(opened: Opened, reader: PieceReader, piece: number): Promise
 
 /** The problem of a text fault: adds the file and the line, which is counted only now. */
 async function located(opened: Opened, fault: TextFault): Promise<Problem> {
-  let line = 1;
-  let left = fault.byte;
-  // Line ends are line feeds, or carriage returns in old files that have nothing else.
-  let returns = 1;
+  const lines = new LineCount(fault.byte);
   const source = opened.packed ? unpacked(opened.path, 1 << 20) : createReadStream(opened.path, { highWaterMark: 1 << 20 });
-  for await (const piece of source as AsyncIterable<Uint8Array>) {
-    const part = left < piece.length ? piece.subarray(0, left) : piece;
-    for (let at = part.indexOf(10); at >= 0; at = part.indexOf(10, at + 1)) line++;
-    for (let at = part.indexOf(13); line === 1 && at >= 0; at = part.indexOf(13, at + 1)) returns++;
-    left -= part.length;
-    if (left <= 0) break;
+  for await (const piece of source as AsyncIterable<Uint8Array>) if (lines.add(piece)) break;
+  return lines.problem(opened.path, fault);
+}
+
+/** Counts the lines up to a byte. Line ends are line feeds, or carriage returns in old files that have nothing else. */
+class LineCount {
+  private line = 1;
+  private returns = 1;
+
+  constructor(private left: number) {}
+
+  /** True when the byte has been reached. */
+  add(piece: Uint8Array): boolean {
+    const part = this.left < piece.length ? piece.subarray(0, this.left) : piece;
+    for (let at = part.indexOf(10); at >= 0; at = part.indexOf(10, at + 1)) this.line++;
+    for (let at = part.indexOf(13); this.line === 1 && at >= 0; at = part.indexOf(13, at + 1)) this.returns++;
+    this.left -= part.length;
+    return this.left <= 0;
   }
-  return inputProblem({
-    code: fault.code,
-    message: fault.message,
-    where: `${opened.path}, line ${line === 1 ? returns : line}, byte ${fault.byte}`,
-    remedy: fault.remedy,
-    cause: fault,
-  });
+
+  problem(path: string, fault: TextFault): Problem {
+    return inputProblem({
+      code: fault.code,
+      message: fault.message,
+      where: `${path}, line ${this.line === 1 ? this.returns : this.line}, byte ${fault.byte}`,
+      remedy: fault.remedy,
+      cause: fault,
+    });
+  }
 }
