@@ -45,14 +45,18 @@ export function orient(mesh: SurfaceMesh): Orientation {
   const { groups } = measures({ vertices: mesh.vertices, corners: turned }, patchOf, patches.length);
   let waiting = patches.flatMap((patch, k) => (patch.closed && !patch.oneSided && groups[k].volume < 0 ? [k] : []));
   const cavities: number[] = [];
+  const samples = samplesOf(mesh, patchOf, patches.length, waiting);
   while (waiting.length > 0) {
-    const outer = waiting.filter((k) => !waiting.some((other) => other !== k && holds(groups[other].bounds, groups[k].bounds)));
+    const outer = unheld(
+      waiting,
+      groups.map(({ bounds }) => bounds),
+    );
     // Two boxes that are the same hold each other: then all are looked at at once.
     const now = outer.length > 0 ? outer : waiting;
     const about = new SurfaceAbout({ vertices: mesh.vertices, corners: turned });
     const turning = new Set<number>();
     for (const k of now)
-      if (liesInside(about, mesh, turned, patchOf, k, patches[k].first)) cavities.push(patches[k].first);
+      if (liesInside(about, mesh, turned, samples.get(k)!)) cavities.push(patches[k].first);
       else turning.add(k);
     if (turning.size > 0)
       for (let t = 0; t < triangles; t++)
@@ -60,7 +64,8 @@ export function orient(mesh: SurfaceMesh): Orientation {
           turn[t] ^= 1;
           swap(turned, t);
         }
-    waiting = waiting.filter((k) => !now.includes(k));
+    const done = new Set(now);
+    waiting = waiting.filter((k) => !done.has(k));
   }
   return { turn, oneSided: patches.filter(({ oneSided }) => oneSided).map(({ first }) => first), cavities };
 }
@@ -74,6 +79,44 @@ function swap(corners: Uint32Array, t: number): void {
 /** Strictly. */
 const holds = (outer: Box, inner: Box): boolean =>
   outer.min.every((value, axis) => value < inner.min[axis] && outer.max[axis] > inner.max[axis]);
+
+/**
+ * Those of `patches` whose box lies in no other's, ascending. Swept along x with the boxes that are open there, so that thousands
+ * of small shells beside each other are not compared pair by pair.
+ */
+function unheld(patches: number[], boxes: Box[]): number[] {
+  const order = patches.slice().sort((a, b) => boxes[a].min[0] - boxes[b].min[0] || a - b);
+  const found: number[] = [];
+  let open: number[] = [];
+  for (const k of order) {
+    open = open.filter((other) => boxes[other].max[0] > boxes[k].min[0]);
+    if (!open.some((other) => holds(boxes[other], boxes[k]))) found.push(k);
+    open.push(k);
+  }
+  return found.sort((a, b) => a - b);
+}
+
+/** The first triangles with area of each patch that is asked for, `MOST_SAMPLES` at most, in one pass over all. */
+function samplesOf(
+  { vertices, corners }: SurfaceMesh,
+  patchOf: Uint32Array,
+  patches: number,
+  asked: number[],
+): Map<number, number[]> {
+  const samples = new Map<number, number[]>(asked.map((k) => [k, []]));
+  const wanted = new Uint8Array(patches);
+  for (const k of asked) wanted[k] = 1;
+  for (let t = 0; t < patchOf.length && asked.length > 0; t++) {
+    const patch = patchOf[t];
+    if (patch === NO_EDGE || wanted[patch] === 0) continue;
+    const normal = doubleArea(vertices, corners, t);
+    if (Math.sqrt(dot(normal, normal)) === 0) continue;
+    const list = samples.get(patch)!;
+    list.push(t);
+    if (list.length === MOST_SAMPLES) wanted[patch] = 0;
+  }
+  return samples;
+}
 
 /** Walks over each patch from its first triangle; `turn` becomes 1 where a triangle faces the other way than the first. */
 function patchesOf({ corners, ring, partOf }: SurfaceMesh, turn: Uint8Array, patchOf: Uint32Array): Patch[] {
@@ -139,28 +182,16 @@ function doubleArea(vertices: Float32Array, corners: Uint32Array, t: number): Ve
  * Whether a closed patch that faces inwards lies inside of others with all the places that are looked at: just outside of the middle of
  * its triangles, where it does not wind itself.
  */
-function liesInside(
-  about: SurfaceAbout,
-  { vertices }: SurfaceMesh,
-  corners: Uint32Array,
-  patchOf: Uint32Array,
-  patch: number,
-  first: number,
-): boolean {
-  let looked = 0;
-  let inside = 0;
-  for (let t = first; t < patchOf.length && looked < MOST_SAMPLES; t++) {
-    if (patchOf[t] !== patch) continue;
+function liesInside(about: SurfaceAbout, { vertices }: SurfaceMesh, corners: Uint32Array, samples: number[]): boolean {
+  for (const t of samples) {
     const middle = [0, 1, 2].map(
       (k) => (vertices[3 * corners[3 * t] + k] + vertices[3 * corners[3 * t + 1] + k] + vertices[3 * corners[3 * t + 2] + k]) / 3,
     ) as Vector3;
     const normal = doubleArea(vertices, corners, t);
     const size = Math.sqrt(dot(normal, normal));
-    if (size === 0) continue;
-    looked++;
     // It faces inwards, so outside is against the normal: a thousandth of the triangle's own size away.
     const step = (ASIDE * Math.sqrt(size)) / size;
-    if (about.winding(middle.map((value, k) => value - step * normal[k]) as Vector3) > INSIDE) inside++;
+    if (!(about.winding(middle.map((value, k) => value - step * normal[k]) as Vector3) > INSIDE)) return false;
   }
-  return looked > 0 && inside === looked;
+  return samples.length > 0;
 }
