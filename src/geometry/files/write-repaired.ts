@@ -1,12 +1,12 @@
 import { stat } from "node:fs/promises";
-import { resolve } from "node:path";
+import { basename, resolve } from "node:path";
 import { inputProblem } from "../../errors.js";
 import { writeWhole } from "../../write-whole.js";
 import type { TriangleSet } from "../triangle-set.js";
 import { asciiStl, binaryStl } from "./write-stl.js";
 
 /**
- * Writes a body as one STL file: text with a solid for each part, under its name for people, or, where all is one part, binary. Never over a file that the
+ * Writes a body as one STL file: text with a solid for each part, under its name for people, or, where the file's own name says all there is to say, binary. Never over a file that the
  * body was read from, by whatever path or link it is named, and over any other only when told. The file appears under its name when it
  * is whole.
  *
@@ -39,5 +39,9 @@ export async function writeRepaired(path: string, set: TriangleSet, { overwrite 
       where: path,
       remedy: "Give another name, or remove the file first.",
     });
-  await writeWhole(path, set.parts.length > 1 ? asciiStl(set, (part) => part.name) : binaryStl(set));
+  await writeWhole(path, namesItself(path, set) ? binaryStl(set) : asciiStl(set, (part) => part.name));
 }
+
+/** A binary file has no place for names: its one part is called like the file. */
+const namesItself = (path: string, { parts }: TriangleSet): boolean =>
+  parts.length === 1 && basename(path).replace(/\.stl$/i, "") === parts[0].name;

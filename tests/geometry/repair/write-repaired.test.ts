@@ -34,10 +34,13 @@ describe("a repaired body as a file", () => {
     expect(await readdir(folder)).toHaveLength(2);
   });
 
-  it("is binary where there is one part", async () => {
-    const set = await readBack(binaryStl(bodyOf({ ball: sphere(1, 5) })));
-    await writeRepaired(join(folder, "ball.stl"), set);
+  it("is binary where the one part is called like the file, and keeps another name in text", async () => {
+    const set = { ...(await readBack(binaryStl(bodyOf({ ball: sphere(1, 5) })))) };
+    const ball = { ...set, parts: [{ ...set.parts[0]!, name: "ball" }] };
+    await writeRepaired(join(folder, "ball.stl"), ball);
     expect((await readFile(join(folder, "ball.stl"))).length).toBe(84 + 50 * set.partOf.length);
+    await writeRepaired(join(folder, "other.stl"), ball);
+    expect((await readSurfaces([join(folder, "other.stl")])).parts.map(({ name }) => name)).toEqual(["ball"]);
   });
 
   it("never goes over a file that was read, by no name, path or link", async () => {
