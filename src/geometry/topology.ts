@@ -1,4 +1,5 @@
 import { type OpenBorder, openBorders } from "./checks/open-loops.js";
+import { COPY, copiesOf } from "./copies.js";
 import { NO_EDGE, nextInTriangle } from "./edges.js";
 import { measures } from "./measures.js";
 import { type Shells, shellsOf } from "./shells.js";
@@ -77,6 +78,9 @@ export function topologyOf(mesh: SurfaceMesh, parts: number): MeshTopology {
   const degenerate = none();
   const duplicate = none();
   const shells = shellsOf(mesh);
+  const copies = copiesOf(mesh);
+  /** 1 for half-edges of an edge of three triangles or more that has been counted. */
+  const seen = new Uint8Array(ring.length);
   const unsound = new Uint8Array(shells.count);
   const openAlone = new Uint32Array(parts);
   const note = (into: Occurrence, triangle: number, place: () => Vector3): void => {
@@ -90,7 +94,7 @@ export function topologyOf(mesh: SurfaceMesh, parts: number): MeshTopology {
       h += 3;
       continue;
     }
-    if (repeats(mesh, h)) note(duplicate, t, () => triangleMiddle(mesh, t));
+    if (copies[t] !== COPY.none) note(duplicate, t, () => triangleMiddle(mesh, t));
     for (let end = h + 3; h < end; h++) {
       const other = ring[h];
       if (other > h && ring[other] === h) {
@@ -109,7 +113,9 @@ export function topologyOf(mesh: SurfaceMesh, parts: number): MeshTopology {
       } else {
         if (other < h && ring[other] === h) continue;
         if (isOnlyOfPart(mesh, h)) openAlone[mesh.partOf[t]]++;
-        if (!isLowest(ring, h)) continue;
+        if (seen[h] === 1) continue;
+        // The first of its ring that is met is its lowest.
+        for (let at = ring[h]; at !== h; at = ring[at]) seen[at] = 1;
         const edge = h;
         note(nonManifold, t, () => edgeMiddle(mesh, edge));
       }
@@ -149,20 +155,6 @@ function isOnlyOfPart({ ring, partOf }: SurfaceMesh, h: number): boolean {
   const part = partOf[(h / 3) | 0];
   for (let other = ring[h]; other !== h; other = ring[other]) if (partOf[(other / 3) | 0] === part) return false;
   return true;
-}
-
-/** Whether no half-edge of the ring is below `h`. */
-function isLowest(ring: Uint32Array, h: number): boolean {
-  for (let other = ring[h]; other !== h; other = ring[other]) if (other < h) return false;
-  return true;
-}
-
-/** Whether an earlier triangle has the same vertices: it shares every edge, so one edge tells. */
-function repeats({ corners, ring }: SurfaceMesh, h: number): boolean {
-  const third = corners[h + 2];
-  for (let other = ring[h]; other !== h; other = ring[other])
-    if (other < h && corners[nextInTriangle(nextInTriangle(other))] === third) return true;
-  return false;
 }
 
 /** Whether the triangle is no higher than the rounding of its coordinates to float32: its area and normal mean nothing. */

@@ -1,4 +1,5 @@
-import { nextInTriangle } from "../edges.js";
+import { COPY, copiesOf } from "../copies.js";
+import { NO_EDGE } from "../edges.js";
 import type { SurfaceMesh } from "../surface-mesh.js";
 
 /** Triangles that can go without a change of the shape, and those that cannot. */
@@ -12,24 +13,12 @@ export interface Doubles {
 }
 
 /** Finds them; all lists ascend. */
-export function findDoubles({ corners, ring }: Pick<SurfaceMesh, "corners" | "ring">): Doubles {
+export function findDoubles(mesh: Pick<SurfaceMesh, "corners" | "ring">): Doubles {
   const found: Doubles = { degenerate: [], duplicate: [], opposite: [] };
-  for (let t = 0, h = 0; h < corners.length; t++, h += 3) {
-    const [a, b, c] = [corners[h], corners[h + 1], corners[h + 2]];
-    if (a === b || b === c || c === a) {
-      found.degenerate.push(t);
-      continue;
-    }
-    let same = false;
-    let opposite = false;
-    // A triangle with the same corners shares every edge, so the ring of one edge tells.
-    for (let other = ring[h]; other !== h; other = ring[other]) {
-      if (other > h || corners[nextInTriangle(nextInTriangle(other))] !== c) continue;
-      if (corners[other] === a) same = true;
-      else opposite = true;
-    }
-    if (same) found.duplicate.push(t);
-    else if (opposite) found.opposite.push(t);
-  }
+  const copies = copiesOf(mesh);
+  for (let t = 0; t < copies.length; t++)
+    if (mesh.ring[3 * t] === NO_EDGE) found.degenerate.push(t);
+    else if (copies[t] === COPY.same) found.duplicate.push(t);
+    else if (copies[t] === COPY.opposite) found.opposite.push(t);
   return found;
 }

@@ -138,6 +138,7 @@ function silhouetteEdges(
 ): Pieces[] {
   const { corners, ring } = mesh;
   const facing = facingOf(mesh, along);
+  const seen = new Uint8Array(ring.length);
   const found = Array.from({ length: groups }, (): Edges => ({ from: [], to: [], weight: [] }));
   const add = (group: number, h: number, weight: number): void => {
     if (weight === 0) return;
@@ -160,7 +161,7 @@ function silhouetteEdges(
           add(group, h, facing[t]);
           add(groupOf[triangle], other, facing[triangle]);
         } else add(group, h, corners[other] === corners[h] ? facing[t] + facing[triangle] : facing[t] - facing[triangle]);
-      } else add(group, h, ringSum(mesh, facing, groupOf, h));
+      } else if (seen[h] === 0) for (const [each, sum] of ringSums(mesh, facing, groupOf, h, seen)) add(each, h, sum);
     }
   }
   return found.map((edges) => piecesOf(mesh.vertices, along, edges));
@@ -208,24 +209,26 @@ function facingOf({ vertices, corners }: Pick<SurfaceMesh, "vertices" | "corners
 }
 
 /**
- * The sum over an edge where three or more triangles meet, of those in the group of half-edge `h`, in the direction of `h`; 0 unless
- * `h` is the lowest of them.
+ * The sums over an edge where three or more triangles meet, by group, in the direction of half-edge `h`, its lowest. Marks all
+ * half-edges of the edge in `seen`.
  */
-function ringSum(
+function ringSums(
   { corners, ring }: Pick<SurfaceMesh, "corners" | "ring">,
   facing: Int8Array,
   groupOf: Uint16Array | null,
   h: number,
-): number {
-  const own = (h / 3) | 0;
-  let sum = facing[own];
-  for (let other = ring[h]; other !== h; other = ring[other]) {
-    const triangle = (other / 3) | 0;
-    if (groupOf !== null && groupOf[triangle] !== groupOf[own]) continue;
-    if (other < h) return 0;
-    sum += corners[other] === corners[h] ? facing[triangle] : -facing[triangle];
-  }
-  return sum;
+  seen: Uint8Array,
+): Map<number, number> {
+  const sums = new Map<number, number>();
+  let at = h;
+  do {
+    seen[at] = 1;
+    const triangle = (at / 3) | 0;
+    const group = groupOf === null ? 0 : groupOf[triangle];
+    sums.set(group, (sums.get(group) ?? 0) + (corners[at] === corners[h] ? facing[triangle] : -facing[triangle]));
+    at = ring[at];
+  } while (at !== h);
+  return sums;
 }
 
 interface Plane {
