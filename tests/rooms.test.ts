@@ -15,7 +15,8 @@ const arrows: Record<string, string[]> = {
   run: ["case", "study", "openfoam", "history"],
   ledger: ["case", "study", "openfoam", "history", "geometry"],
   compare: ["ledger", "case", "history"],
-  report: ["geometry", "study", "case", "openfoam", "history", "ledger", "compare"],
+  picture: ["geometry"],
+  report: ["geometry", "picture", "study", "case", "openfoam", "history", "ledger", "compare"],
 };
 
 function sources(folder: string): string[] {

@@ -5,6 +5,8 @@ import { writeRepaired } from "../../src/geometry/files/write-repaired.js";
 import { repair } from "../../src/geometry/repair/repair.js";
 import type { LengthUnit, SignedAxis } from "../../src/geometry/survey.js";
 import { surveyBody } from "../../src/geometry/survey-body.js";
+import { bodyPicture, viewNamed } from "../../src/picture/body-picture.js";
+import { writeWhole } from "../../src/write-whole.js";
 import type { CommandModule } from "../command.js";
 import { exitCode } from "../context.js";
 import { printRepair } from "../print/repair.js";
@@ -20,6 +22,7 @@ interface Options {
   cell?: number;
   full?: boolean;
   repair?: string;
+  picture?: string[];
 }
 
 const signedAxes = ["+x", "-x", "+y", "-y", "+z", "-z"];
@@ -44,6 +47,10 @@ export const command: CommandModule<Options> = {
         quantity("length"),
       )
       .option(
+        "--picture <file.png...>",
+        "pictures of the body with the findings marked; the end of the name says the view: front.png, side.png, plan.png",
+      )
+      .option(
         "--repair <file.stl>",
         "write a repaired body to a new file: copies and cracks of rounding removed, triangles facing one way and outwards; lists each change",
       )
@@ -54,6 +61,7 @@ export const command: CommandModule<Options> = {
     { call: "dragledger inspect body.stl --unit mm --travel -x --json", does: "unit and direction given; the result as JSON" },
   ],
   async run({ args, options, print }) {
+    const pictures = (options.picture ?? []).map((path) => ({ path, seen: viewNamed(path) }));
     const set = await readSurfaces(args[0] as string[]);
     const survey = surveyBody(set, {
       unit: options.unit,
@@ -65,14 +73,17 @@ export const command: CommandModule<Options> = {
       full: options.full,
     });
     const domain = boundingDomain(survey);
+    for (const { path, seen } of pictures) await writeWhole(path, bodyPicture(set, survey, { seen }));
     const repaired = options.repair === undefined ? null : repair(set);
     if (repaired !== null) await writeRepaired(options.repair!, repaired.set);
     print.document("inspect", {
       ...survey,
       domain,
+      ...(pictures.length > 0 && { pictures }),
       ...(repaired !== null && { repair: { path: options.repair, changes: repaired.changes, left: repaired.left } }),
     });
     printSurvey(print, survey, domain);
+    for (const { path, seen } of pictures) print.line(`picture from the ${seen === "plan" ? "top" : seen}: ${path}`);
     if (repaired !== null) printRepair(print, options.repair!, repaired);
     return survey.verdict === "not-fit" ? exitCode.no : exitCode.done;
   },

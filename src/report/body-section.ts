@@ -1,11 +1,11 @@
 import type { Comparison } from "../compare/comparison.js";
 import type { TriangleSet } from "../geometry/triangle-set.js";
 import type { Box } from "../geometry/vector.js";
+import { thinBody } from "../picture/thin-body.js";
 import { counts } from "./figures.js";
 import { partNames, runsSideBySide } from "./part-matrix.js";
 import type { ReportedBody, ReportedRun } from "./report-input.js";
 import type { Naming } from "./run-names.js";
-import { thinBody } from "./thin-body.js";
 
 /** The bodies to draw, and how their parts go with the ledger. */
 export interface BodySection {

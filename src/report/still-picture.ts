@@ -1,8 +1,9 @@
 import type { Vector3 } from "../geometry/vector.js";
+import { outlines } from "../picture/outlines.js";
+import { png } from "../picture/png.js";
+import { normalsTowards, rasterise, type Seen, type View, viewOf } from "../picture/raster.js";
+import { channels, inkTone, toneOf } from "../picture/tones.js";
 import type { BodySection, BodyVariant } from "./body-section.js";
-import { png } from "./png.js";
-import { normalsTowards, rasterise, type Seen, type View, viewOf } from "./raster.js";
-import { channels, inkTone, toneOf } from "./tones.js";
 
 /** A picture of a variant for paper and for readers without WebGL. */
 export interface StillPicture {
@@ -119,39 +120,6 @@ function brightness(normals: Float32Array, { eye, right, up }: View): Float32Arr
     light[t] = 0.22 + 0.24 * towards + 0.58 * Math.max(0, 0.4 * towards - 0.35 * along(right) + 0.85 * along(up));
   }
   return light;
-}
-
-/** How large a step of depth is an edge, as a share of the picture's width on the body. */
-const depthStep = 0.012;
-/** Faces whose normals are farther apart than this (cosine) meet at an edge. */
-const crease = Math.cos((38 * Math.PI) / 180);
-
-/** 1 where a line is drawn: the border of a part, of the body, of what lies before something else, and sharp edges. */
-function outlines(
-  { triangle, depth }: Seen,
-  { width, height, scale }: View,
-  partOf: Uint16Array,
-  normals: Float32Array,
-): Uint8Array {
-  const ink = new Uint8Array(width * height);
-  const step = (depthStep * width) / scale;
-  const compare = (at: number, other: number): void => {
-    const [one, two] = [triangle[at], triangle[other]];
-    if (one === two) return;
-    if (one !== 0 && two !== 0 && partOf[one - 1] === partOf[two - 1] && Math.abs(depth[at] - depth[other]) < step) {
-      const [n, m] = [3 * (one - 1), 3 * (two - 1)];
-      if (normals[n] * normals[m] + normals[n + 1] * normals[m + 1] + normals[n + 2] * normals[m + 2] > crease) return;
-    }
-    // The line lies on what is nearer.
-    ink[depth[at] >= depth[other] ? at : other] = 1;
-  };
-  for (let row = 0; row < height; row++)
-    for (let column = 0; column < width; column++) {
-      const at = row * width + column;
-      if (column + 1 < width) compare(at, at + 1);
-      if (row + 1 < height) compare(at, at + width);
-    }
-  return ink;
 }
 
 /** Nothing, ink in growing opacity, then every tone from dark to light. */

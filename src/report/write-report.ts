@@ -2,6 +2,7 @@ import { createHash } from "node:crypto";
 import { readFileSync } from "node:fs";
 import ejs from "ejs";
 import { packageFile } from "../package-files.js";
+import { differenceTones, toneOf } from "../picture/tones.js";
 import type { BodySection } from "./body-section.js";
 import { barChart, historyChart, intervalChart } from "./charts.js";
 import type { ComparisonSection } from "./comparison-section.js";
@@ -11,7 +12,6 @@ import { packScene } from "./pack-body.js";
 import { axisName, type RunSection } from "./run-section.js";
 import { countDefinition, verdictMeaning } from "./statements.js";
 import { stillPictures } from "./still-picture.js";
-import { differenceTones, toneOf } from "./tones.js";
 
 export interface WriteOptions {
   /** text of the bundled viewer; left out, the one that ships with the package */

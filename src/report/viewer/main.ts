@@ -1,10 +1,10 @@
+import { differenceTone, pickedTone, toneOf } from "../../picture/tones.js";
+import { Choices } from "../../picture/viewer/choices.js";
+import { BodyScene } from "../../picture/viewer/scene.js";
+import { unpackMesh } from "../../picture/viewer/unpack.js";
 import type { PackedPart, PackedScene } from "../packed.js";
-import { differenceTone, pickedTone, toneOf } from "../tones.js";
-import { Choices } from "./choices.js";
 import { Marks } from "./marks.js";
 import { preparePage } from "./page.js";
-import { BodyScene } from "./scene.js";
-import { unpackMesh } from "./unpack.js";
 
 // Runs in the reader's browser, inside the page. Everything it needs is in the page; without WebGL the still pictures stay.
 

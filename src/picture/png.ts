@@ -35,6 +35,27 @@ export function png({ width, height, pixels, palette }: IndexedPicture): Uint8Ar
   ]);
 }
 
+/** A picture of `3 * width * height` bytes, red, green, blue, rows from the top, as a PNG file: colour type 2, eight bits. */
+export function colourPng(width: number, height: number, rgb: Uint8Array): Uint8Array {
+  const header = Buffer.alloc(13);
+  header.writeUInt32BE(width, 0);
+  header.writeUInt32BE(height, 4);
+  header.set([8, 2, 0, 0, 0], 8);
+  const row = 3 * width;
+  const rows = Buffer.alloc((row + 1) * height);
+  // Every byte as its change from the pixel to the left (filter 1): flat areas and lines become zeros.
+  for (let y = 0, to = 0; y < height; y++) {
+    rows[to++] = 1;
+    for (let x = 0, from = y * row; x < row; x++, from++) rows[to++] = rgb[from] - (x < 3 ? 0 : rgb[from - 3]);
+  }
+  return Buffer.concat([
+    Buffer.from([0x89, 0x50, 0x4e, 0x47, 0x0d, 0x0a, 0x1a, 0x0a]),
+    chunk("IHDR", header),
+    chunk("IDAT", deflateSync(rows, { level: 6 })),
+    chunk("IEND", Buffer.alloc(0)),
+  ]);
+}
+
 function chunk(type: string, data: Buffer): Buffer {
   const result = Buffer.alloc(12 + data.length);
   result.writeUInt32BE(data.length, 0);

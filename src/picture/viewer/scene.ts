@@ -20,13 +20,12 @@ import {
 } from "three";
 import { OrbitControls } from "three/addons/controls/OrbitControls.js";
 import { toCreasedNormals } from "three/addons/utils/BufferGeometryUtils.js";
-import type { PackedPart } from "../packed.js";
 import { inkTone } from "../tones.js";
 import type { MeshArrays } from "./unpack.js";
 
 export interface SceneVariant {
   name: string;
-  parts: PackedPart[];
+  parts: { name: string; mesh: number }[];
 }
 
 /** Edges sharper than this, radians, stay sharp and are drawn as lines. */

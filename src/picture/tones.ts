@@ -45,3 +45,6 @@ export function differenceTone(delta: number | null, largest: number): string {
     )
     .join("")}`;
 }
+
+/** Findings by severity: dark enough for white figures on them, apart in lightness too. */
+export const severityTones = { error: "#a8321a", warning: "#84600a", note: "#1f5f8a" } as const;

@@ -1,4 +1,4 @@
-import { gridSteps, type PackedMesh } from "../packed.js";
+import { gridSteps, type PackedMesh } from "../packed-mesh.js";
 
 export interface MeshArrays {
   /** 3 per vertex, metres, case axes */
