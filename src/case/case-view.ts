@@ -5,8 +5,8 @@ import { label } from "./template-text.js";
 /** The cell limit of the mesher over the predicted count: cells inside the body are counted while it refines. */
 const limitOverPrediction = 4;
 
-/** What the templates see of a plan, as `it`. Numbers in SI and case axes. */
-export function caseView(plan: CasePlan) {
+/** What the templates see of a plan, as `it`. Numbers in SI and case axes. `rung`: it is one of a ladder, which nobody reads forces of. */
+export function caseView(plan: CasePlan, rung: boolean) {
   const { half, domain, mesh, flow, air, reference, parts, condition } = plan;
   const onset = onsetFlow(condition);
   const final = mesh.finalLayer.value;
@@ -15,6 +15,8 @@ export function caseView(plan: CasePlan) {
   // Relative thickness of all layers together: final (1 + 1/r + 1/r² + ...).
   const thickness = final * Array.from({ length: layers }, (_, k) => expansion ** -k).reduce((sum, share) => sum + share, 0);
   return {
+    rung,
+    rungs: plan.ladder.map((_, k) => k + 1),
     studyLabel: label(plan.study),
     variantLabel: label(plan.variant),
     conditionLabel: label(condition.name),

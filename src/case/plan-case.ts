@@ -5,16 +5,17 @@ import type { Vector3 } from "../geometry/vector.js";
 import type { Condition, Study } from "../study/study.js";
 import { caseBounds, partsInside, wholeFrontalArea } from "./body-in-case.js";
 import { cellsBetweenLevels, levelOf } from "./grid.js";
+import { ladderOf } from "./ladder.js";
 import { finalOnLevel, layersFor } from "./layers.js";
 import type { CasePlan, PlannedPart } from "./plan.js";
 import { millimetres, planned, source } from "./planned.js";
 import { meshCost } from "./sizing.js";
-import type { StudyFrame, VariantBody } from "./study-frame.js";
+import type { PredictedMesh, StudyFrame, VariantBody } from "./study-frame.js";
 import { turningWheels } from "./wheels.js";
 
 /**
- * Every number of one case. Pure. `frame` is what all cases of the study share, `body` the variant, `cells` what is predicted for it
- * in the grid of the frame.
+ * Every number of one case. Pure. `frame` is what all cases of the study share, `body` the variant, `predicted` the cells
+ * that it will have in the grid of the frame and in coarser ones.
  *
  * @throws Problem(input) as `turningWheels`.
  */
@@ -22,10 +23,10 @@ export function planCase(given: {
   study: Study;
   frame: StudyFrame;
   body: VariantBody;
-  cells: number;
+  predicted: Pick<PredictedMesh, "cells" | "coarserCells">;
   condition: Condition;
 }): CasePlan {
-  const { study, frame, body, condition } = given;
+  const { study, frame, body, predicted, condition } = given;
   const { length: overall } = extentsOf(frame);
   const { kinematicViscosity, density } = airProperties(study.air);
   const air = `${(study.air.temperature - 273.15).toFixed(1)} degC, ${(study.air.pressure / 100).toFixed(2)} hPa, ${Number((100 * study.air.humidity).toFixed(1))} % humidity`;
@@ -64,10 +65,11 @@ export function planCase(given: {
       ),
       wheelbase: frame.wheelbase,
     },
-    domain: domainOf(frame, wholeFrontalArea(body.survey)),
-    mesh: { ...meshOf(study, frame, body, given.cells), ...layers },
+    domain: domainOf(study, frame, wholeFrontalArea(body.survey)),
+    mesh: { ...meshOf(study, frame, body, predicted.cells), ...layers },
     boxes: frame.grid.boxes,
     parts: partsOf(study, frame, body, condition, layers.finalLayer.value),
+    ladder: study.solver.start === "ladder" ? ladderOf(predicted.coarserCells) : [],
     iterations: {
       most: planned(study.solver.mostIterations, "", "most iterations; a run that has settled ends before", source.study),
       writeEvery: planned(
@@ -140,7 +142,7 @@ function flowOf(
   };
 }
 
-function domainOf(frame: StudyFrame, frontalArea: number): CasePlan["domain"] {
+function domainOf(study: Study, frame: StudyFrame, frontalArea: number): CasePlan["domain"] {
   const { domain, surfaceLevel } = frame.grid;
   const { length } = extentsOf(frame);
   const { ahead, behind, side, top } = domain.distances;
@@ -159,6 +161,14 @@ function domainOf(frame: StudyFrame, frontalArea: number): CasePlan["domain"] {
       "m",
       `surface cell times 2^${surfaceLevel}, near a fifth of the length; all faces of the domain on its multiples, so all cells are cubes, the same for all variants`,
       source.domain,
+    ),
+    shift: planned(
+      study.mesh.shift * domain.baseCell,
+      "m",
+      study.mesh.shift === 0
+        ? "the grid is anchored at the origin"
+        : `the grid is moved rearward by ${Number((100 * study.mesh.shift).toPrecision(4))} % of a base cell, the body is not`,
+      source.study,
     ),
     divisions: planned(domain.divisions, "", "extent of the domain over the base cell", source.definition),
     blockage: planned(

@@ -4,6 +4,7 @@ import ejs from "ejs";
 import { packageFile } from "../package-files.js";
 import { caseView } from "./case-view.js";
 import { sha256 } from "./hash.js";
+import { rungPlan } from "./ladder.js";
 import type { CasePlan } from "./plan.js";
 import { header, templateText } from "./template-text.js";
 
@@ -49,9 +50,18 @@ function readTemplates(root: string): Templates {
 /** sha256 over the paths and texts of all case templates. */
 export const templatesHash = (): string => caseTemplates().hash;
 
-/** All text files of a case. Pure but for reading the package's own templates the first time. */
+/** All text files of a case, those of its ladder in folders of their own. Pure but for reading the package's own templates the first time. */
 export function renderCase(plan: CasePlan): CaseFile[] {
-  const it = caseView(plan);
+  const rungs = plan.ladder.flatMap((rung) =>
+    rendered(rungPlan(plan, rung), true)
+      .filter(({ path }) => path.includes("/"))
+      .map((file) => ({ ...file, path: `${rung.folder}/${file.path}` })),
+  );
+  return [...rendered(plan, false), ...rungs];
+}
+
+function rendered(plan: CasePlan, rung: boolean): CaseFile[] {
+  const it = caseView(plan, rung);
   return caseTemplates().templates.map(({ path, render }) => ({
     path,
     content: render({ it, header }),

@@ -5,8 +5,9 @@ import type { Box, Vector3 } from "../geometry/vector.js";
 import type { Condition, Study } from "../study/study.js";
 import { caseBounds, partsInside, type Side, wholeBounds, wholeFrontalArea } from "./body-in-case.js";
 import { exposedSurface } from "./exposed-surface.js";
-import { type BodyForGrid, cellsOf, type Grid, gridFor } from "./grid.js";
+import { type BodyForGrid, cellsOf, coarserGrid, type Grid, gridFor } from "./grid.js";
 import { halfOf } from "./half-model.js";
+import { mostRungs } from "./ladder.js";
 import type { Planned } from "./plan.js";
 import { referenceArea, referenceLength, wheelbaseOf } from "./reference.js";
 
@@ -46,7 +47,7 @@ export function frameOf(study: Study, bodies: VariantBody[], conditions: Conditi
   const placement = placementOf(orientation, shiftOf(orientation, survey, wheelbase !== null));
   const bounds = wholeBounds(survey, placement);
   const side: Side = !half.value ? 0 : liesLeft(survey, placement) ? -1 : 1;
-  const wish = { cells: study.mesh.cells, layers: study.mesh.layers, half: half.value };
+  const wish = { cells: study.mesh.cells, layers: study.mesh.layers, half: half.value, shift: study.mesh.shift };
   const grid = gridFor(bodyForGrid(baseline, placement, side), wish);
   if (side === -1) mirrorDomain(grid);
   return {
@@ -61,17 +62,27 @@ export function frameOf(study: Study, bodies: VariantBody[], conditions: Conditi
   };
 }
 
-/** The cells that a variant will have in the grid of the study, and what of each of its parts the air reaches, m² by patch. */
-export function predictedFor(
-  study: Study,
-  frame: StudyFrame,
-  body: VariantBody,
-): { cells: number; exposed: ReadonlyMap<string, number> } {
+/** What is predicted of one variant's mesh. */
+export interface PredictedMesh {
+  cells: number;
+  /** Cells of the grids that are one, two, ... levels coarser, as far as there are such. */
+  coarserCells: number[];
+  /** m² of each part that the air reaches, by patch */
+  exposed: ReadonlyMap<string, number>;
+}
+
+/** The mesh that a variant will have in the grid of the study, and in the coarser ones that it may be started from. */
+export function predictedFor(study: Study, frame: StudyFrame, body: VariantBody): PredictedMesh {
   const { grid, placement, side } = frame;
   const inGrid = bodyForGrid(body, placement, side);
   const exposed = inGrid.exposed(grid.surfaceCell);
-  const wish = { cells: study.mesh.cells, layers: study.mesh.layers, half: side !== 0 };
-  return { cells: cellsOf(inGrid, wish, grid, exposed), exposed: exposed.areas };
+  const wish = { cells: study.mesh.cells, layers: study.mesh.layers, half: side !== 0, shift: study.mesh.shift };
+  const coarserCells: number[] = [];
+  for (let coarser = 1; coarser <= mostRungs; coarser++) {
+    const coarse = coarserGrid(grid, coarser);
+    if (coarse !== null) coarserCells.push(cellsOf(inGrid, wish, coarse, exposed));
+  }
+  return { cells: cellsOf(inGrid, wish, grid, exposed), coarserCells, exposed: exposed.areas };
 }
 
 function bodyForGrid({ set, survey }: VariantBody, placement: Placement, side: Side): BodyForGrid {

@@ -12,8 +12,11 @@ import { joinFields, placeFields } from "./start-point.js";
 import { type Step, solveSteps } from "./steps.js";
 import { type Watched, Watcher, type Watching } from "./watcher.js";
 
-/** Solves a meshed case from where it stands, until its targets hold, its limit is reached or something ends it. */
-export async function solveCase(run: CaseRun): Promise<Phase> {
+/**
+ * Solves a meshed case from where it stands, until its targets hold, its limit is reached or something ends it. `start` puts fields to
+ * start from into a case that has none but the uniform ones.
+ */
+export async function solveCase(run: CaseRun, start: (run: CaseRun) => Promise<Phase>): Promise<Phase> {
   const steps = solveSteps(run.ranks);
   const inputs = await solutionInputs(run.path);
   const done = await standing(run, inputs);
@@ -21,6 +24,8 @@ export async function solveCase(run: CaseRun): Promise<Phase> {
     for (const step of steps) run.skip(step);
     return done;
   }
+  const started = await start(run);
+  if (started.end) return started;
   const { phase, from } = await placeFields(run);
   if (phase.end) return phase;
   const follower = new HistoryFollower(run.path);

@@ -219,7 +219,7 @@ const entries: (Omit<StudyKey, "expects" | "example" | "unit"> & Partial<Pick<St
     key: "mesh",
     title: "Mesh",
     description: "What the mesh is to be like.",
-    expects: "a block with cells, half, y-plus and layers",
+    expects: "a block with cells, half, y-plus, layers and shift",
     example: "{ cells: 1.5 million }",
   },
   {
@@ -251,6 +251,15 @@ const entries: (Omit<StudyKey, "expects" | "example" | "unit"> & Partial<Pick<St
     default: 3,
     example: "3",
     quantity: { dimension: "number", min: 0, max: 20, range: "a whole number from 0 to 20", whole: true },
+  },
+  {
+    key: "mesh.shift",
+    title: "Shift",
+    description:
+      "Share of a background cell by which the grid is moved along the vehicle, the body staying where it is: the same question on another grid as fine.",
+    default: "0 %",
+    example: "38 %",
+    quantity: { dimension: "ratio", min: 0, max: 1, range: "0 to 100 %" },
   },
   {
     key: "mesh.levels",
@@ -286,10 +295,10 @@ const entries: (Omit<StudyKey, "expects" | "example" | "unit"> & Partial<Pick<St
   {
     key: "solver.start",
     title: "Start",
-    description: "What the flow starts from; cold is uniform flow.",
-    default: "cold",
-    choices: ["cold"],
-    single: true,
+    description:
+      "What the flow starts from: ladder, the flow of the same case on coarser grids, which are solved before; or cold, uniform flow.",
+    default: "ladder",
+    choices: ["ladder", "cold"],
   },
   {
     key: "solver.most-iterations",

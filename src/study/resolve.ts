@@ -44,7 +44,7 @@ export function resolveStudy(document: StudyDocument, path: string): { study: St
       referenceArea: body["reference-area"],
     },
     parts,
-    mesh: { cells: Math.round(mesh.cells), half: mesh.half, yPlus: mesh["y-plus"], layers: mesh.layers },
+    mesh: { cells: Math.round(mesh.cells), half: mesh.half, yPlus: mesh["y-plus"], layers: mesh.layers, shift: mesh.shift },
     solver: {
       turbulence: solver.turbulence,
       mode: solver.mode,

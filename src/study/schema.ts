@@ -57,6 +57,7 @@ export const studySchema = z
           .meta(about("mesh.half")),
         "y-plus": quantity("mesh.y-plus"),
         layers: quantity("mesh.layers"),
+        shift: quantity("mesh.shift"),
         levels: only("mesh.levels", 1),
       })
       .prefault({})
@@ -65,7 +66,7 @@ export const studySchema = z
       .strictObject({
         turbulence: only("solver.turbulence", "k-omega-SST"),
         mode: only("solver.mode", "steady"),
-        start: only("solver.start", "cold"),
+        start: choice("solver.start", ["ladder", "cold"]),
         "most-iterations": quantity("solver.most-iterations"),
       })
       .prefault({})

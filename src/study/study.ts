@@ -25,8 +25,9 @@ export interface Study {
     referenceArea: number | "auto";
   };
   parts: PartRule[];
-  mesh: { cells: number; half: "auto" | boolean; yPlus: number; layers: number };
-  solver: { turbulence: "k-omega-SST"; mode: "steady"; start: "cold"; mostIterations: number };
+  /** shift: of the grid along the vehicle, as a share of a background cell */
+  mesh: { cells: number; half: "auto" | boolean; yPlus: number; layers: number; shift: number };
+  solver: { turbulence: "k-omega-SST"; mode: "steady"; start: "ladder" | "cold"; mostIterations: number };
   /** Half-widths wanted, as coefficients; confidence 0..1 */
   stop: { drag: number; lift: number; confidence: number };
 }
