@@ -75,7 +75,10 @@ function gridOf(body: BodyForGrid, wish: GridWish, exposed: Exposed, wanted: num
   const baseCell = Number((wanted * 2 ** surfaceLevel).toPrecision(3));
   const surfaceCell = baseCell / 2 ** surfaceLevel;
   const grid = {
-    domain: boundingDomain({ bounds: body.bounds, frontalArea: body.frontalArea }, { baseCell, shift: wish.shift * baseCell, half: wish.half }),
+    domain: boundingDomain(
+      { bounds: body.bounds, frontalArea: body.frontalArea },
+      { baseCell, shift: wish.shift * baseCell, half: wish.half },
+    ),
     surfaceLevel,
     surfaceCell,
     boxes: refinementBoxes(body.bounds, surfaceLevel),

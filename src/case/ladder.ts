@@ -2,6 +2,9 @@ import { coarserBoxes } from "./grid.js";
 import type { CasePlan, PlannedRung } from "./plan.js";
 import { planned, source } from "./planned.js";
 
+/** Folder, in the grid that starts from uniform flow, for the iterations in first order. */
+export const firstOrderFolder = "first-order";
+
 /** Levels that the coarsest rung may be above the case's own grid. */
 export const mostRungs = 3;
 /** Below so many cells the flow has little to do with that on the case's own grid. */
@@ -51,6 +54,6 @@ export function rungPlan(plan: CasePlan, rung: PlannedRung): CasePlan {
     // Layers are relative to the cells that they stand in: they grow with them, which the mesher and the solver take best.
     parts: plan.parts.map((part) => ({ ...part, level: part.level - coarser })),
     ladder: [],
-    iterations: { most: rung.iterations, writeEvery: { ...rung.iterations, reason: "at its end" } },
+    iterations: { ...plan.iterations, most: rung.iterations, writeEvery: { ...rung.iterations, reason: "at its end" } },
   };
 }

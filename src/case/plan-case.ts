@@ -72,6 +72,14 @@ export function planCase(given: {
     ladder: study.solver.start === "ladder" ? ladderOf(predicted.coarserCells) : [],
     iterations: {
       most: planned(study.solver.mostIterations, "", "most iterations; a run that has settled ends before", source.study),
+      firstOrder: planned(
+        60,
+        "",
+        study.solver.start === "ladder"
+          ? "in first order, on the coarsest rung alone: two coarse meshes of a pickup diverged from uniform flow in second order and did not after these"
+          : "in first order, before all others, with `run --careful` alone: two coarse meshes of a pickup diverged from uniform flow in second order and did not after these",
+        source.solver,
+      ),
       writeEvery: planned(
         writeInterval(study.solver.mostIterations),
         "",

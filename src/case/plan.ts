@@ -107,6 +107,11 @@ export interface CasePlan {
   parts: PlannedPart[];
   /** Coarser grids that are solved one after the other before this one, the coarsest first; none for a start from uniform flow. */
   ladder: PlannedRung[];
-  iterations: { most: Planned<number>; writeEvery: Planned<number> };
+  iterations: {
+    most: Planned<number>;
+    /** in first order, before all others, where the flow starts from uniform */
+    firstOrder: Planned<number>;
+    writeEvery: Planned<number>;
+  };
   stop: { drag: Planned<number>; lift: Planned<number>; confidence: Planned<number> };
 }

@@ -44,7 +44,7 @@ export function frameOf(study: Study, bodies: VariantBody[], conditions: Conditi
   const half = halfOf(study, bodies, conditions);
   const wheelbase = wheelbaseOf(study, survey);
   const orientation: Orientation = { unit: study.body.unit, travel: study.body.travel, up: study.body.up };
-  const placement = placementOf(orientation, shiftOf(orientation, survey, wheelbase !== null));
+  const placement = placementOf(orientation, shiftOf(orientation, survey, wheelbase !== null, study.body.clearance));
   const bounds = wholeBounds(survey, placement);
   const side: Side = !half.value ? 0 : liesLeft(survey, placement) ? -1 : 1;
   const wish = { cells: study.mesh.cells, layers: study.mesh.layers, half: half.value, shift: study.mesh.shift };
@@ -102,14 +102,14 @@ function bodyForGrid({ set, survey }: VariantBody, placement: Placement, side: S
   };
 }
 
-/** Moves the origin onto the ground, the mid-plane and the middle between the axles (of the body without axles). Metres. */
-function shiftOf(orientation: Orientation, survey: Survey, hasAxles: boolean): Vector3 {
+/** Moves the origin onto the ground (`clearance` below the lowest point), the mid-plane and the middle between the axles (of the body without axles). Metres. */
+function shiftOf(orientation: Orientation, survey: Survey, hasAxles: boolean, clearance: number): Vector3 {
   const { rearward } = vehicleAxes(orientation);
   const turned = { ...placementOf(orientation, [0, 0, 0]), scale: 1 };
   const { min, max } = caseBounds(survey.bounds, turned);
   const front = hasAxles ? frontAxle(survey, rearward) : null;
   const middle = front !== null && survey.wheelbase !== null ? front + survey.wheelbase / 2 : (min[0] + max[0]) / 2;
-  return [0 - middle, 0 - midPlane(survey, turned), 0 - min[2]];
+  return [0 - middle, 0 - midPlane(survey, turned), clearance - min[2]];
 }
 
 /** Position of the foremost axle along the rearward direction, the mean of its wheels; null without wheels. */

@@ -13,6 +13,8 @@ import type { Workplace } from "./workplace.js";
 
 export interface RunSettings {
   mostIterations: number | undefined;
+  /** A start from uniform flow begins in first order. */
+  careful: boolean;
   pollMilliseconds: number;
   testEvery: number;
   minimumWindow: number;
@@ -38,7 +40,9 @@ export class CaseRun {
   readonly emit: (event: RunEvent) => void;
   readonly workplace: Workplace;
 
-  constructor(given: Pick<CaseRun, "path" | "card" | "solver" | "ranksFor" | "state" | "settings" | "signal" | "emit" | "workplace">) {
+  constructor(
+    given: Pick<CaseRun, "path" | "card" | "solver" | "ranksFor" | "state" | "settings" | "signal" | "emit" | "workplace">,
+  ) {
     this.path = given.path;
     this.workplace = given.workplace;
     this.card = given.card;

@@ -4,11 +4,12 @@ import type { RunCard } from "../case/run-card.js";
 import { exists } from "./case-files.js";
 import { CaseRun, endWith, goOn, type Phase } from "./case-run.js";
 import type { RunEvent } from "./events.js";
+import { startInFirstOrder } from "./first-order.js";
 import { meshCase, stepsToMesh } from "./mesh-case.js";
 import { freshState, readRunState } from "./run-state.js";
 import { restoreControlDict, solveCase } from "./solve-case.js";
-import { carriedFields, findStartPoint } from "./start-point.js";
-import { mapStep, solveSteps } from "./steps.js";
+import { carriedFields, hasFlow } from "./start-point.js";
+import { firstOrderStep, mapStep, solveSteps } from "./steps.js";
 import { workplaceBelow } from "./workplace.js";
 
 type Rung = NonNullable<RunCard["ladder"]>[number];
@@ -25,8 +26,12 @@ const body = "constant/triSurface/body.stl";
 export async function ladderSteps(run: CaseRun): Promise<string[]> {
   const names: string[] = [];
   for (const rung of run.card.ladder ?? []) {
-    const steps = [...(await stepsToMesh(join(run.path, rung.folder))), ...solveSteps(run.ranksFor(rung.mesh.predictedCells))];
-    if (rung !== run.card.ladder![0]) names.push(nameOn(rung, mapStep("").name));
+    const before = rung === run.card.ladder![0] ? firstOrderStep : mapStep("");
+    const steps = [
+      ...(await stepsToMesh(join(run.path, rung.folder))),
+      before,
+      ...solveSteps(run.ranksFor(rung.mesh.predictedCells)),
+    ];
     names.push(...steps.map(({ name }) => nameOn(rung, name)));
   }
   if (names.length > 0) names.push(mapStep("").name);
@@ -42,10 +47,10 @@ const nameOn = ({ folder }: Pick<Rung, "folder">, step: string): string => `${fo
  */
 export async function startOnLadder(run: CaseRun): Promise<Phase> {
   const rungs = run.card.ladder ?? [];
-  if (rungs.length === 0) return goOn;
-  const point = await findStartPoint(run);
-  if (Math.max(Number(point.whole), Number(point.divided ?? 0)) > 0) {
-    for (const name of await ladderSteps(run)) run.emit({ event: "step-end", case: run.path, step: name, seconds: 0, skipped: true });
+  if (rungs.length === 0) return run.settings.careful ? startInFirstOrder(run) : goOn;
+  if (await hasFlow(run)) {
+    for (const name of await ladderSteps(run))
+      run.emit({ event: "step-end", case: run.path, step: name, seconds: 0, skipped: true });
     return goOn;
   }
   await run.save("solving", "started on its ladder");
@@ -86,7 +91,7 @@ async function climb(run: CaseRun, rung: Rung, below: Rung | null): Promise<Phas
   const end = meshed.end
     ? meshed
     : await solveCase(rungRun, (each) =>
-        below === null ? Promise.resolve(goOn) : startOn(each, below, join(run.workplace.path, below.folder)),
+        below === null ? startInFirstOrder(each) : startOn(each, below, join(run.workplace.path, below.folder)),
       );
   if (end.end) await rungRun.save(end.state, end.reason);
   return end;
@@ -117,8 +122,7 @@ async function shareBody(casePath: string, rungPath: string): Promise<void> {
 
 /** Maps a rung's flow onto a case that has none beside the uniform one. */
 async function startOn(run: CaseRun, below: Rung, from: string): Promise<Phase> {
-  const point = await findStartPoint(run);
-  return Number(point.whole) > 0 || Number(point.divided ?? 0) > 0 ? goOn : mapOnto(run, below, from);
+  return (await hasFlow(run)) ? goOn : mapOnto(run, below, from);
 }
 
 /**

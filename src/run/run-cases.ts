@@ -27,6 +27,8 @@ export interface RunOptions {
   signal?: AbortSignal | undefined;
   /** Limit of iterations in place of the run cards'. */
   mostIterations?: number | undefined;
+  /** Begins cases that start from uniform flow in first order, and gives one that diverged another try. */
+  careful?: boolean | undefined;
   /** The solver to use; searched for when left out. */
   solver?: SolverEnvironment | undefined;
   /** How often a running solver is looked at. */
@@ -112,6 +114,7 @@ async function runHeld(
   const ranksFor = (cells: number) => (solver.mpirun === null ? 1 : Math.max(1, Math.min(share, Math.floor(cells / leastCells))));
   const settings: RunSettings = {
     mostIterations: options.mostIterations,
+    careful: options.careful ?? false,
     pollMilliseconds: options.pollMilliseconds ?? 500,
     testEvery: options.testEvery ?? 20,
     minimumWindow: options.minimumWindow ?? fewestRows,

@@ -32,7 +32,7 @@ export async function solveCase(run: CaseRun, start: (run: CaseRun) => Promise<P
   await follower.poll();
   follower.dropAfter(from);
   const solver = steps.find((step) => step.program === "simpleFoam")!;
-  run.state.solution = { inputs, most: run.most, targets: targetsOf(run) };
+  run.state.solution = { inputs, most: run.most, targets: targetsOf(run), ...(run.settings.careful ? { careful: true } : {}) };
   const solved = await runSolver(run, solver, inputs, follower, from);
   run.state.iterations = follower.iteration;
   if (solved.end && solved.state !== "settled" && solved.state !== "stopped-at-limit") return solved;
@@ -65,9 +65,16 @@ async function standing(run: CaseRun, inputs: Hashes): Promise<Phase> {
     run.state.settled = false;
     return goOn;
   }
+  if (state === "diverged" && run.settings.careful && solution.careful !== true) {
+    run.remark("The case diverged before; it is solved again from the beginning, the first iterations in first order.");
+    await setAside(run);
+    run.state.solution = null;
+    run.state.iterations = 0;
+    return goOn;
+  }
   if (state === "diverged") {
     run.remark(
-      "Nothing has changed since this case diverged; it is not run again. Change its mesh or its schemes, or delete run-state.json.",
+      "Nothing has changed since this case diverged; it is not run again. Try it with --careful, change its mesh or its schemes, or delete run-state.json.",
     );
     return endWith("diverged", reason);
   }

@@ -37,6 +37,12 @@ export async function findStartPoint(run: CaseRun): Promise<StartPoint> {
   return { whole, divided, processors: processors.length };
 }
 
+/** Is there a flow to go on from, or only the uniform one? */
+export async function hasFlow(run: CaseRun): Promise<boolean> {
+  const { whole, divided } = await findStartPoint(run);
+  return Number(whole) > 0 || Number(divided ?? 0) > 0;
+}
+
 async function latestWhole(run: CaseRun, folders: string[], fields: string[]): Promise<string> {
   const times = new Set((await Promise.all(folders.map(timeFolders))).flat());
   const descending = [...times].sort((a, b) => Number(b) - Number(a));

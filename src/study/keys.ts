@@ -145,7 +145,7 @@ const entries: (Omit<StudyKey, "expects" | "example" | "unit"> & Partial<Pick<St
     key: "body",
     title: "Body",
     description: "How the numbers in the files are to be understood.",
-    expects: "a block with unit, travel, up, wheelbase and reference-area",
+    expects: "a block with unit, travel, up, clearance, wheelbase and reference-area",
     example: "{ unit: mm, travel: -x, up: +z }",
   },
   {
@@ -168,6 +168,15 @@ const entries: (Omit<StudyKey, "expects" | "example" | "unit"> & Partial<Pick<St
     description: "Direction upwards, in the axes of the files.",
     default: "+z",
     choices: signedAxes,
+  },
+  {
+    key: "body.clearance",
+    title: "Clearance",
+    description:
+      "Height of the lowest point of the baseline above the ground: zero for a vehicle on its wheels, more for a model that is held from elsewhere.",
+    default: "0 m",
+    example: "50 mm",
+    quantity: { dimension: "length", min: 0, max: 10, range: "0 to 10 m" },
   },
   {
     key: "body.wheelbase",

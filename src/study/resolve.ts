@@ -40,6 +40,7 @@ export function resolveStudy(document: StudyDocument, path: string): { study: St
       unit: body.unit,
       travel: body.travel,
       up: body.up,
+      clearance: body.clearance,
       wheelbase: body.wheelbase,
       referenceArea: body["reference-area"],
     },

@@ -42,6 +42,7 @@ export const studySchema = z
         unit: choice("body.unit", ["m", "mm", "cm", "in", "ft"]),
         travel: choice("body.travel", signedAxis),
         up: choice("body.up", signedAxis),
+        clearance: quantity("body.clearance"),
         wheelbase: quantityOr("body.wheelbase", "auto", "none"),
         "reference-area": quantityOr("body.reference-area", "auto"),
       })

@@ -19,6 +19,8 @@ export interface Study {
     unit: LengthUnit;
     travel: SignedAxis;
     up: SignedAxis;
+    /** metres: of the lowest point above the ground */
+    clearance: number;
     /** metres; auto: from the wheels of the baseline; none: the body has no axles, moments use the overall length */
     wheelbase: number | "auto" | "none";
     /** m², of the whole vehicle; auto: frontal area of the baseline */

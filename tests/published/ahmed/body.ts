@@ -12,14 +12,10 @@ export const ahmed = {
   clearance: 0.05,
   slant: 0.222,
   noseRadius: 0.1,
-  stilt: { diameter: 0.03, front: 0.2025, rear: 0.6725, side: 0.1635 },
 } as const;
 
-/** Steps of a quarter turn of the nose, and sides of a stilt: fine enough that no facet is taken for an edge. */
+/** Steps of a quarter turn of the nose: fine enough that no facet is taken for an edge. */
 const noseSteps = 24;
-const stiltSides = 24;
-/** How far a stilt reaches into the body, so that the two are joined whatever the rounding. */
-const sunk = 0.02;
 
 type Corner = Vector3;
 
@@ -32,8 +28,8 @@ interface Ring {
 }
 
 /**
- * The body with a slant of so many degrees (0 to 40), on four stilts on the ground at z = 0: x rearward from the foremost point, y to the right,
- * z up, metres. Parts: nose, roof, sides, underbody, slant, base, and four stilts, which are closed shells of their own that reach into the underbody.
+ * The body with a slant of so many degrees (0 to 40), without its stilts: x rearward from the foremost point, y to the right, z up from the
+ * ground, metres. Parts: nose, roof, sides, underbody, slant and base, which together are one closed shell.
  */
 export function ahmedBody(slantDegrees: number): TriangleSet {
   const triangles = new Map<string, Corner[][]>();
@@ -56,15 +52,6 @@ export function ahmedBody(slantDegrees: number): TriangleSet {
     }
   }
   face("base", cornersOf(last));
-  for (const [where, x] of [
-    ["front", ahmed.stilt.front],
-    ["rear", ahmed.stilt.rear],
-  ] as const)
-    for (const [hand, y] of [
-      ["left", -ahmed.stilt.side],
-      ["right", ahmed.stilt.side],
-    ] as const)
-      stilt(x, y, (corners) => face(`stilt-${where}-${hand}`, corners));
   return setOf(triangles);
 }
 
@@ -96,22 +83,6 @@ const cornersOf = ({ x, half, low, high }: Ring): Corner[] => [
   [x, half, high],
   [x, -half, high],
 ];
-
-function stilt(x: number, y: number, face: (corners: Corner[]) => void): void {
-  const radius = ahmed.stilt.diameter / 2;
-  const circle = (z: number): Corner[] =>
-    Array.from({ length: stiltSides }, (_, k) => {
-      const turn = (2 * Math.PI * k) / stiltSides;
-      return [x + radius * Math.cos(turn), y + radius * Math.sin(turn), z];
-    });
-  const [low, high] = [circle(0), circle(ahmed.clearance + sunk)];
-  face(low.toReversed());
-  face(high);
-  for (let k = 0; k < stiltSides; k++) {
-    const next = (k + 1) % stiltSides;
-    face([low[k]!, low[next]!, high[next]!, high[k]!]);
-  }
-}
 
 function setOf(triangles: Map<string, Corner[][]>): TriangleSet {
   const parts: Part[] = [...triangles.keys()].map((name) => ({ name, patch: name, file: 0 }));
