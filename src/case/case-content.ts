@@ -62,7 +62,7 @@ function cardOf(
     placement,
     body: { bounds: caseBounds(survey.bounds, placement), frontalArea: survey.frontalArea.value },
     mesh: meshOf(plan),
-    ...(plan.ladder.length === 0
+    ...(plan.start.value === "cold"
       ? {}
       : {
           ladder: plan.ladder.map((rung) => ({

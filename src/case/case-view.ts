@@ -21,6 +21,8 @@ export function caseView(plan: CasePlan, kind: CaseKind) {
     start: kind !== "case",
     firstOrder: kind === "first-order",
     firstIterations: plan.iterations.firstOrder.value,
+    /** it starts itself from uniform flow, but not in second order at once */
+    eased: plan.start.value === "ladder" && plan.ladder.length === 0,
     rungs: plan.ladder.map((_, k) => k + 1),
     studyLabel: label(plan.study),
     variantLabel: label(plan.variant),
@@ -60,6 +62,8 @@ export function caseView(plan: CasePlan, kind: CaseKind) {
     parts,
     finerParts: parts.filter((part) => part.level > mesh.surfaceLevel.value),
     wheels: parts.filter((part) => part.wheel !== null),
+    relaxation: plan.iterations.relaxation.value,
+    turbulenceRelaxation: plan.iterations.turbulenceRelaxation.value,
     mostIterations: kind === "first-order" ? plan.iterations.firstOrder.value : plan.iterations.most.value,
     writeEvery: kind === "first-order" ? plan.iterations.firstOrder.value : plan.iterations.writeEvery.value,
   };

@@ -30,6 +30,7 @@ export function planCase(given: {
   const { length: overall } = extentsOf(frame);
   const { kinematicViscosity, density } = airProperties(study.air);
   const air = `${(study.air.temperature - 273.15).toFixed(1)} degC, ${(study.air.pressure / 100).toFixed(2)} hPa, ${Number((100 * study.air.humidity).toFixed(1))} % humidity`;
+  const ladder = study.solver.start === "ladder" ? ladderOf(predicted.coarserCells) : [];
   const layers = layersFor({
     yPlus: study.mesh.yPlus,
     layers: study.mesh.layers,
@@ -69,15 +70,23 @@ export function planCase(given: {
     mesh: { ...meshOf(study, frame, body, predicted.cells), ...layers },
     boxes: frame.grid.boxes,
     parts: partsOf(study, frame, body, condition, layers.finalLayer.value),
-    ladder: study.solver.start === "ladder" ? ladderOf(predicted.coarserCells) : [],
+    start: planned(
+      study.solver.start,
+      "",
+      study.solver.start === "cold"
+        ? "from uniform flow, in second order from the first iteration"
+        : ladder.length > 0
+          ? `from the flow on ${ladder.length === 1 ? "a coarser grid" : `${ladder.length} coarser grids, one after the other`}`
+          : "from uniform flow, the first iterations in first order: this grid is too coarse for a coarser one",
+      source.study,
+    ),
+    ladder,
     iterations: {
       most: planned(study.solver.mostIterations, "", "most iterations; a run that has settled ends before", source.study),
       firstOrder: planned(
-        60,
+        Math.min(60, Math.max(1, Math.floor(study.solver.mostIterations / 2))),
         "",
-        study.solver.start === "ladder"
-          ? "in first order, on the coarsest rung alone: two coarse meshes of a pickup diverged from uniform flow in second order and did not after these"
-          : "in first order, before all others, with `run --careful` alone: two coarse meshes of a pickup diverged from uniform flow in second order and did not after these",
+        `in first order, where the flow starts from uniform: ${study.solver.start === "cold" ? "only with `run --careful`" : ladder.length > 0 ? "on the coarsest rung" : "before all others"}; two coarse meshes of a pickup that diverged or swung in second order settled after these`,
         source.solver,
       ),
       writeEvery: planned(
@@ -85,6 +94,18 @@ export function planCase(given: {
         "",
         "an interrupted run loses no more than this",
         source.practice,
+      ),
+      relaxation: planned(
+        study.solver.relaxation,
+        "",
+        "of the velocity: 0.9 settles soonest; at 0.7 the wake of a bluff body stays in a state that it left at 0.9, by a swing that grew",
+        source.solver,
+      ),
+      turbulenceRelaxation: planned(
+        Number(Math.min(0.7, study.solver.relaxation - 0.1).toPrecision(6)),
+        "",
+        "of k and omega: less than that of the velocity",
+        source.solver,
       ),
     },
     stop: {

@@ -105,13 +105,18 @@ export interface CasePlan {
   };
   boxes: RefinementBox[];
   parts: PlannedPart[];
-  /** Coarser grids that are solved one after the other before this one, the coarsest first; none for a start from uniform flow. */
+  /** ladder or cold, as the study has it */
+  start: Planned<"ladder" | "cold">;
+  /** Coarser grids that are solved one after the other before this one, the coarsest first; none for a cold start, or on coarse grids. */
   ladder: PlannedRung[];
   iterations: {
     most: Planned<number>;
     /** in first order, before all others, where the flow starts from uniform */
     firstOrder: Planned<number>;
     writeEvery: Planned<number>;
+    /** share of the change that is taken: of the velocity, and of k and omega */
+    relaxation: Planned<number>;
+    turbulenceRelaxation: Planned<number>;
   };
   stop: { drag: Planned<number>; lift: Planned<number>; confidence: Planned<number> };
 }

@@ -25,6 +25,7 @@ const body = "constant/triSurface/body.stl";
 /** Names of the steps of a case's ladder, as they are told. */
 export async function ladderSteps(run: CaseRun): Promise<string[]> {
   const names: string[] = [];
+  if (run.card.ladder?.length === 0) return [firstOrderStep.name];
   for (const rung of run.card.ladder ?? []) {
     const before = rung === run.card.ladder![0] ? firstOrderStep : mapStep("");
     const steps = [
@@ -46,8 +47,9 @@ const nameOn = ({ folder }: Pick<Rung, "folder">, step: string): string => `${fo
  * starts from the one before it, or from uniform flow.
  */
 export async function startOnLadder(run: CaseRun): Promise<Phase> {
-  const rungs = run.card.ladder ?? [];
-  if (rungs.length === 0) return run.settings.careful ? startInFirstOrder(run) : goOn;
+  const rungs = run.card.ladder;
+  if (rungs === undefined) return run.settings.careful ? startInFirstOrder(run) : goOn;
+  if (rungs.length === 0) return startInFirstOrder(run);
   if (await hasFlow(run)) {
     for (const name of await ladderSteps(run))
       run.emit({ event: "step-end", case: run.path, step: name, seconds: 0, skipped: true });

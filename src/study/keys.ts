@@ -282,7 +282,7 @@ const entries: (Omit<StudyKey, "expects" | "example" | "unit"> & Partial<Pick<St
     key: "solver",
     title: "Solver",
     description: "How the flow is computed.",
-    expects: "a block with turbulence, mode, start and most-iterations",
+    expects: "a block with turbulence, mode, start, relaxation and most-iterations",
     example: "{ most-iterations: 3000 }",
   },
   {
@@ -308,6 +308,15 @@ const entries: (Omit<StudyKey, "expects" | "example" | "unit"> & Partial<Pick<St
       "What the flow starts from: ladder, the flow of the same case on coarser grids, which are solved before; or cold, uniform flow.",
     default: "ladder",
     choices: ["ladder", "cold"],
+  },
+  {
+    key: "solver.relaxation",
+    title: "Relaxation",
+    description:
+      "Share of the velocity's change that an iteration takes: less is slower and steadier, for histories that swing with a period of some 15 iterations.",
+    default: 0.9,
+    example: "0.7",
+    quantity: { dimension: "ratio", min: 0.3, max: 0.95, range: "0.3 to 0.95" },
   },
   {
     key: "solver.most-iterations",

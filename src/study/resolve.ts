@@ -50,6 +50,7 @@ export function resolveStudy(document: StudyDocument, path: string): { study: St
       turbulence: solver.turbulence,
       mode: solver.mode,
       start: solver.start,
+      relaxation: solver.relaxation,
       mostIterations: solver["most-iterations"],
     },
     stop,

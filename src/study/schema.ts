@@ -68,6 +68,7 @@ export const studySchema = z
         turbulence: only("solver.turbulence", "k-omega-SST"),
         mode: only("solver.mode", "steady"),
         start: choice("solver.start", ["ladder", "cold"]),
+        relaxation: quantity("solver.relaxation"),
         "most-iterations": quantity("solver.most-iterations"),
       })
       .prefault({})

@@ -29,7 +29,7 @@ export interface Study {
   parts: PartRule[];
   /** shift: of the grid along the vehicle, as a share of a background cell */
   mesh: { cells: number; half: "auto" | boolean; yPlus: number; layers: number; shift: number };
-  solver: { turbulence: "k-omega-SST"; mode: "steady"; start: "ladder" | "cold"; mostIterations: number };
+  solver: { turbulence: "k-omega-SST"; mode: "steady"; start: "ladder" | "cold"; relaxation: number; mostIterations: number };
   /** Half-widths wanted, as coefficients; confidence 0..1 */
   stop: { drag: number; lift: number; confidence: number };
 }

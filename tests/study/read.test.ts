@@ -46,7 +46,7 @@ describe("a study file", () => {
         { name: "bed-cover", match: "bed-cover", rotating: false },
       ],
       mesh: { cells: 1_500_000, half: "auto", yPlus: 50, layers: 3, shift: 0 },
-      solver: { turbulence: "k-omega-SST", mode: "steady", start: "ladder", mostIterations: 3000 },
+      solver: { turbulence: "k-omega-SST", mode: "steady", start: "ladder", relaxation: 0.9, mostIterations: 3000 },
       stop: { drag: 0.001, lift: 0.003, confidence: 0.95 },
     };
     expect(await readStudy(path)).toEqual(wanted);
