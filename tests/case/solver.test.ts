@@ -86,14 +86,14 @@ describe("a prepared case in the real solver", () => {
     if (solver === null) return context.skip("OpenFOAM is not installed");
     const study = await cartStudy({
       variants: { plain: cartParts },
-      keys: { mesh: "{ cells: 5 thousand, y-plus: 300, layers: 0 }", solver: "{ most-iterations: 8 }" },
+      keys: { mesh: "{ cells: 5 thousand, y-plus: 300, layers: 0 }", solver: "{ most-iterations: 12 }" },
     });
     const [{ path }] = (await prepareStudy(study)) as [Awaited<ReturnType<typeof prepareStudy>>[number]];
     const run = { cwd: path, env: { ...solver.env, PWD: path, PATH: `${solver.path}:/usr/bin:/bin` }, extendEnv: false };
     await execa("/bin/sh", ["./Allrun"], run);
-    const name = "postProcessing/coefficients/4/coefficient.dat";
+    const name = "postProcessing/coefficients/6/coefficient.dat";
     const table = readTable(await readFile(join(path, name)), name);
-    expect([...table.columns[0]!.values]).toEqual([5, 6, 7, 8]);
+    expect([...table.columns[0]!.values]).toEqual([7, 8, 9, 10, 11, 12]);
     expect(await readdir(join(path, "first-order"))).toEqual(["log.simpleFoam", "system"]);
     await execa("/bin/sh", ["./Allclean"], run);
     expect((await readdir(path)).filter((each) => /^(log|postP|[1-9])/.test(each))).toEqual([]);
