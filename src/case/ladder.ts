@@ -9,6 +9,8 @@ export const firstOrderFolder = "first-order";
 export const mostRungs = 3;
 /** Below so many cells the flow has little to do with that on the case's own grid. */
 const leastCells = 10_000;
+/** Of rungs, as by default of cases. */
+const relaxation = { velocity: 0.9, turbulence: 0.7 };
 /** The coarsest rung comes from uniform flow, the others from the one before. */
 const iterations = { first: 200, later: 100 };
 
@@ -54,6 +56,13 @@ export function rungPlan(plan: CasePlan, rung: PlannedRung): CasePlan {
     // Layers are relative to the cells that they stand in: they grow with them, which the mesher and the solver take best.
     parts: plan.parts.map((part) => ({ ...part, level: part.level - coarser })),
     ladder: [],
-    iterations: { ...plan.iterations, most: rung.iterations, writeEvery: { ...rung.iterations, reason: "at its end" } },
+    iterations: {
+      ...plan.iterations,
+      most: rung.iterations,
+      writeEvery: { ...rung.iterations, reason: "at its end" },
+      // The usual one, whatever that of the case: on rungs a small one kept the wrong state of a bluff body's wake.
+      relaxation: { ...plan.iterations.relaxation, value: relaxation.velocity },
+      turbulenceRelaxation: { ...plan.iterations.turbulenceRelaxation, value: relaxation.turbulence },
+    },
   };
 }
