@@ -4,7 +4,6 @@ import { describe, expect, test } from "vitest";
 import { asciiStl } from "../../../src/geometry/files/write-stl.js";
 import { surveyBody } from "../../../src/geometry/survey-body.js";
 import { readCaseHistories } from "../../../src/history/read-case.js";
-import { settle } from "../../../src/history/settle.js";
 import { ahmedBody } from "./body.js";
 
 const recorded = join(import.meta.dirname, "recorded");
@@ -58,13 +57,10 @@ async function meansOf(name: string, run: Run) {
     const kept = values.subarray(Math.floor(values.length / 2));
     return kept.reduce((sum, value) => sum + value, 0) / kept.length;
   };
-  const cd = column("coefficients", "coefficient", "Cd");
   // Forces of the computed half in newtons, the area that of the whole body.
   const scale = 2 / (0.5 * run.reference.density * run.reference.speed ** 2 * run.reference.area);
   return {
-    rows: cd.length,
-    drag: lastHalf(cd),
-    settling: settle(cd, { halfWidth: 0.003 }),
+    drag: lastHalf(column("coefficients", "coefficient", "Cd")),
     lift: lastHalf(column("coefficients", "coefficient", "Cl")),
     slant: scale * lastHalf(column("part-slant", "force", "total_x")),
     base: scale * lastHalf(column("part-base", "force", "total_x")),
