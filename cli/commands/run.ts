@@ -14,6 +14,7 @@ interface Options {
   cores?: number;
   atOnce?: number;
   iterations?: number;
+  careful?: boolean;
 }
 
 export const command: CommandModule<Options> = {
@@ -25,6 +26,7 @@ export const command: CommandModule<Options> = {
     command
       .option("--cores <n>", "cores to use in all (default: all of this machine)", positiveInteger)
       .option("--at-once <n>", "cases side by side (default: as many as there are cores)", positiveInteger)
+      .option("--careful", "begin cold starts in first order, and try cases again that diverged")
       .option("--iterations <n>", "hard limit of iterations instead of the study's", positiveInteger);
   },
   examples: [
@@ -40,7 +42,13 @@ export const command: CommandModule<Options> = {
     const cores = options.cores ?? availableParallelism();
     const outcomes = await runCases(
       paths,
-      { cores, atOnce: options.atOnce ?? Math.min(cores, paths.length), signal, mostIterations: options.iterations },
+      {
+        cores,
+        atOnce: options.atOnce ?? Math.min(cores, paths.length),
+        signal,
+        mostIterations: options.iterations,
+        careful: options.careful,
+      },
       (event) => shown.show(event),
     ).finally(() => shown.end());
     print.document("run", { study: study?.name ?? null, cases: outcomes });

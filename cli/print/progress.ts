@@ -23,7 +23,8 @@ const tellingWidth = (cd: number, halfWidth: number | null): string =>
 function iterationText(event: Extract<RunEvent, { event: "iteration" }>): string {
   const cd = event.cd === null ? "" : `  Cd ${fixed(event.cd, 4)}${tellingWidth(event.cd, event.halfWidth)}`;
   const left = event.secondsLeft === null ? "" : `  ${duration(event.secondsLeft)} left at most`;
-  return `iteration ${event.iteration} of ${event.most}${cd}${left}`;
+  const on = event.rung === undefined ? "" : `${event.rung} `;
+  return `${on}iteration ${event.iteration} of ${event.most}${cd}${left}`;
 }
 
 function barProgress(print: Printer): Progress {

@@ -6,6 +6,7 @@ import { packageVersion } from "../package-files.js";
 import type { Study } from "../study/study.js";
 import { caseBounds } from "./body-in-case.js";
 import { sha256 } from "./hash.js";
+import { rungPlan } from "./ladder.js";
 import { listPlan } from "./list-plan.js";
 import type { CasePlan } from "./plan.js";
 import { type CaseFile, renderCase, templatesHash } from "./render.js";
@@ -38,7 +39,7 @@ function cardOf(
   inputs: ReadonlyMap<string, string>,
   files: CaseFile[],
 ): RunCard {
-  const { reference, domain, mesh, placement } = plan;
+  const { reference, placement } = plan;
   const inside = new Set(plan.parts.map(({ patch }) => patch));
   const variant = study.variants.find(({ name }) => name === plan.variant)!;
   return {
@@ -60,14 +61,16 @@ function cardOf(
     leftOut: survey.parts.filter(({ patch }) => !inside.has(patch)).map(({ name }) => name),
     placement,
     body: { bounds: caseBounds(survey.bounds, placement), frontalArea: survey.frontalArea.value },
-    mesh: {
-      domain: { min: domain.min.value, max: domain.max.value },
-      baseCell: domain.baseCell.value,
-      divisions: domain.divisions.value,
-      surfaceLevel: mesh.surfaceLevel.value,
-      boxes: plan.boxes.map(({ name, box, level }) => ({ name, box, level })),
-      predictedCells: mesh.predictedCells.value,
-    },
+    mesh: meshOf(plan),
+    ...(plan.start.value === "cold"
+      ? {}
+      : {
+          ladder: plan.ladder.map((rung) => ({
+            folder: rung.folder,
+            mesh: meshOf(rungPlan(plan, rung)),
+            mostIterations: rung.iterations.value,
+          })),
+        }),
     stop: { drag: plan.stop.drag.value, lift: plan.stop.lift.value, confidence: plan.stop.confidence.value },
     mostIterations: plan.iterations.most.value,
     plan: listPlan(plan),
@@ -81,3 +84,12 @@ function cardOf(
     },
   };
 }
+
+const meshOf = ({ domain, mesh, boxes }: CasePlan): RunCard["mesh"] => ({
+  domain: { min: domain.min.value, max: domain.max.value },
+  baseCell: domain.baseCell.value,
+  divisions: domain.divisions.value,
+  surfaceLevel: mesh.surfaceLevel.value,
+  boxes: boxes.map(({ name, box, level }) => ({ name, box, level })),
+  predictedCells: mesh.predictedCells.value,
+});

@@ -5,8 +5,11 @@ import { label } from "./template-text.js";
 /** The cell limit of the mesher over the predicted count: cells inside the body are counted while it refines. */
 const limitOverPrediction = 4;
 
+/** The case itself, a rung of its ladder, or the first iterations of the grid that starts from uniform flow; only the case's forces are read. */
+export type CaseKind = "case" | "rung" | "first-order";
+
 /** What the templates see of a plan, as `it`. Numbers in SI and case axes. */
-export function caseView(plan: CasePlan) {
+export function caseView(plan: CasePlan, kind: CaseKind) {
   const { half, domain, mesh, flow, air, reference, parts, condition } = plan;
   const onset = onsetFlow(condition);
   const final = mesh.finalLayer.value;
@@ -15,6 +18,12 @@ export function caseView(plan: CasePlan) {
   // Relative thickness of all layers together: final (1 + 1/r + 1/r² + ...).
   const thickness = final * Array.from({ length: layers }, (_, k) => expansion ** -k).reduce((sum, share) => sum + share, 0);
   return {
+    start: kind !== "case",
+    firstOrder: kind === "first-order",
+    firstIterations: plan.iterations.firstOrder.value,
+    /** it starts itself from uniform flow, but not in second order at once */
+    eased: plan.start.value === "ladder" && plan.ladder.length === 0,
+    rungs: plan.ladder.map((_, k) => k + 1),
     studyLabel: label(plan.study),
     variantLabel: label(plan.variant),
     conditionLabel: label(condition.name),
@@ -53,8 +62,10 @@ export function caseView(plan: CasePlan) {
     parts,
     finerParts: parts.filter((part) => part.level > mesh.surfaceLevel.value),
     wheels: parts.filter((part) => part.wheel !== null),
-    mostIterations: plan.iterations.most.value,
-    writeEvery: plan.iterations.writeEvery.value,
+    relaxation: plan.iterations.relaxation.value,
+    turbulenceRelaxation: plan.iterations.turbulenceRelaxation.value,
+    mostIterations: kind === "first-order" ? plan.iterations.firstOrder.value : plan.iterations.most.value,
+    writeEvery: kind === "first-order" ? plan.iterations.firstOrder.value : plan.iterations.writeEvery.value,
   };
 }
 

@@ -35,6 +35,8 @@ export interface GridWish {
   cells: number;
   layers: number;
   half: boolean;
+  /** of the grid rearward, as a share of a base cell */
+  shift: number;
 }
 
 export const cellsBetweenLevels = 2;
@@ -73,7 +75,10 @@ function gridOf(body: BodyForGrid, wish: GridWish, exposed: Exposed, wanted: num
   const baseCell = Number((wanted * 2 ** surfaceLevel).toPrecision(3));
   const surfaceCell = baseCell / 2 ** surfaceLevel;
   const grid = {
-    domain: boundingDomain({ bounds: body.bounds, frontalArea: body.frontalArea }, { baseCell, half: wish.half }),
+    domain: boundingDomain(
+      { bounds: body.bounds, frontalArea: body.frontalArea },
+      { baseCell, shift: wish.shift * baseCell, half: wish.half },
+    ),
     surfaceLevel,
     surfaceCell,
     boxes: refinementBoxes(body.bounds, surfaceLevel),
@@ -81,6 +86,27 @@ function gridOf(body: BodyForGrid, wish: GridWish, exposed: Exposed, wanted: num
   };
   return { ...grid, cells: cellsOf(body, wish, grid, exposed) };
 }
+
+/**
+ * The same grid with all cells on and around the body so many times twice as large; domain and background stay. Null when the body would
+ * then lie in background cells.
+ */
+export function coarserGrid(grid: Grid, coarser: number): Omit<Grid, "cells"> | null {
+  const surfaceLevel = grid.surfaceLevel - coarser;
+  if (surfaceLevel < 1) return null;
+  return {
+    domain: grid.domain,
+    surfaceLevel,
+    surfaceCell: grid.surfaceCell * 2 ** coarser,
+    boxes: coarserBoxes(grid.boxes, coarser),
+    levels: new Map([...grid.levels].map(([patch, level]) => [patch, level - coarser])),
+    smallBelow: grid.smallBelow,
+  };
+}
+
+/** Boxes whose cells would be those of the background are none. */
+export const coarserBoxes = (boxes: RefinementBox[], coarser: number): RefinementBox[] =>
+  boxes.map((box) => ({ ...box, level: box.level - coarser })).filter(({ level }) => level >= 1);
 
 /** Predicted cells of one body in a grid that is given: a variant in the grid of its baseline. */
 export function cellsOf(

@@ -15,6 +15,9 @@ export async function resultsIn(folder: string): Promise<string[]> {
   const names = (await readdir(folder)).filter((name) => isTime(name) || own.test(name));
   const below: string[] = [];
   for (const path of deeper) if (await exists(join(folder, path))) below.push(path);
+  const ladder = await readdir(join(folder, "ladder")).catch(() => [] as string[]);
+  for (const rung of ladder.filter((name) => /^[1-9]$/.test(name)))
+    below.push(...(await resultsIn(join(folder, "ladder", rung))).map((path) => `ladder/${rung}/${path}`));
   return [...names, ...below].sort();
 }
 

@@ -3,7 +3,7 @@ import { source } from "./planned.js";
 
 /** All numbers of a plan as rows, in the plan's order; keys are paths such as `domain.min`. */
 export function listPlan(plan: CasePlan): PlannedNumber[] {
-  const { condition: _condition, placement: _placement, boxes, parts, study: _study, variant: _variant, ...numbers } = plan;
+  const { condition: _condition, placement: _placement, boxes, parts, ladder, study: _study, variant: _variant, ...numbers } = plan;
   const rows: PlannedNumber[] = [];
   collect(numbers, "", rows);
   for (const { name, box, level } of boxes)
@@ -32,6 +32,9 @@ export function listPlan(plan: CasePlan): PlannedNumber[] {
         source: "speed over the height of the fitted axle",
       });
   }
+  ladder.forEach(({ folder: _folder, ...numbers }, k) => {
+    collect(numbers, `ladder.${k + 1}`, rows);
+  });
   return rows;
 }
 

@@ -5,16 +5,17 @@ import type { Vector3 } from "../geometry/vector.js";
 import type { Condition, Study } from "../study/study.js";
 import { caseBounds, partsInside, wholeFrontalArea } from "./body-in-case.js";
 import { cellsBetweenLevels, levelOf } from "./grid.js";
+import { ladderOf } from "./ladder.js";
 import { finalOnLevel, layersFor } from "./layers.js";
 import type { CasePlan, PlannedPart } from "./plan.js";
 import { millimetres, planned, source } from "./planned.js";
 import { meshCost } from "./sizing.js";
-import type { StudyFrame, VariantBody } from "./study-frame.js";
+import type { PredictedMesh, StudyFrame, VariantBody } from "./study-frame.js";
 import { turningWheels } from "./wheels.js";
 
 /**
- * Every number of one case. Pure. `frame` is what all cases of the study share, `body` the variant, `cells` what is predicted for it
- * in the grid of the frame.
+ * Every number of one case. Pure. `frame` is what all cases of the study share, `body` the variant, `predicted` the cells
+ * that it will have in the grid of the frame and in coarser ones.
  *
  * @throws Problem(input) as `turningWheels`.
  */
@@ -22,13 +23,14 @@ export function planCase(given: {
   study: Study;
   frame: StudyFrame;
   body: VariantBody;
-  cells: number;
+  predicted: Pick<PredictedMesh, "cells" | "coarserCells">;
   condition: Condition;
 }): CasePlan {
-  const { study, frame, body, condition } = given;
+  const { study, frame, body, predicted, condition } = given;
   const { length: overall } = extentsOf(frame);
   const { kinematicViscosity, density } = airProperties(study.air);
   const air = `${(study.air.temperature - 273.15).toFixed(1)} degC, ${(study.air.pressure / 100).toFixed(2)} hPa, ${Number((100 * study.air.humidity).toFixed(1))} % humidity`;
+  const ladder = study.solver.start === "ladder" ? ladderOf(predicted.coarserCells) : [];
   const layers = layersFor({
     yPlus: study.mesh.yPlus,
     layers: study.mesh.layers,
@@ -64,17 +66,46 @@ export function planCase(given: {
       ),
       wheelbase: frame.wheelbase,
     },
-    domain: domainOf(frame, wholeFrontalArea(body.survey)),
-    mesh: { ...meshOf(study, frame, body, given.cells), ...layers },
+    domain: domainOf(study, frame, wholeFrontalArea(body.survey)),
+    mesh: { ...meshOf(study, frame, body, predicted.cells), ...layers },
     boxes: frame.grid.boxes,
     parts: partsOf(study, frame, body, condition, layers.finalLayer.value),
+    start: planned(
+      study.solver.start,
+      "",
+      study.solver.start === "cold"
+        ? "from uniform flow, in second order from the first iteration"
+        : ladder.length > 0
+          ? `from the flow on ${ladder.length === 1 ? "a coarser grid" : `${ladder.length} coarser grids, one after the other`}`
+          : "from uniform flow, the first iterations in first order: this grid is too coarse for a coarser one",
+      source.study,
+    ),
+    ladder,
     iterations: {
       most: planned(study.solver.mostIterations, "", "most iterations; a run that has settled ends before", source.study),
+      firstOrder: planned(
+        Math.min(60, Math.max(1, Math.floor(study.solver.mostIterations / 2))),
+        "",
+        `in first order, where the flow starts from uniform: ${study.solver.start === "cold" ? "only with `run --careful`" : ladder.length > 0 ? "on the coarsest rung" : "before all others"}; two coarse meshes of a pickup that diverged or swung in second order settled after these`,
+        source.solver,
+      ),
       writeEvery: planned(
         writeInterval(study.solver.mostIterations),
         "",
         "an interrupted run loses no more than this",
         source.practice,
+      ),
+      relaxation: planned(
+        study.solver.relaxation,
+        "",
+        "of the velocity: 0.9 settles soonest; at 0.7 the wake of a bluff body stays in a state that it left at 0.9, by a swing that grew",
+        source.solver,
+      ),
+      turbulenceRelaxation: planned(
+        Number(Math.min(0.7, study.solver.relaxation - 0.1).toPrecision(6)),
+        "",
+        "of k and omega: less than that of the velocity",
+        source.solver,
       ),
     },
     stop: {
@@ -140,7 +171,7 @@ function flowOf(
   };
 }
 
-function domainOf(frame: StudyFrame, frontalArea: number): CasePlan["domain"] {
+function domainOf(study: Study, frame: StudyFrame, frontalArea: number): CasePlan["domain"] {
   const { domain, surfaceLevel } = frame.grid;
   const { length } = extentsOf(frame);
   const { ahead, behind, side, top } = domain.distances;
@@ -159,6 +190,14 @@ function domainOf(frame: StudyFrame, frontalArea: number): CasePlan["domain"] {
       "m",
       `surface cell times 2^${surfaceLevel}, near a fifth of the length; all faces of the domain on its multiples, so all cells are cubes, the same for all variants`,
       source.domain,
+    ),
+    shift: planned(
+      study.mesh.shift * domain.baseCell,
+      "m",
+      study.mesh.shift === 0
+        ? "the grid is anchored at the origin"
+        : `the grid is moved rearward by ${Number((100 * study.mesh.shift).toPrecision(4))} % of a base cell, the body is not`,
+      source.study,
     ),
     divisions: planned(domain.divisions, "", "extent of the domain over the base cell", source.definition),
     blockage: planned(

@@ -33,6 +33,16 @@ export interface RefinementBox {
   level: number;
 }
 
+/** A coarser grid on the way to the case's own. */
+export interface PlannedRung {
+  /** of the rung in the case, such as `ladder/1` */
+  folder: string;
+  /** levels that its cells on and around the body are above those of the case: each doubles the edge */
+  coarser: Planned<number>;
+  predictedCells: Planned<number>;
+  iterations: Planned<number>;
+}
+
 /**
  * Every number of one case before anything is written. Case axes (SAE J1594): x rearward, y right, z up, origin on the ground at
  * mid-wheelbase and mid-track; metres, SI.
@@ -69,6 +79,8 @@ export interface CasePlan {
     min: Planned<Vector3>;
     max: Planned<Vector3>;
     baseCell: Planned<number>;
+    /** m: of the grid's planes rearward from the origin */
+    shift: Planned<number>;
     /** cells of the background mesh along x, y, z */
     divisions: Planned<Vector3>;
     /** ratio, whole vehicle in whole tunnel */
@@ -93,6 +105,18 @@ export interface CasePlan {
   };
   boxes: RefinementBox[];
   parts: PlannedPart[];
-  iterations: { most: Planned<number>; writeEvery: Planned<number> };
+  /** ladder or cold, as the study has it */
+  start: Planned<"ladder" | "cold">;
+  /** Coarser grids that are solved one after the other before this one, the coarsest first; none for a cold start, or on coarse grids. */
+  ladder: PlannedRung[];
+  iterations: {
+    most: Planned<number>;
+    /** in first order, before all others, where the flow starts from uniform */
+    firstOrder: Planned<number>;
+    writeEvery: Planned<number>;
+    /** share of the change that is taken: of the velocity, and of k and omega */
+    relaxation: Planned<number>;
+    turbulenceRelaxation: Planned<number>;
+  };
   stop: { drag: Planned<number>; lift: Planned<number>; confidence: Planned<number> };
 }

@@ -85,8 +85,8 @@ function planBodies(study: Study, bodies: VariantBody[]): PlannedCase[] {
     ]),
   );
   return studyCases(study).map(({ path, variant, condition }) => {
-    const { body, findings, cells, exposed } = stands.get(variant.name)!;
-    const plan = planCase({ study, frame, body, cells, condition });
+    const { body, findings, exposed, ...predicted } = stands.get(variant.name)!;
+    const plan = planCase({ study, frame, body, predicted, condition });
     return {
       path,
       variant: variant.name,

@@ -18,6 +18,15 @@ function axis() {
   return z.enum(["+x", "-x", "+y", "-y", "+z", "-z"]);
 }
 
+const mesh = z.object({
+  domain: box,
+  baseCell: number,
+  divisions: vector,
+  surfaceLevel: number,
+  boxes: z.array(z.object({ name: z.string(), box, level: number })),
+  predictedCells: number,
+});
+
 const runCard = z.object({
   schema: z.literal("dragledger/run-card/1"),
   tool: z.object({ name: z.literal("dragledger"), version: z.string() }),
@@ -37,14 +46,9 @@ const runCard = z.object({
   leftOut: z.array(z.string()).optional(),
   placement,
   body: z.object({ bounds: box, frontalArea: number }),
-  mesh: z.object({
-    domain: box,
-    baseCell: number,
-    divisions: vector,
-    surfaceLevel: number,
-    boxes: z.array(z.object({ name: z.string(), box, level: number })),
-    predictedCells: number,
-  }),
+  mesh,
+  // A run works in these folders: none but our own names.
+  ladder: z.array(z.object({ folder: z.string().regex(/^ladder\/[1-9]$/), mesh, mostIterations: number })).optional(),
   stop: z.object({ drag: number, lift: number, confidence: number }),
   mostIterations: number,
   plan: z.array(

@@ -2,8 +2,9 @@ import { readdirSync, readFileSync } from "node:fs";
 import { join } from "node:path";
 import ejs from "ejs";
 import { packageFile } from "../package-files.js";
-import { caseView } from "./case-view.js";
+import { type CaseKind, caseView } from "./case-view.js";
 import { sha256 } from "./hash.js";
+import { firstOrderFolder, rungPlan } from "./ladder.js";
 import type { CasePlan } from "./plan.js";
 import { header, templateText } from "./template-text.js";
 
@@ -49,9 +50,31 @@ function readTemplates(root: string): Templates {
 /** sha256 over the paths and texts of all case templates. */
 export const templatesHash = (): string => caseTemplates().hash;
 
-/** All text files of a case. Pure but for reading the package's own templates the first time. */
+/**
+ * All text files of a case, those of its ladder in folders of their own. The grid that starts from uniform flow, the coarsest, has
+ * a folder for its first iterations. Pure but for reading the package's own templates the first time.
+ */
 export function renderCase(plan: CasePlan): CaseFile[] {
-  const it = caseView(plan);
+  const rungs = plan.ladder.flatMap((rung, k) => {
+    const own = rungPlan(plan, rung);
+    const tree = rendered(own, "rung").filter(({ path }) => path.includes("/"));
+    return below(rung.folder, k === 0 ? [...tree, ...firstOrder(own)] : tree);
+  });
+  return [...rendered(plan, "case"), ...rungs, ...(plan.ladder.length === 0 ? firstOrder(plan) : [])];
+}
+
+const below = (folder: string, files: CaseFile[]): CaseFile[] => files.map((file) => ({ ...file, path: `${folder}/${file.path}` }));
+
+const ofSolver = ["system/controlDict", "system/fvSchemes", "system/fvSolution"];
+
+const firstOrder = (plan: CasePlan): CaseFile[] =>
+  below(
+    firstOrderFolder,
+    rendered(plan, "first-order").filter(({ path }) => ofSolver.includes(path)),
+  );
+
+function rendered(plan: CasePlan, kind: CaseKind): CaseFile[] {
+  const it = caseView(plan, kind);
   return caseTemplates().templates.map(({ path, render }) => ({
     path,
     content: render({ it, header }),

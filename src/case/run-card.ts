@@ -28,6 +28,8 @@ export interface RunCard {
     boxes: { name: string; box: Box; level: number }[];
     predictedCells: number;
   };
+  /** Coarser grids that the case is started from, the coarsest first: folder in the case, mesh, iterations. Missing: a cold start. */
+  ladder?: { folder: string; mesh: RunCard["mesh"]; mostIterations: number }[];
   stop: { drag: number; lift: number; confidence: number };
   mostIterations: number;
   plan: PlannedNumber[];

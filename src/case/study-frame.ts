@@ -5,8 +5,9 @@ import type { Box, Vector3 } from "../geometry/vector.js";
 import type { Condition, Study } from "../study/study.js";
 import { caseBounds, partsInside, type Side, wholeBounds, wholeFrontalArea } from "./body-in-case.js";
 import { exposedSurface } from "./exposed-surface.js";
-import { type BodyForGrid, cellsOf, type Grid, gridFor } from "./grid.js";
+import { type BodyForGrid, cellsOf, coarserGrid, type Grid, gridFor } from "./grid.js";
 import { halfOf } from "./half-model.js";
+import { mostRungs } from "./ladder.js";
 import type { Planned } from "./plan.js";
 import { referenceArea, referenceLength, wheelbaseOf } from "./reference.js";
 
@@ -43,10 +44,10 @@ export function frameOf(study: Study, bodies: VariantBody[], conditions: Conditi
   const half = halfOf(study, bodies, conditions);
   const wheelbase = wheelbaseOf(study, survey);
   const orientation: Orientation = { unit: study.body.unit, travel: study.body.travel, up: study.body.up };
-  const placement = placementOf(orientation, shiftOf(orientation, survey, wheelbase !== null));
+  const placement = placementOf(orientation, shiftOf(orientation, survey, wheelbase !== null, study.body.clearance));
   const bounds = wholeBounds(survey, placement);
   const side: Side = !half.value ? 0 : liesLeft(survey, placement) ? -1 : 1;
-  const wish = { cells: study.mesh.cells, layers: study.mesh.layers, half: half.value };
+  const wish = { cells: study.mesh.cells, layers: study.mesh.layers, half: half.value, shift: study.mesh.shift };
   const grid = gridFor(bodyForGrid(baseline, placement, side), wish);
   if (side === -1) mirrorDomain(grid);
   return {
@@ -61,17 +62,27 @@ export function frameOf(study: Study, bodies: VariantBody[], conditions: Conditi
   };
 }
 
-/** The cells that a variant will have in the grid of the study, and what of each of its parts the air reaches, m² by patch. */
-export function predictedFor(
-  study: Study,
-  frame: StudyFrame,
-  body: VariantBody,
-): { cells: number; exposed: ReadonlyMap<string, number> } {
+/** What is predicted of one variant's mesh. */
+export interface PredictedMesh {
+  cells: number;
+  /** Cells of the grids that are one, two, ... levels coarser, as far as there are such. */
+  coarserCells: number[];
+  /** m² of each part that the air reaches, by patch */
+  exposed: ReadonlyMap<string, number>;
+}
+
+/** The mesh that a variant will have in the grid of the study, and in the coarser ones that it may be started from. */
+export function predictedFor(study: Study, frame: StudyFrame, body: VariantBody): PredictedMesh {
   const { grid, placement, side } = frame;
   const inGrid = bodyForGrid(body, placement, side);
   const exposed = inGrid.exposed(grid.surfaceCell);
-  const wish = { cells: study.mesh.cells, layers: study.mesh.layers, half: side !== 0 };
-  return { cells: cellsOf(inGrid, wish, grid, exposed), exposed: exposed.areas };
+  const wish = { cells: study.mesh.cells, layers: study.mesh.layers, half: side !== 0, shift: study.mesh.shift };
+  const coarserCells: number[] = [];
+  for (let coarser = 1; coarser <= mostRungs; coarser++) {
+    const coarse = coarserGrid(grid, coarser);
+    if (coarse !== null) coarserCells.push(cellsOf(inGrid, wish, coarse, exposed));
+  }
+  return { cells: cellsOf(inGrid, wish, grid, exposed), coarserCells, exposed: exposed.areas };
 }
 
 function bodyForGrid({ set, survey }: VariantBody, placement: Placement, side: Side): BodyForGrid {
@@ -91,14 +102,14 @@ function bodyForGrid({ set, survey }: VariantBody, placement: Placement, side: S
   };
 }
 
-/** Moves the origin onto the ground, the mid-plane and the middle between the axles (of the body without axles). Metres. */
-function shiftOf(orientation: Orientation, survey: Survey, hasAxles: boolean): Vector3 {
+/** Moves the origin onto the ground (`clearance` below the lowest point), the mid-plane and the middle between the axles (of the body without axles). Metres. */
+function shiftOf(orientation: Orientation, survey: Survey, hasAxles: boolean, clearance: number): Vector3 {
   const { rearward } = vehicleAxes(orientation);
   const turned = { ...placementOf(orientation, [0, 0, 0]), scale: 1 };
   const { min, max } = caseBounds(survey.bounds, turned);
   const front = hasAxles ? frontAxle(survey, rearward) : null;
   const middle = front !== null && survey.wheelbase !== null ? front + survey.wheelbase / 2 : (min[0] + max[0]) / 2;
-  return [0 - middle, 0 - midPlane(survey, turned), 0 - min[2]];
+  return [0 - middle, 0 - midPlane(survey, turned), clearance - min[2]];
 }
 
 /** Position of the foremost axle along the rearward direction, the mean of its wheels; null without wheels. */

@@ -78,12 +78,12 @@ function requirePlane(study: Study, frame: StudyFrame, { survey, variant }: Vari
 
 function groundFindings(study: Study, frame: StudyFrame, bounds: Box, variant: string, where: string): Finding[] {
   const low = bounds.min[2];
-  if (variant === study.baseline || Math.abs(low) <= sameHeight) return [];
+  if (variant === study.baseline || Math.abs(low - study.body.clearance) <= sameHeight) return [];
   const { surfaceCell } = frame.grid;
   if (low < -surfaceCell)
     throw inputProblem({
       code: "variant-below-ground",
-      message: `Variant '${variant}' reaches ${millimetres(-low)} below the ground, which is at the lowest point of the baseline: more than a surface cell of it would be cut off.`,
+      message: `Variant '${variant}' reaches ${millimetres(-low)} below the ground, which is at the lowest point of the baseline${study.body.clearance > 0 ? " less the clearance" : ""}: more than a surface cell of it would be cut off.`,
       where,
       remedy: "Raise the body, or make the variant that reaches lowest the baseline.",
     });

@@ -21,6 +21,8 @@ export interface DomainOptions {
   mostBlockage: number;
   /** metres: edge of the cubes of the background mesh; a fifth of the body's length, to two digits, unless given */
   baseCell: number | null;
+  /** metres that the grid, and with it the inlet and the outlet, is moved rearward; less than a base cell */
+  shift: number;
   /** keep one side of the plane y = 0 only */
   half: boolean;
 }
@@ -37,6 +39,7 @@ export const defaultDomain: Readonly<DomainOptions> = {
   top: 1.5,
   mostBlockage: 0.015,
   baseCell: null,
+  shift: 0,
   half: false,
 };
 
@@ -59,7 +62,7 @@ export interface BoundingDomain extends Box {
 
 /**
  * Bounding domain of a body over a flat ground at z = 0, in case axes. Every face lies on a plane of the grid of cubes that is
- * anchored at the origin, so bodies with the same base cell share one background grid. Faces are only ever moved outwards, so the
+ * anchored at the origin (or `shift` behind it), so bodies with the same base cell share one background grid. Faces are only ever moved outwards, so the
  * asked distances and the blockage limit hold after rounding.
  *
  * `body`: bounds in case axes, or a survey, which is turned into case axes (lowest point on the ground, mid-wheelbase or, without
@@ -74,7 +77,8 @@ export function boundingDomain(body: BodyInTunnel | Survey, options: Partial<Dom
   const { bounds, frontalArea } = "extents" in body ? surveyInTunnel(body) : body;
   const wanted = { ...defaultDomain, ...options };
   const length = bounds.max[0] - bounds.min[0];
-  const given = { ...wanted, frontalArea, length, width: bounds.max[1] - bounds.min[1], roof: bounds.max[2] };
+  const { shift, ...positive } = wanted;
+  const given = { ...positive, frontalArea, length, width: bounds.max[1] - bounds.min[1], roof: bounds.max[2] };
   for (const [name, value] of Object.entries(given))
     if (typeof value === "number" && !(value > 0 && Number.isFinite(value)))
       throw new RangeError(`${name} is ${value}, must be positive`);
@@ -87,12 +91,12 @@ export function boundingDomain(body: BodyInTunnel | Survey, options: Partial<Dom
   const grown = Math.max(1, Math.sqrt(frontalArea / (2 * halfWidth * height) / wanted.mostBlockage));
 
   const first: Vector3 = [
-    -cellsUpTo(-(bounds.min[0] - wanted.ahead * length), baseCell),
+    -cellsUpTo(shift - (bounds.min[0] - wanted.ahead * length), baseCell),
     -cellsUpTo(grown * halfWidth, baseCell),
     0,
   ];
   const last: Vector3 = [
-    cellsUpTo(bounds.max[0] + wanted.behind * length, baseCell),
+    cellsUpTo(bounds.max[0] + wanted.behind * length - shift, baseCell),
     cellsUpTo(grown * halfWidth, baseCell),
     cellsUpTo(grown * height, baseCell),
   ];
@@ -101,8 +105,9 @@ export function boundingDomain(body: BodyInTunnel | Survey, options: Partial<Dom
   if (kept === "right") first[1] = 0;
   if (kept === "left") last[1] = 0;
   // 0 + ... turns -0 into 0.
-  const min = first.map((cells) => 0 + cells * baseCell) as Vector3;
-  const max = last.map((cells) => 0 + cells * baseCell) as Vector3;
+  const anchor = [shift, 0, 0];
+  const min = first.map((cells, axis) => anchor[axis]! + cells * baseCell) as Vector3;
+  const max = last.map((cells, axis) => anchor[axis]! + cells * baseCell) as Vector3;
   return {
     min,
     max,

@@ -13,13 +13,15 @@ import type { Workplace } from "./workplace.js";
 
 export interface RunSettings {
   mostIterations: number | undefined;
+  /** A start from uniform flow begins in first order. */
+  careful: boolean;
   pollMilliseconds: number;
   testEvery: number;
   minimumWindow: number;
   graceMilliseconds: number;
 }
 
-/** One case while it is run: what it is, where it stands, and how its programs are started. */
+/** One case, or one rung of its ladder, while it is run: what it is, where it stands, and how its programs are started. */
 export class CaseRun {
   private readonly began = performance.now();
   private readonly secondsBefore: number;
@@ -30,18 +32,23 @@ export class CaseRun {
   readonly card: RunCard;
   readonly solver: SolverEnvironment;
   readonly ranks: number;
+  /** Ranks that a mesh of so many cells is solved on. */
+  readonly ranksFor: (cells: number) => number;
   readonly state: RunState;
   readonly settings: RunSettings;
   readonly signal: AbortSignal;
   readonly emit: (event: RunEvent) => void;
   readonly workplace: Workplace;
 
-  constructor(given: Pick<CaseRun, "path" | "card" | "solver" | "ranks" | "state" | "settings" | "signal" | "emit" | "workplace">) {
+  constructor(
+    given: Pick<CaseRun, "path" | "card" | "solver" | "ranksFor" | "state" | "settings" | "signal" | "emit" | "workplace">,
+  ) {
     this.path = given.path;
     this.workplace = given.workplace;
     this.card = given.card;
     this.solver = given.solver;
-    this.ranks = given.ranks;
+    this.ranksFor = given.ranksFor;
+    this.ranks = given.ranksFor(given.card.mesh.predictedCells);
     this.state = given.state;
     this.settings = given.settings;
     this.signal = given.signal;
@@ -78,7 +85,11 @@ export class CaseRun {
   }
 
   /** Runs one step; its record is in the state file while it runs and after it ended. `signal` in place of the run's own, if given. */
-  async step(step: Step, inputs: Hashes, options: { marker?: string; signal?: AbortSignal } = {}): Promise<ProgramResult> {
+  async step(
+    step: Step,
+    inputs: Hashes,
+    options: { marker?: string; signal?: AbortSignal; workplace?: Workplace } = {},
+  ): Promise<ProgramResult> {
     this.emit({ event: "step-start", case: this.path, step: step.name });
     this.worked = true;
     const record: StepRecord = {
@@ -94,18 +105,19 @@ export class CaseRun {
     };
     this.state.steps = [...this.state.steps.filter(({ name }) => name !== step.name), record];
     let noted: Promise<unknown> = Promise.resolve();
+    const workplace = options.workplace ?? this.workplace;
     const { program, args } = commandOf(step, this.solver.path, this.solver.mpirun);
     const result = await runProgram({
       program,
-      args: [...args, ...this.workplace.args],
-      cwd: this.workplace.cwd,
+      args: [...args, ...workplace.args],
+      cwd: workplace.cwd,
       env: this.solver.env,
       log: join(this.path, step.log),
       signal: options.signal ?? this.signal,
       graceMilliseconds: this.settings.graceMilliseconds,
       ...(options.marker === undefined ? {} : { marker: options.marker }),
       onStart: (pid) => {
-        this.state.running = { program: step.program, pid, cwd: this.workplace.cwd };
+        this.state.running = { program: step.program, pid, cwd: workplace.cwd };
         noted = this.save().then(
           () => null,
           (error: unknown) => error,

@@ -6,6 +6,8 @@ export type RunEvent =
   | {
       event: "iteration";
       case: string;
+      /** of the ladder, such as `ladder/1`, when it is not the case's own grid that is solved */
+      rung?: string;
       iteration: number;
       most: number;
       /** latest drag coefficient of the whole vehicle; null before the first row */

@@ -1,4 +1,5 @@
 import { join } from "node:path";
+import { firstOrderFolder } from "../case/ladder.js";
 import { exists, filesBelow, hashOfFile } from "./case-files.js";
 import { hashOf, outermostEntries, readControlDict, runEntries } from "./control-dict.js";
 
@@ -32,6 +33,7 @@ export async function solutionInputs(casePath: string): Promise<Hashes> {
     ...(await filesBelow(casePath, "0")),
     ...(await filesBelow(casePath, "constant")),
     ...(await filesBelow(casePath, "system")),
+    ...(await filesBelow(casePath, join(firstOrderFolder, "system"))),
   ];
   for (const path of paths) {
     if (meshDictionaries.includes(path) || aside.some((folder) => path.startsWith(folder)) || /^system\/decompos/.test(path))

@@ -11,10 +11,11 @@ import { findSolver, howToGetSolver, type SolverEnvironment, usableMemory } from
 import { type CaseLock, lockCase, refuseOrphan } from "./case-lock.js";
 import { CaseRun, endWith, type Phase, type RunSettings } from "./case-run.js";
 import type { CaseOutcome, RunEvent } from "./events.js";
+import { ladderSteps, startOnLadder } from "./ladder.js";
 import { meshCase, stepsToMesh } from "./mesh-case.js";
 import { freshState, ownerLives, type RunState, readRunState, thisProcess, writeRunState } from "./run-state.js";
 import { restoreControlDict, solveCase } from "./solve-case.js";
-import { solveSteps } from "./steps.js";
+import { mapStep, solveSteps } from "./steps.js";
 import { openWorkplace, type Workplace } from "./workplace.js";
 
 export interface RunOptions {
@@ -26,6 +27,8 @@ export interface RunOptions {
   signal?: AbortSignal | undefined;
   /** Limit of iterations in place of the run cards'. */
   mostIterations?: number | undefined;
+  /** Begins cases that start from uniform flow in first order, and gives one that diverged another try. */
+  careful?: boolean | undefined;
   /** The solver to use; searched for when left out. */
   solver?: SolverEnvironment | undefined;
   /** How often a running solver is looked at. */
@@ -60,7 +63,11 @@ export async function runCases(paths: string[], options: RunOptions, onEvent: (e
   const unique = [...new Set(await Promise.all(paths.map(canonical)))];
   const cards = await Promise.all(unique.map(readCard));
   const solver = options.solver ?? (await findSolver()) ?? (await noSolver());
-  await requirePrograms(solver, unique);
+  await requirePrograms(
+    solver,
+    unique,
+    cards.some((card) => (card.ladder ?? []).length > 0),
+  );
   const held: Held[] = [];
   try {
     for (const [index, path] of unique.entries()) held.push(await hold(path, cards[index]!));
@@ -104,9 +111,10 @@ async function runHeld(
   }
   // Measured with 2 800 cells on 2 cores: two ranks took longer than one, they mostly wait for each other.
   const leastCells = options.leastCellsPerRank ?? 5000;
-  const ranksOf = (cells: number) => (solver.mpirun === null ? 1 : Math.max(1, Math.min(share, Math.floor(cells / leastCells))));
+  const ranksFor = (cells: number) => (solver.mpirun === null ? 1 : Math.max(1, Math.min(share, Math.floor(cells / leastCells))));
   const settings: RunSettings = {
     mostIterations: options.mostIterations,
+    careful: options.careful ?? false,
     pollMilliseconds: options.pollMilliseconds ?? 500,
     testEvery: options.testEvery ?? 20,
     minimumWindow: options.minimumWindow ?? fewestRows,
@@ -122,7 +130,7 @@ async function runHeld(
           path: one.path,
           card: one.card,
           solver,
-          ranks: ranksOf(one.card.mesh.predictedCells),
+          ranksFor,
           state: one.state,
           settings,
           signal: AbortSignal.any(signals),
@@ -147,7 +155,8 @@ async function runHeld(
 }
 
 async function runOne(run: CaseRun): Promise<CaseOutcome> {
-  const steps = [...(await stepsToMesh(run.path)), ...solveSteps(run.ranks)].map(({ name }) => name);
+  const own = solveSteps(run.ranks).map(({ name }) => name);
+  const steps = [...(await stepsToMesh(run.path)).map(({ name }) => name), ...(await ladderSteps(run)), ...own];
   run.emit({ event: "case-start", case: run.path, steps });
   const end = await phasesOf(run).catch((error: unknown) => fileTrouble(error));
   run.state.owner = null;
@@ -164,7 +173,7 @@ async function phasesOf(run: CaseRun): Promise<Phase> {
   if (run.signal.aborted) return endWith("interrupted", "interrupted before it was begun");
   await restoreControlDict(run);
   const meshed = await meshCase(run);
-  return meshed.end ? meshed : solveCase(run);
+  return meshed.end ? meshed : solveCase(run, startOnLadder);
 }
 
 /** A full or read-only disk ends one case with a reason; any other exception is a defect and goes on up. */
@@ -218,7 +227,7 @@ async function hold(path: string, card: RunCard): Promise<Held> {
   }
   const lock = await lockCase(path, () => lost.abort());
   try {
-    await refuseOrphan(path);
+    for (const folder of ["", ...(card.ladder ?? []).map((rung) => rung.folder)]) await refuseOrphan(join(path, folder));
     const state = (await readRunState(path)) ?? freshState();
     state.owner = thisProcess();
     await writeRunState(path, state);
@@ -262,9 +271,10 @@ async function noSolver(): Promise<never> {
 }
 
 /** All programs are looked for before the first is started: a night's run must not end at its last step for want of one. */
-async function requirePrograms(solver: SolverEnvironment, paths: string[]): Promise<void> {
+async function requirePrograms(solver: SolverEnvironment, paths: string[], ladder: boolean): Promise<void> {
   const parallel = solver.mpirun === null ? [] : solveSteps(2);
-  const steps = [...(await Promise.all(paths.map(stepsToMesh))).flat(), ...solveSteps(1), ...parallel];
+  const mapping = ladder ? [mapStep("")] : [];
+  const steps = [...(await Promise.all(paths.map(stepsToMesh))).flat(), ...mapping, ...solveSteps(1), ...parallel];
   const missing: string[] = [];
   for (const program of new Set(steps.map((step) => step.program))) {
     await access(join(solver.path, program), constants.X_OK).catch(() => missing.push(program));

@@ -42,7 +42,13 @@ export interface RunState {
   running: { program: string; pid: number; cwd: string } | null;
   steps: StepRecord[];
   mesh: { inputs: Hashes; cells: number; remarks: string[] } | null;
-  solution: { inputs: Hashes; most: number; targets: { drag: number; lift: number; confidence: number } } | null;
+  /** `careful`: begun in first order where it started from uniform flow */
+  solution: {
+    inputs: Hashes;
+    most: number;
+    targets: { drag: number; lift: number; confidence: number };
+    careful?: true;
+  } | null;
   /** Set while system/controlDict is not as it was prepared. */
   controlDict: ControlEdit | null;
 }

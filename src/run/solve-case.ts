@@ -12,8 +12,11 @@ import { joinFields, placeFields } from "./start-point.js";
 import { type Step, solveSteps } from "./steps.js";
 import { type Watched, Watcher, type Watching } from "./watcher.js";
 
-/** Solves a meshed case from where it stands, until its targets hold, its limit is reached or something ends it. */
-export async function solveCase(run: CaseRun): Promise<Phase> {
+/**
+ * Solves a meshed case from where it stands, until its targets hold, its limit is reached or something ends it. `start` puts fields to
+ * start from into a case that has none but the uniform ones.
+ */
+export async function solveCase(run: CaseRun, start: (run: CaseRun) => Promise<Phase>): Promise<Phase> {
   const steps = solveSteps(run.ranks);
   const inputs = await solutionInputs(run.path);
   const done = await standing(run, inputs);
@@ -21,13 +24,15 @@ export async function solveCase(run: CaseRun): Promise<Phase> {
     for (const step of steps) run.skip(step);
     return done;
   }
+  const started = await start(run);
+  if (started.end) return started;
   const { phase, from } = await placeFields(run);
   if (phase.end) return phase;
   const follower = new HistoryFollower(run.path);
   await follower.poll();
   follower.dropAfter(from);
   const solver = steps.find((step) => step.program === "simpleFoam")!;
-  run.state.solution = { inputs, most: run.most, targets: targetsOf(run) };
+  run.state.solution = { inputs, most: run.most, targets: targetsOf(run), ...(run.settings.careful ? { careful: true } : {}) };
   const solved = await runSolver(run, solver, inputs, follower, from);
   run.state.iterations = follower.iteration;
   if (solved.end && solved.state !== "settled" && solved.state !== "stopped-at-limit") return solved;
@@ -60,9 +65,16 @@ async function standing(run: CaseRun, inputs: Hashes): Promise<Phase> {
     run.state.settled = false;
     return goOn;
   }
+  if (state === "diverged" && run.settings.careful && solution.careful !== true) {
+    run.remark("The case diverged before; it is solved again from the beginning, the first iterations in first order.");
+    await setAside(run);
+    run.state.solution = null;
+    run.state.iterations = 0;
+    return goOn;
+  }
   if (state === "diverged") {
     run.remark(
-      "Nothing has changed since this case diverged; it is not run again. Change its mesh or its schemes, or delete run-state.json.",
+      "Nothing has changed since this case diverged; it is not run again. Try it with --careful, change its mesh or its schemes, or delete run-state.json.",
     );
     return endWith("diverged", reason);
   }

@@ -5,7 +5,7 @@ import { type CaseRun, endWith, goOn, type Phase } from "./case-run.js";
 import { decompositionFile, decompositionText, divideStep, joinStep } from "./steps.js";
 
 /** Fields that a solver needs to go on, where the case has them. */
-const carried = ["U", "p", "k", "omega", "epsilon", "nuTilda", "nut"];
+export const carriedFields = ["U", "p", "k", "omega", "epsilon", "nuTilda", "nut"];
 
 /** Where the solution of a case stands on disk. */
 export interface StartPoint {
@@ -23,7 +23,7 @@ export interface StartPoint {
  */
 export async function findStartPoint(run: CaseRun): Promise<StartPoint> {
   const fields = (await readdir(join(run.path, "0")).catch(() => [] as string[])).map((name) => name.replace(/\.gz$/, ""));
-  const needed = carried.filter((name) => name === "U" || name === "p" || fields.includes(name));
+  const needed = carriedFields.filter((name) => name === "U" || name === "p" || fields.includes(name));
   const processors = await processorFolders(run.path);
   const whole = await latestWhole(run, [run.path], needed);
   const divided =
@@ -35,6 +35,12 @@ export async function findStartPoint(run: CaseRun): Promise<StartPoint> {
         )
       : null;
   return { whole, divided, processors: processors.length };
+}
+
+/** Is there a flow to go on from, or only the uniform one? */
+export async function hasFlow(run: CaseRun): Promise<boolean> {
+  const { whole, divided } = await findStartPoint(run);
+  return Number(whole) > 0 || Number(divided ?? 0) > 0;
 }
 
 async function latestWhole(run: CaseRun, folders: string[], fields: string[]): Promise<string> {

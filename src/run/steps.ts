@@ -45,6 +45,12 @@ export function solveSteps(ranks: number): Step[] {
   ];
 }
 
+/** From a solved rung (its case folder) onto the mesh of the case that it is started in. */
+export const mapStep = (rung: string): Step => serial("mapFields", rung, "-consistent", "-sourceTime", "latestTime");
+
+/** The iterations in first order, in a folder of their own. */
+export const firstOrderStep: Step = { ...serial("simpleFoam"), name: "simpleFoam first order", log: "log.first-order" };
+
 export const divideStep = (): Step => serial("decomposePar", "-force", "-latestTime", "-decomposeParDict", decompositionFile);
 export const joinStep = (): Step => serial("reconstructPar", "-latestTime");
 

@@ -8,6 +8,8 @@ export interface Workplace {
   cwd: string;
   /** Put after a program's own arguments. */
   args: string[];
+  /** The case folder by a path that the programs take. */
+  path: string;
   leave: () => Promise<void>;
 }
 
@@ -21,7 +23,7 @@ const refused = /[\s"']/;
  * Throws Problem (input) when the folder for temporary files has such a path too.
  */
 export async function openWorkplace(casePath: string): Promise<Workplace> {
-  if (!refused.test(casePath)) return { cwd: casePath, args: [], leave: async () => undefined };
+  if (!refused.test(casePath)) return { cwd: casePath, args: [], path: casePath, leave: async () => undefined };
   const place = tmpdir();
   if (refused.test(place)) {
     throw inputProblem({
@@ -35,5 +37,14 @@ export async function openWorkplace(casePath: string): Promise<Workplace> {
   const folder = await mkdtemp(join(place, "dragledger-"));
   const link = join(folder, "case");
   await symlink(casePath, link);
-  return { cwd: folder, args: ["-case", link], leave: () => rm(folder, { recursive: true, force: true }) };
+  return { cwd: folder, args: ["-case", link], path: link, leave: () => rm(folder, { recursive: true, force: true }) };
+}
+
+/** The same for a folder inside the case, which has a case tree of its own; left together with the case's. */
+export function workplaceBelow(workplace: Workplace, folder: string): Workplace {
+  const path = join(workplace.path, folder);
+  const leave = async (): Promise<void> => undefined;
+  return workplace.args.length === 0
+    ? { cwd: path, args: [], path, leave }
+    : { cwd: workplace.cwd, args: ["-case", path], path, leave };
 }

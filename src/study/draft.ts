@@ -55,7 +55,7 @@ export function draftStudy({ name, files, survey }: DraftSource): string {
     "  # From here on: what is taken when nothing is said.",
     "  y-plus: 50",
     "  layers: 3",
-    "solver: { turbulence: k-omega-SST, mode: steady, start: cold, most-iterations: 3000 }",
+    "solver: { turbulence: k-omega-SST, mode: steady, start: ladder, most-iterations: 3000 }",
     "stop: { drag: 1 count, lift: 3 counts, confidence: 95 % }   # half-widths; 1 count = 0.001",
   ];
   return `${text.join("\n")}\n`;

@@ -145,7 +145,7 @@ const entries: (Omit<StudyKey, "expects" | "example" | "unit"> & Partial<Pick<St
     key: "body",
     title: "Body",
     description: "How the numbers in the files are to be understood.",
-    expects: "a block with unit, travel, up, wheelbase and reference-area",
+    expects: "a block with unit, travel, up, clearance, wheelbase and reference-area",
     example: "{ unit: mm, travel: -x, up: +z }",
   },
   {
@@ -168,6 +168,15 @@ const entries: (Omit<StudyKey, "expects" | "example" | "unit"> & Partial<Pick<St
     description: "Direction upwards, in the axes of the files.",
     default: "+z",
     choices: signedAxes,
+  },
+  {
+    key: "body.clearance",
+    title: "Clearance",
+    description:
+      "Height of the lowest point of the baseline above the ground: zero for a vehicle on its wheels, more for a model that is held from elsewhere.",
+    default: "0 m",
+    example: "50 mm",
+    quantity: { dimension: "length", min: 0, max: 10, range: "0 to 10 m" },
   },
   {
     key: "body.wheelbase",
@@ -219,7 +228,7 @@ const entries: (Omit<StudyKey, "expects" | "example" | "unit"> & Partial<Pick<St
     key: "mesh",
     title: "Mesh",
     description: "What the mesh is to be like.",
-    expects: "a block with cells, half, y-plus and layers",
+    expects: "a block with cells, half, y-plus, layers and shift",
     example: "{ cells: 1.5 million }",
   },
   {
@@ -253,6 +262,15 @@ const entries: (Omit<StudyKey, "expects" | "example" | "unit"> & Partial<Pick<St
     quantity: { dimension: "number", min: 0, max: 20, range: "a whole number from 0 to 20", whole: true },
   },
   {
+    key: "mesh.shift",
+    title: "Shift",
+    description:
+      "Share of a background cell by which the grid is moved along the vehicle, the body staying where it is: the same question on another grid as fine.",
+    default: "0 %",
+    example: "38 %",
+    quantity: { dimension: "ratio", min: 0, max: 1, range: "0 to 100 %" },
+  },
+  {
     key: "mesh.levels",
     title: "Levels",
     description: "Meshes of different fineness for each case; this version computes one.",
@@ -264,7 +282,7 @@ const entries: (Omit<StudyKey, "expects" | "example" | "unit"> & Partial<Pick<St
     key: "solver",
     title: "Solver",
     description: "How the flow is computed.",
-    expects: "a block with turbulence, mode, start and most-iterations",
+    expects: "a block with turbulence, mode, start, relaxation and most-iterations",
     example: "{ most-iterations: 3000 }",
   },
   {
@@ -286,10 +304,19 @@ const entries: (Omit<StudyKey, "expects" | "example" | "unit"> & Partial<Pick<St
   {
     key: "solver.start",
     title: "Start",
-    description: "What the flow starts from; cold is uniform flow.",
-    default: "cold",
-    choices: ["cold"],
-    single: true,
+    description:
+      "What the flow starts from: ladder, the flow of the same case on coarser grids, which are solved before; or cold, uniform flow.",
+    default: "ladder",
+    choices: ["ladder", "cold"],
+  },
+  {
+    key: "solver.relaxation",
+    title: "Relaxation",
+    description:
+      "Share of the velocity's change that an iteration takes: less is slower and steadier, for histories that swing with a period of some 15 iterations.",
+    default: 0.9,
+    example: "0.7",
+    quantity: { dimension: "ratio", min: 0.3, max: 0.95, range: "0.3 to 0.95" },
   },
   {
     key: "solver.most-iterations",

@@ -42,6 +42,7 @@ export const studySchema = z
         unit: choice("body.unit", ["m", "mm", "cm", "in", "ft"]),
         travel: choice("body.travel", signedAxis),
         up: choice("body.up", signedAxis),
+        clearance: quantity("body.clearance"),
         wheelbase: quantityOr("body.wheelbase", "auto", "none"),
         "reference-area": quantityOr("body.reference-area", "auto"),
       })
@@ -57,6 +58,7 @@ export const studySchema = z
           .meta(about("mesh.half")),
         "y-plus": quantity("mesh.y-plus"),
         layers: quantity("mesh.layers"),
+        shift: quantity("mesh.shift"),
         levels: only("mesh.levels", 1),
       })
       .prefault({})
@@ -65,7 +67,8 @@ export const studySchema = z
       .strictObject({
         turbulence: only("solver.turbulence", "k-omega-SST"),
         mode: only("solver.mode", "steady"),
-        start: only("solver.start", "cold"),
+        start: choice("solver.start", ["ladder", "cold"]),
+        relaxation: quantity("solver.relaxation"),
         "most-iterations": quantity("solver.most-iterations"),
       })
       .prefault({})

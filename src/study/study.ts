@@ -19,14 +19,17 @@ export interface Study {
     unit: LengthUnit;
     travel: SignedAxis;
     up: SignedAxis;
+    /** metres: of the lowest point above the ground */
+    clearance: number;
     /** metres; auto: from the wheels of the baseline; none: the body has no axles, moments use the overall length */
     wheelbase: number | "auto" | "none";
     /** m², of the whole vehicle; auto: frontal area of the baseline */
     referenceArea: number | "auto";
   };
   parts: PartRule[];
-  mesh: { cells: number; half: "auto" | boolean; yPlus: number; layers: number };
-  solver: { turbulence: "k-omega-SST"; mode: "steady"; start: "cold"; mostIterations: number };
+  /** shift: of the grid along the vehicle, as a share of a background cell */
+  mesh: { cells: number; half: "auto" | boolean; yPlus: number; layers: number; shift: number };
+  solver: { turbulence: "k-omega-SST"; mode: "steady"; start: "ladder" | "cold"; relaxation: number; mostIterations: number };
   /** Half-widths wanted, as coefficients; confidence 0..1 */
   stop: { drag: number; lift: number; confidence: number };
 }

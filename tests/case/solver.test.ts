@@ -1,4 +1,4 @@
-import { readFile } from "node:fs/promises";
+import { readdir, readFile } from "node:fs/promises";
 import { join } from "node:path";
 import { execa } from "execa";
 import { describe, expect, test } from "vitest";
@@ -28,7 +28,7 @@ describe("a prepared case in the real solver", () => {
     if (solver === null) return context.skip("OpenFOAM is not installed");
     const study = await cartStudy({
       variants: { plain: cartParts },
-      keys: { mesh: "{ cells: 6 thousand, y-plus: 300, layers: 2 }", solver: "{ most-iterations: 10 }" },
+      keys: { mesh: "{ cells: 6 thousand, y-plus: 300, layers: 2 }", solver: "{ start: cold, most-iterations: 10 }" },
     });
     const [{ path, plan }] = (await prepareStudy(study)) as [Awaited<ReturnType<typeof prepareStudy>>[number]];
     const card = (await readRunCard(path))!;
@@ -82,11 +82,32 @@ describe("a prepared case in the real solver", () => {
     expect(surface).toMatch(/^wallShearStress 3 /m);
   }, 120_000);
 
+  test("Allrun eases a grid that is too coarse for a ladder into second order", async (context) => {
+    if (solver === null) return context.skip("OpenFOAM is not installed");
+    const study = await cartStudy({
+      variants: { plain: cartParts },
+      keys: { mesh: "{ cells: 5 thousand, y-plus: 300, layers: 0 }", solver: "{ most-iterations: 12 }" },
+    });
+    const [{ path }] = (await prepareStudy(study)) as [Awaited<ReturnType<typeof prepareStudy>>[number]];
+    const run = { cwd: path, env: { ...solver.env, PWD: path, PATH: `${solver.path}:/usr/bin:/bin` }, extendEnv: false };
+    await execa("/bin/sh", ["./Allrun"], run);
+    const name = "postProcessing/coefficients/6/coefficient.dat";
+    const table = readTable(await readFile(join(path, name)), name);
+    expect([...table.columns[0]!.values]).toEqual([7, 8, 9, 10, 11, 12]);
+    expect(await readdir(join(path, "first-order"))).toEqual(["log.simpleFoam", "system"]);
+    await execa("/bin/sh", ["./Allclean"], run);
+    expect((await readdir(path)).filter((each) => /^(log|postP|[1-9])/.test(each))).toEqual([]);
+  }, 60_000);
+
   test("at yaw: air in by the front and one side, out by the others; wind axes agree with the forces; both signs mirror each other", async (context) => {
     if (solver === null) return context.skip("OpenFOAM is not installed");
     const study = await cartStudy({
       variants: { plain: cartParts },
-      keys: { yaw: "[8 deg, -8 deg]", mesh: "{ cells: 8 thousand, y-plus: 300, layers: 0 }", solver: "{ most-iterations: 30 }" },
+      keys: {
+        yaw: "[8 deg, -8 deg]",
+        mesh: "{ cells: 8 thousand, y-plus: 300, layers: 0 }",
+        solver: "{ start: cold, most-iterations: 30 }",
+      },
     });
     const cases = await prepareStudy(study);
     expect(cases.map(({ path }) => path.split("/").at(-1))).toEqual(["plain-30ms-yaw8deg", "plain-30ms-yaw-8deg"]);

@@ -171,7 +171,7 @@ describe("going on after an interruption", () => {
     const [second] = await runCases([path], quick(made), told.tell);
     expect(second).toEqual(first);
     expect(told.remarks()).toEqual([
-      "Nothing has changed since this case diverged; it is not run again. Change its mesh or its schemes, or delete run-state.json.",
+      "Nothing has changed since this case diverged; it is not run again. Try it with --careful, change its mesh or its schemes, or delete run-state.json.",
     ]);
     made.behave({ STAND_IN_SOLVER: "wander" });
     await writeFile(join(path, "system/fvSolution"), "SIMPLE { consistent yes; }\n");

@@ -44,6 +44,14 @@ while [ $rank -lt $ranks ]; do
   rm -rf processor$rank; mkdir -p processor$rank; cp -r $latest processor$rank/
   rank=$((rank + 1))
 done`,
+  mapFields: `
+[ "$STAND_IN_MAPPER" = fatal ] && { printf '%s\\n' '--> FOAM FATAL ERROR: ' 'Incompatible meshes: different number of patches' '' 'FOAM exiting'; exit 1; }
+[ "$STAND_IN_MAPPER" = hang ] && exec sleep 60
+[ -f constant/polyMesh/faces ] && [ -f system/controlDict ] || exit 1
+latest=$(ls -d "$1"/[1-9]* | sed 's:.*/::' | sort -n | tail -1)
+[ -f "$1/$latest/U" ] || exit 1
+{ echo "mapped from $1 at $latest"; cat 0/U; echo '// ***** //'; } > 0/U.new && mv 0/U.new 0/U
+printf 'mapped\\n// ***** //\\n' > 0/yPlus`,
   reconstructPar: `
 latest=$(ls processor0 | grep '^[0-9]' | sort -n | tail -1)
 cp -r processor0/$latest .`,
@@ -52,7 +60,10 @@ cp -r processor0/$latest .`,
 /** Writes a coefficient history and fields like the solver, one row per millisecond or so, and obeys system/controlDict. */
 const flowProgram = `
 const fs = require("node:fs");
-const behaviour = process.env.STAND_IN_SOLVER ?? "calm";
+const below = process.env.PWD.split("/ladder/")[1];
+const rung = below ? "ladder_" + below[0] : null;
+const first = process.env.PWD.endsWith("/first-order");
+const behaviour = (first ? process.env.STAND_IN_FIRST : rung && process.env["STAND_IN_" + rung.toUpperCase()]) || (process.env.STAND_IN_SOLVER ?? "calm");
 const root = process.argv.includes("-parallel") ? "processor0" : ".";
 const roots = root === "." ? ["."] : fs.readdirSync(".").filter((name) => name.startsWith("processor"));
 const entry = (key) => new RegExp("(?:^|[\\\\s;])" + key + "\\\\s+([^;]+);").exec(fs.readFileSync("system/controlDict", "utf8").replace(/\\/\\/.*/g, ""))?.[1];
@@ -90,7 +101,7 @@ const step = (time) => {
   const [cd, cl] = valuesAt(time);
   print("Time = " + time + "\\nsmoothSolver:  Solving for k, Initial residual = 0.25, Final residual = 0.001, No Iterations 1");
   if (table) fs.appendFileSync(table, time + "\\t" + cd + "\\t0\\t" + cl + "\\n");
-  if (time === 25) {
+  if (time === 25 || time === start + 25) {
     if (behaviour === "trap") { print("#0  Foam::error::printStack(Foam::Ostream&) at ??:?\\n#1  Foam::sigFpe::sigHandler(int) at ??:?"); process.kill(process.pid, "SIGFPE"); pause(5000); }
     if (behaviour === "bare-trap") { process.kill(process.pid, "SIGFPE"); pause(5000); }
     if (behaviour === "killed") { process.kill(process.pid, "SIGKILL"); pause(5000); }

@@ -24,7 +24,7 @@ describe("messages about keys, word for word", () => {
       code: "study-unknown-key",
       message: "Unknown key 'yPlus' (did you mean 'y-plus'?).",
       where: "nose.yaml:5:9 (mesh.yPlus)",
-      remedy: "Keys possible here: cells, half, y-plus, layers, levels.",
+      remedy: "Keys possible here: cells, half, y-plus, layers, shift, levels.",
     });
     expect(await problem(`${least}cells: 1 million\n`)).toMatchObject({
       message: "Unknown key 'cells' (did you mean 'mesh.cells'?).",
@@ -80,14 +80,11 @@ describe("messages about keys, word for word", () => {
       code: "not-computed",
       message: "Key 'air-boxes': air boxes are not computed by this version.",
     });
-    expect(await problem(`${least}solver: { start: ladder }\n`)).toEqual({
+    expect(await problem(`${least}solver: { mode: transient }\n`)).toEqual({
       code: "not-computed",
-      message: `Key 'solver.start' is "ladder", which this version does not compute; the only value possible is cold.`,
-      where: "nose.yaml:5:18 (solver.start)",
-      remedy: "Write start: cold, or remove the key.",
-    });
-    expect(await problem(`${least}solver: { mode: transient }\n`)).toMatchObject({
       message: `Key 'solver.mode' is "transient", which this version does not compute; the only value possible is steady.`,
+      where: "nose.yaml:5:17 (solver.mode)",
+      remedy: "Write mode: steady, or remove the key.",
     });
     expect(await problem(`${least}solver: { turbulence: k-epsilon }\n`)).toMatchObject({
       message: `Key 'solver.turbulence' is "k-epsilon", which this version does not compute; the only value possible is k-omega-SST.`,
@@ -203,7 +200,7 @@ describe("messages about quantities, word for word", () => {
       "solver.most-iterations",
       "Key 'solver.most-iterations' is 0; expected a whole number from 10 to 1 million.",
     ],
-    ["mesh:", "mesh", "Key 'mesh' has no value; expected a block with cells, half, y-plus and layers."],
+    ["mesh:", "mesh", "Key 'mesh' has no value; expected a block with cells, half, y-plus, layers and shift."],
     ["air: dry", "air", `Key 'air' is "dry"; expected a block with temperature, pressure and humidity.`],
     [
       "parts: { wheels: { rotating: true } }",

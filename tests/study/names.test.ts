@@ -73,7 +73,12 @@ describe("conditions", () => {
       "20ms-yaw-5deg",
       "20ms-yaw7.5deg",
     ]);
-    expect(conditionsOf(study)[1]).toEqual({ name: "30ms-yaw-5deg", speed: 30, yaw: expect.closeTo((-5 * Math.PI) / 180, 12), ground: "moving" });
+    expect(conditionsOf(study)[1]).toEqual({
+      name: "30ms-yaw-5deg",
+      speed: 30,
+      yaw: expect.closeTo((-5 * Math.PI) / 180, 12),
+      ground: "moving",
+    });
     const near = parseStudy(`${least}yaw: [0.001 deg, 0.0012 deg, 0]\n`, "/s/a.yaml");
     expect(conditionsOf(near).map(({ name }) => name)).toEqual(["30ms-yaw0.001deg", "30ms-yaw0.0012deg", "30ms"]);
   });

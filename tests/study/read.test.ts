@@ -40,13 +40,13 @@ describe("a study file", () => {
         { name: "open-bed", files: [file("pickup"), file("tailgate")] },
         { name: "covered-bed", files: [file("pickup"), file("tailgate"), file("bed-cover")] },
       ],
-      body: { unit: "m", travel: "-x", up: "+z", wheelbase: "auto", referenceArea: "auto" },
+      body: { unit: "m", travel: "-x", up: "+z", clearance: 0, wheelbase: "auto", referenceArea: "auto" },
       parts: [
         { name: "wheels", match: "wheel-*", rotating: true },
         { name: "bed-cover", match: "bed-cover", rotating: false },
       ],
-      mesh: { cells: 1_500_000, half: "auto", yPlus: 50, layers: 3 },
-      solver: { turbulence: "k-omega-SST", mode: "steady", start: "cold", mostIterations: 3000 },
+      mesh: { cells: 1_500_000, half: "auto", yPlus: 50, layers: 3, shift: 0 },
+      solver: { turbulence: "k-omega-SST", mode: "steady", start: "ladder", relaxation: 0.9, mostIterations: 3000 },
       stop: { drag: 0.001, lift: 0.003, confidence: 0.95 },
     };
     expect(await readStudy(path)).toEqual(wanted);
@@ -107,12 +107,12 @@ ground: fixed
       "/s/a.yaml",
     );
     expect(study.speeds).toEqual([30, 35, 29.95168]);
-    expect(study.body).toEqual({ unit: "mm", travel: "+y", up: "+z", wheelbase: 2.6924, referenceArea: 2.1 });
+    expect(study.body).toEqual({ unit: "mm", travel: "+y", up: "+z", clearance: 0, wheelbase: 2.6924, referenceArea: 2.1 });
     expect(study.parts).toEqual([
       { name: "wheels", match: "front", rotating: true },
       { name: "wheels", match: "rear-*", rotating: true },
     ]);
-    expect(study.mesh).toEqual({ cells: 60_000, half: false, yPlus: 50, layers: 0 });
+    expect(study.mesh).toEqual({ cells: 60_000, half: false, yPlus: 50, layers: 0, shift: 0 });
     expect(study.ground).toBe("fixed");
     expect(parseStudy(`${least}body: { wheelbase: none }\n`, "/s/a.yaml").body.wheelbase).toBe("none");
   });
@@ -121,7 +121,10 @@ ground: fixed
     for (const yaw of ["0", "0 deg", "0.0 rad", "[0 deg]", "-0"])
       expect(parseStudy(`${least}yaw: ${yaw}\n`, "/s/a.yaml").yaws).toEqual([0]);
     expect(parseStudy(least, "/s/a.yaml").yaws).toEqual([0]);
-    expect(parseStudy(`${least}yaw: [-5 deg, 0.1 rad]\n`, "/s/a.yaml").yaws).toEqual([expect.closeTo((-5 * Math.PI) / 180, 12), 0.1]);
+    expect(parseStudy(`${least}yaw: [-5 deg, 0.1 rad]\n`, "/s/a.yaml").yaws).toEqual([
+      expect.closeTo((-5 * Math.PI) / 180, 12),
+      0.1,
+    ]);
   });
 
   test("may have variants with the names of an object's own members", () => {

@@ -80,7 +80,7 @@ describe("the JSON Schema", () => {
     ["floor: 1", ".floor"],
     ["mesh: { levels: 2 }", ".mesh.levels"],
     ["mesh: { half: yes }", ".mesh.half"],
-    ["solver: { start: ladder }", ".solver.start"],
+    ["solver: { start: warm }", ".solver.start"],
     ["body: { unit: km }", ".body.unit"],
     ["ground: belt", ".ground"],
     ["parts: { a: {} }", ".parts.a"],

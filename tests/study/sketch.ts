@@ -13,13 +13,14 @@ body:
   unit: m
   travel: -x
   up: +z
+  clearance: 0 m
   wheelbase: auto
   reference-area: auto
 parts:
   wheels:    { match: "wheel-*", rotating: true }
   bed-cover: { match: "bed-cover" }
-mesh:   { cells: 1.5 million, half: auto, y-plus: 50, layers: 3, levels: 1 }
-solver: { turbulence: k-omega-SST, mode: steady, start: cold, most-iterations: 3000 }
+mesh:   { cells: 1.5 million, half: auto, y-plus: 50, layers: 3, shift: 0 %, levels: 1 }
+solver: { turbulence: k-omega-SST, mode: steady, start: ladder, relaxation: 0.9, most-iterations: 3000 }
 stop:   { drag: 1 count, lift: 3 counts, confidence: 95 % }
 floor:  0
 `;
