@@ -1,7 +1,7 @@
 import { Option } from "commander";
 import { boundingDomain } from "../../src/flow/domain.js";
 import { readSurfaces } from "../../src/geometry/files/read.js";
-import { writeRepaired } from "../../src/geometry/files/write-repaired.js";
+import { requireFree, writeRepaired } from "../../src/geometry/files/write-repaired.js";
 import { repair } from "../../src/geometry/repair/repair.js";
 import type { LengthUnit, SignedAxis } from "../../src/geometry/survey.js";
 import { surveyBody } from "../../src/geometry/survey-body.js";
@@ -63,6 +63,7 @@ export const command: CommandModule<Options> = {
   async run({ args, options, print }) {
     const pictures = (options.picture ?? []).map((path) => ({ path, seen: viewNamed(path) }));
     const set = await readSurfaces(args[0] as string[]);
+    if (options.repair !== undefined) await requireFree(options.repair, set);
     const survey = surveyBody(set, {
       unit: options.unit,
       travel: options.travel,

@@ -12,7 +12,21 @@ import { asciiStl, binaryStl } from "./write-stl.js";
  *
  * @throws Problem(input) `would-overwrite-input`, `file-exists`, `not-an-stl-name`, `cannot-write`, `coordinate-not-finite`.
  */
-export async function writeRepaired(path: string, set: TriangleSet, { overwrite = false } = {}): Promise<void> {
+export async function writeRepaired(path: string, set: TriangleSet, options: { overwrite?: boolean } = {}): Promise<void> {
+  await requireFree(path, set, options);
+  await writeWhole(path, namesItself(path, set) ? binaryStl(set) : asciiStl(set, (part) => part.name));
+}
+
+/**
+ * Looks whether a repaired body may be written to a path, before time is spent on it.
+ *
+ * @throws Problem(input) `would-overwrite-input`, `file-exists`, `not-an-stl-name`.
+ */
+export async function requireFree(
+  path: string,
+  set: Pick<TriangleSet, "files">,
+  { overwrite = false }: { overwrite?: boolean } = {},
+): Promise<void> {
   if (!/\.stl$/i.test(path))
     throw inputProblem({
       code: "not-an-stl-name",
@@ -39,7 +53,6 @@ export async function writeRepaired(path: string, set: TriangleSet, { overwrite 
       where: path,
       remedy: "Give another name, or remove the file first.",
     });
-  await writeWhole(path, namesItself(path, set) ? binaryStl(set) : asciiStl(set, (part) => part.name));
 }
 
 /** A binary file has no place for names: its one part is called like the file. */
