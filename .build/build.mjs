@@ -28,18 +28,19 @@ await build({
     js: "import { createRequire as __createRequire } from 'node:module'; const require = __createRequire(import.meta.url);",
   },
 });
-// The viewer runs in the reader's browser, inside the report.
-await build({
-  entryPoints: [join(root, "src/report/viewer/main.ts")],
-  outfile: join(dist, "report/viewer.js"),
-  bundle: true,
-  format: "iife",
-  platform: "browser",
-  target: "es2022",
-  minify: true,
-  logLevel: "warning",
-  legalComments: "eof",
-});
+// The viewers run in the reader's browser, inside the report and inside the page of one body.
+for (const room of ["report", "picture"])
+  await build({
+    entryPoints: [join(root, `src/${room}/viewer/main.ts`)],
+    outfile: join(dist, `${room}/viewer.js`),
+    bundle: true,
+    format: "iife",
+    platform: "browser",
+    target: "es2022",
+    minify: true,
+    logLevel: "warning",
+    legalComments: "eof",
+  });
 
 const { studyJsonSchema } = await import(join(dist, "src/study/schema.js"));
 mkdirSync(dist, { recursive: true });

@@ -6,6 +6,7 @@ import { repair } from "../../src/geometry/repair/repair.js";
 import type { LengthUnit, SignedAxis } from "../../src/geometry/survey.js";
 import { surveyBody } from "../../src/geometry/survey-body.js";
 import { bodyPicture, viewNamed } from "../../src/picture/body-picture.js";
+import { bodyView } from "../../src/picture/body-view.js";
 import { writeWhole } from "../../src/write-whole.js";
 import type { CommandModule } from "../command.js";
 import { exitCode } from "../context.js";
@@ -23,6 +24,7 @@ interface Options {
   full?: boolean;
   repair?: string;
   picture?: string[];
+  view?: string;
 }
 
 const signedAxes = ["+x", "-x", "+y", "-y", "+z", "-z"];
@@ -50,6 +52,7 @@ export const command: CommandModule<Options> = {
         "--picture <file.png...>",
         "pictures of the body with the findings marked; the end of the name says the view: front.png, side.png, plan.png",
       )
+      .option("--view <file.html>", "one page with the body in 3-D and the findings marked in place; opens without a network")
       .option(
         "--repair <file.stl>",
         "write a repaired body to a new file: copies and cracks of rounding removed, triangles facing one way and outwards; lists each change",
@@ -75,16 +78,19 @@ export const command: CommandModule<Options> = {
     });
     const domain = boundingDomain(survey);
     for (const { path, seen } of pictures) await writeWhole(path, bodyPicture(set, survey, { seen }));
+    if (options.view !== undefined) await writeWhole(options.view, bodyView(set, survey));
     const repaired = options.repair === undefined ? null : repair(set);
     if (repaired !== null) await writeRepaired(options.repair!, repaired.set);
     print.document("inspect", {
       ...survey,
       domain,
       ...(pictures.length > 0 && { pictures }),
+      ...(options.view !== undefined && { view: options.view }),
       ...(repaired !== null && { repair: { path: options.repair, changes: repaired.changes, left: repaired.left } }),
     });
     printSurvey(print, survey, domain);
     for (const { path, seen } of pictures) print.line(`picture from the ${seen === "plan" ? "top" : seen}: ${path}`);
+    if (options.view !== undefined) print.line(`page of the body: ${options.view}`);
     if (repaired !== null) printRepair(print, options.repair!, repaired);
     return survey.verdict === "not-fit" ? exitCode.no : exitCode.done;
   },

@@ -1,7 +1,7 @@
-import { createHash } from "node:crypto";
 import { readFileSync } from "node:fs";
 import ejs from "ejs";
 import { packageFile } from "../package-files.js";
+import { closedOff, inertJson, policyOf } from "../picture/sealed-page.js";
 import { differenceTones, toneOf } from "../picture/tones.js";
 import type { BodySection } from "./body-section.js";
 import { barChart, historyChart, intervalChart } from "./charts.js";
@@ -53,24 +53,6 @@ export function writeReport(model: ReportModel, options: WriteOptions = {}): str
     { filename: page },
   );
 }
-
-/** A script that holds the end tag of its own element (in a text of its own) would be cut there. */
-const closedOff = (script: string): string => script.replaceAll(/<\/(script)/gi, "<\\/$1").replaceAll("<!--", "<\\!--");
-
-const policyOf = (style: string, script: string): string =>
-  [
-    "default-src 'none'",
-    `script-src 'sha256-${digest(script)}'`,
-    `style-src 'sha256-${digest(style)}'`,
-    "img-src data:",
-    "base-uri 'none'",
-    "form-action 'none'",
-  ].join("; ");
-
-const digest = (text: string): string => createHash("sha256").update(text).digest("base64");
-
-/** JSON that holds no `<`, so that no text in it can close the element around it. */
-const inertJson = (value: unknown): string => JSON.stringify(value).replaceAll("<", "\\u003c");
 
 const intervals = ({ answers }: ReportModel): string | null => {
   const known = answers.filter(({ value }) => Number.isFinite(value));

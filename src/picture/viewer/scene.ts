@@ -1,6 +1,7 @@
 import {
   BufferAttribute,
   BufferGeometry,
+  CanvasTexture,
   Color,
   DirectionalLight,
   DoubleSide,
@@ -14,6 +15,8 @@ import {
   PerspectiveCamera,
   Raycaster,
   Scene,
+  Sprite,
+  SpriteMaterial,
   Vector2,
   Vector3,
   WebGLRenderer,
@@ -32,6 +35,22 @@ export interface SceneVariant {
 const crease = 0.6;
 const edgeDegrees = 38;
 
+let ring: CanvasTexture | null = null;
+
+/** A white ring on nothing, tinted by its material. */
+function ringTexture(): CanvasTexture {
+  if (ring !== null) return ring;
+  const canvas = document.createElement("canvas");
+  canvas.width = canvas.height = 64;
+  const pen = canvas.getContext("2d")!;
+  pen.lineWidth = 9;
+  pen.strokeStyle = "#fff";
+  pen.arc(32, 32, 25, 0, 2 * Math.PI);
+  pen.stroke();
+  ring = new CanvasTexture(canvas);
+  return ring;
+}
+
 type Drawn = Mesh<BufferGeometry, MeshStandardMaterial>;
 
 /** The body in WebGL, drawn only when something changed. The constructor throws where there is no WebGL. */
@@ -42,6 +61,7 @@ export class BodyScene {
   private readonly controls: OrbitControls;
   private readonly groups = new Map<string, Group>();
   private readonly lines = new LineBasicMaterial({ color: inkTone, transparent: true, opacity: 0.42 });
+  private readonly marks = new Group();
   private readonly middle = new Vector3();
   private halfDiagonal = 1;
   private asked = false;
@@ -55,7 +75,7 @@ export class BodyScene {
     const light = new DirectionalLight(0xffffff, 1.9);
     light.position.set(-0.7, 1.2, 0.8);
     this.camera.add(light);
-    this.scene.add(this.camera);
+    this.scene.add(this.camera, this.marks);
     this.controls = new OrbitControls(this.camera, canvas);
     this.controls.addEventListener("change", () => this.draw());
     this.leavePageItsScrolling();
@@ -123,6 +143,58 @@ export class BodyScene {
     this.controls.target.copy(this.middle);
     this.controls.update();
     this.draw();
+  }
+
+  /** Shows or hides one part of a variant, with its edges. */
+  hide(variant: string, part: string, hidden: boolean): void {
+    const children = this.groups.get(variant)?.children ?? [];
+    for (const [k, child] of children.entries()) {
+      if (!(child instanceof Mesh) || child.name !== part) continue;
+      child.visible = !hidden;
+      children[k + 1]!.visible = !hidden;
+    }
+    this.draw();
+  }
+
+  /** Rings about places, drawn over the body so that hidden ones are found too; they replace those before. Metres, case axes. */
+  mark(places: [number, number, number][], colour: string): void {
+    for (const sprite of this.marks.children) if (sprite instanceof Sprite) sprite.material.dispose();
+    this.marks.clear();
+    for (const place of places) {
+      const material = new SpriteMaterial({ map: ringTexture(), color: colour, depthTest: false, sizeAttenuation: false });
+      const sprite = new Sprite(material);
+      sprite.position.set(...place);
+      sprite.scale.setScalar(0.028);
+      sprite.renderOrder = 2;
+      this.marks.add(sprite);
+    }
+    this.draw();
+  }
+
+  /** Straight lines over the body: two places each. */
+  line(ends: [number, number, number][], colour: string): void {
+    const geometry = new BufferGeometry().setFromPoints(ends.map((end) => new Vector3(...end)));
+    const lines = new LineSegments(geometry, new LineBasicMaterial({ color: colour, depthTest: false }));
+    lines.renderOrder = 1;
+    this.scene.add(lines);
+    this.draw();
+  }
+
+  /** Turns about a place and looks at it from near, from the side of the body that it lies on. */
+  fly(place: [number, number, number]): void {
+    const target = new Vector3(...place);
+    const outward = target.clone().sub(this.middle);
+    const away = outward.length() > 0.05 * this.halfDiagonal ? outward : new Vector3(-0.72, -0.62, 0.36);
+    away.z = Math.max(away.z, 0.15 * away.length());
+    this.camera.position.copy(target).addScaledVector(away.normalize(), 0.9 * this.halfDiagonal);
+    this.controls.target.copy(target);
+    this.controls.update();
+    this.draw();
+  }
+
+  /** Where the eye is, metres, case axes. */
+  get eye(): [number, number, number] {
+    return this.camera.position.toArray();
   }
 
   /** Radians about the vertical, and upwards. */
