@@ -55,6 +55,10 @@ function threeGeometry(path: string) {
     .deleteAttribute("normal");
 }
 
+/** MB, as the kernel has it since the program began; what a process itself is told counts the memory of its parent too. */
+const peakMemory = (process: number | "self"): number =>
+  Number(/VmHWM:\s+(\d+)/.exec(readFileSync(`/proc/${process}/status`, "utf8"))?.[1] ?? 0) / 1000;
+
 async function runJob(name: string, path: string): Promise<void> {
   let wall = performance.now();
   let cpu = process.cpuUsage();
@@ -65,7 +69,7 @@ async function runJob(name: string, path: string): Promise<void> {
   const timing: Timing = {
     wall: (performance.now() - wall) / 1000,
     user: process.cpuUsage(cpu).user / 1e6,
-    memory: process.resourceUsage().maxRSS / 1000,
+    memory: peakMemory("self"),
   };
   console.log(JSON.stringify(timing));
 }
@@ -102,10 +106,7 @@ function surfaceCheckTiming(env: NodeJS.ProcessEnv, folder: string, path: string
     let user = 0;
     const look = setInterval(() => {
       try {
-        memory = Math.max(
-          memory,
-          Number(/VmHWM:\s+(\d+)/.exec(readFileSync(`/proc/${child.pid}/status`, "utf8"))?.[1] ?? 0) / 1000,
-        );
+        memory = Math.max(memory, peakMemory(child.pid!));
         const fields = readFileSync(`/proc/${child.pid}/stat`, "utf8").split(") ")[1].split(" ");
         // Field 14 of the line, in hundredths of a second.
         user = Number(fields[11]) / 100;
