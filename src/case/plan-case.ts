@@ -211,7 +211,7 @@ function domainOf(study: Study, frame: StudyFrame, frontalArea: number): CasePla
 }
 
 /** A point between the faces of cells of every level: the golden section of a cell is far from halves, quarters, eighths. */
-function keepPointOf({ grid: { domain }, side }: StudyFrame): Vector3 {
+export function keepPointOf({ grid: { domain }, side }: StudyFrame): Vector3 {
   const step = ((Math.sqrt(5) - 1) / 2) * domain.baseCell;
   const lateral = side === -1 ? -step : step;
   return [domain.min[0] + step, lateral, domain.max[2] - step].map((value) => Number(value.toPrecision(8))) as Vector3;

@@ -2,6 +2,7 @@ import { inputProblem } from "../errors.js";
 import { type Finding, finding } from "../finding.js";
 import { readSurfaces } from "../geometry/files/read.js";
 import { fitSurveyed } from "../geometry/fit-at-cell.js";
+import { fileMetres } from "../geometry/place.js";
 import { surveyBody } from "../geometry/survey-body.js";
 import { conditionsOf } from "../study/conditions.js";
 import { requireMatches, rotatingParts } from "../study/part-rules.js";
@@ -11,7 +12,7 @@ import { caseContent } from "./case-content.js";
 import { levelOf } from "./grid.js";
 import { sha256OfFile } from "./hash.js";
 import type { CasePlan } from "./plan.js";
-import { planCase } from "./plan-case.js";
+import { keepPointOf, planCase } from "./plan-case.js";
 import { studyCases } from "./study-cases.js";
 import { frameOf, predictedFor, type StudyFrame, type VariantBody } from "./study-frame.js";
 import { fitVariant } from "./variant-fit.js";
@@ -123,7 +124,8 @@ async function readBody(study: Study, variant: Variant): Promise<VariantBody> {
 }
 
 /** Leaks, thin parts, gaps and closed air at the cells that the mesh will have at each part. */
-function fitForCells({ set, survey }: VariantBody, { grid, placement }: StudyFrame): Finding[] {
+function fitForCells({ set, survey }: VariantBody, frame: StudyFrame): Finding[] {
+  const { grid, placement } = frame;
   const cellOf = new Map(
     survey.parts
       .filter(({ triangles }) => triangles > 0)
@@ -132,7 +134,7 @@ function fitForCells({ set, survey }: VariantBody, { grid, placement }: StudyFra
         grid.domain.baseCell / 2 ** levelOf({ patch, bounds: caseBounds(bounds, placement) }, grid),
       ]),
   );
-  return fitSurveyed(set, survey, grid.surfaceCell, cellOf).findings;
+  return fitSurveyed(set, survey, grid.surfaceCell, cellOf, fileMetres(keepPointOf(frame), placement)).findings;
 }
 
 function requireFit({ variant, survey }: VariantBody): void {

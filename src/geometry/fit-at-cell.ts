@@ -1,8 +1,9 @@
 import type { Finding } from "../finding.js";
 import { type Cavities, enclosedCavities } from "./air/cavities.js";
 import { type Cut, floodAir } from "./air/flood.js";
+import { type KeepPointProof, provesKeepPoint } from "./air/keep-point.js";
 import { type Leak, leakOf } from "./air/leak.js";
-import { cavityFindings, leakFindings } from "./air/leak-findings.js";
+import { cavityFindings, keepPointFindings, leakFindings } from "./air/leak-findings.js";
 import { type CellFit, cellFitOf } from "./checks/cell-fit.js";
 import { gapFindings, inwardFindings, sheetFindings, thicknessFindings } from "./checks/fit-findings.js";
 import { metresPer, vehicleAxes } from "./place.js";
@@ -11,7 +12,7 @@ import type { Survey } from "./survey.js";
 import { topologyOf } from "./topology.js";
 import type { Part, TriangleSet } from "./triangle-set.js";
 import { type TriangleTree, triangleTree } from "./triangle-tree.js";
-import type { Box } from "./vector.js";
+import type { Box, Vector3 } from "./vector.js";
 
 /** What a body is to a mesh of given cells. Mesh unit and axes; findings in metres. */
 export interface FitAtCell {
@@ -20,6 +21,8 @@ export interface FitAtCell {
   /** Closed spaces at the surface cell; null where the leak test was not made. */
   cavities: Cavities | null;
   cells: CellFit;
+  /** Whether a mesh that keeps what hangs together with the keep-point keeps the air about the body; null where none was given or the leak test was not made. */
+  keepPoint: KeepPointProof | null;
   findings: Finding[];
 }
 
@@ -46,12 +49,13 @@ export interface BodyToFit {
  *
  * @param cell surface cell of the mesh, mesh unit
  * @param cellOfPart 1 per part: its own, where parts differ
+ * @param keepPoint of the mesh, mesh unit and axes: it is proved by the same flood
  * @param leakTest false leaves out the flood, which takes longest
  */
 export function fitAtCell(
   { mesh, bounds, parts, openEdges, mayLeak, cut, scale, tree = triangleTree(mesh) }: BodyToFit,
   cell: number,
-  { cellOfPart, leakTest = true }: { cellOfPart?: ArrayLike<number>; leakTest?: boolean } = {},
+  { cellOfPart, leakTest = true, keepPoint }: { cellOfPart?: ArrayLike<number>; leakTest?: boolean; keepPoint?: Vector3 } = {},
 ): FitAtCell {
   const cells = cellFitOf(mesh, openEdges, cellOfPart ?? new Float64Array(parts.length).fill(cell), cut?.open ? cut : null, tree);
   const findings = [
@@ -60,22 +64,30 @@ export function fitAtCell(
     ...thicknessFindings(cells.thickness, parts, scale),
     ...gapFindings(cells.gaps, parts, scale),
   ];
-  if (!leakTest || mesh.partOf.length === 0) return { leaks: [], cavities: null, cells, findings };
+  if (!leakTest || mesh.partOf.length === 0) return { leaks: [], cavities: null, cells, keepPoint: null, findings };
   const leaksAt = (edge: number): Leak[] => {
     const fine = floodAir(mesh, bounds, cut, edge, { tree });
     return fine === null ? [] : [leakOf(fine, mesh)];
   };
   const flood = floodAir(mesh, bounds, cut, cell, { tree });
-  if (flood === null) return { leaks: [], cavities: null, cells, findings: [...leakFindings(null, scale), ...findings] };
+  if (flood === null)
+    return { leaks: [], cavities: null, cells, keepPoint: null, findings: [...leakFindings(null, scale), ...findings] };
   const leak = leakOf(flood, mesh);
   const cavities = enclosedCavities(flood);
+  const proof = keepPoint === undefined ? null : provesKeepPoint(flood, keepPoint);
   // What lets a cell through lets half of it through, and where nothing is open nothing passes: the fine flood is the dearest.
   const finer = leak.reached || !mayLeak ? [{ cell: cell / 2, reached: leak.reached, holes: leak.holes }] : leaksAt(cell / 2);
   return {
     leaks: [leak, ...finer],
     cavities,
     cells,
-    findings: [...leaksInWords(leak, finer, scale), ...cavityFindings(cavities, scale), ...findings],
+    keepPoint: proof,
+    findings: [
+      ...(keepPoint === undefined || proof === null ? [] : keepPointFindings(keepPoint, proof, scale)),
+      ...leaksInWords(leak, finer, scale),
+      ...cavityFindings(cavities, scale),
+      ...findings,
+    ],
   };
 }
 
@@ -83,12 +95,14 @@ export function fitAtCell(
  * The same for a body that has been surveyed without cells, once they are known. Cells in metres.
  *
  * @param cellOf edge of the cells at each part, by name of its patch; the surface cell where it has none
+ * @param keepPoint of the mesh, metres, file axes
  */
 export function fitSurveyed(
   set: TriangleSet,
   { unit, symmetry, axes, topology }: Survey,
   cell: number,
   cellOf: ReadonlyMap<string, number> = new Map(),
+  keepPoint?: Vector3,
 ): FitAtCell {
   const mesh = surfaceMesh(set);
   const tree = triangleTree(mesh);
@@ -107,7 +121,10 @@ export function fitSurveyed(
       tree,
     },
     cell / scale,
-    { cellOfPart: set.parts.map(({ patch }) => (cellOf.get(patch) ?? cell) / scale) },
+    {
+      cellOfPart: set.parts.map(({ patch }) => (cellOf.get(patch) ?? cell) / scale),
+      ...(keepPoint !== undefined && { keepPoint: keepPoint.map((value) => value / scale) as Vector3 }),
+    },
   );
 }
 

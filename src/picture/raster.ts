@@ -57,13 +57,21 @@ export function viewOf(sets: Pick<TriangleSet, "positions">[], eye: Vector3, wid
   };
 }
 
-/** The nearest triangle and its depth in every pixel's centre. Both sides of a triangle are seen. */
+/** Depths closer than this share of the picture's width on the body, and than the rounding of a float32, are one surface. */
+const oneSurface = 2e-6;
+
+/**
+ * The nearest triangle and its depth in every pixel's centre. Both sides of a triangle are seen. Where parts lie on each other the first
+ * of them is seen throughout; left to rounding, they would change from pixel to pixel.
+ */
 export function rasterise({ positions, partOf }: Pick<TriangleSet, "positions" | "partOf">, view: View): Seen {
   const { width, height, eye, right, up, scale, originX, originY } = view;
   const triangle = new Uint32Array(width * height);
   const depth = new Float32Array(width * height).fill(-Infinity);
+  const tie = (oneSurface * width) / scale;
   const [px, py, pz] = [new Float64Array(3), new Float64Array(3), new Float64Array(3)];
   for (let t = 0; t < partOf.length; t++) {
+    const part = partOf[t];
     for (let k = 0, at = 9 * t; k < 3; k++, at += 3) {
       const x = positions[at];
       const y = positions[at + 1];
@@ -89,7 +97,13 @@ export function rasterise({ positions, partOf }: Pick<TriangleSet, "positions" |
         const c = 1 - a - b;
         if (a < 0 || b < 0 || c < 0) continue;
         const near = a * pz[0] + b * pz[1] + c * pz[2];
-        if (near <= depth[pixel]) continue;
+        const known = triangle[pixel];
+        if (known !== 0) {
+          const apart = near - depth[pixel];
+          const same = Math.abs(apart) <= tie + 2 ** -22 * Math.abs(near);
+          const other = partOf[known - 1];
+          if (same && part !== other ? part > other : apart <= 0) continue;
+        }
         depth[pixel] = near;
         triangle[pixel] = t + 1;
       }
