@@ -1,3 +1,5 @@
+import { squaredDistance as toTriangle } from "./point-triangle.js";
+
 /**
  * Distance of each point (3 per point) to the nearest triangle, as far as it is not above `reach`; Infinity beyond. Points are put
  * into the cells of a grid, triangles look up the cells that they come near: time and memory follow the number of triangles, so this
@@ -105,49 +107,20 @@ function gridOf(points: Float64Array, reach: number): Grid {
   }
 }
 
-/** Squared distance of a point to a triangle (Ericson, Real-Time Collision Detection, 2005, section 5.1.5). */
+/** Squared distance of the point at `p` to the triangle with corners at `a`, `b` and `c`: places in the arrays. */
 function squaredDistance(points: Float64Array, p: number, vertices: Float32Array, a: number, b: number, c: number): number {
-  const ax = vertices[a];
-  const ay = vertices[a + 1];
-  const az = vertices[a + 2];
-  const ux = vertices[b] - ax;
-  const uy = vertices[b + 1] - ay;
-  const uz = vertices[b + 2] - az;
-  const vx = vertices[c] - ax;
-  const vy = vertices[c + 1] - ay;
-  const vz = vertices[c + 2] - az;
-  const px = points[p] - ax;
-  const py = points[p + 1] - ay;
-  const pz = points[p + 2] - az;
-  const d1 = ux * px + uy * py + uz * pz;
-  const d2 = vx * px + vy * py + vz * pz;
-  if (d1 <= 0 && d2 <= 0) return px * px + py * py + pz * pz;
-  const uu = ux * ux + uy * uy + uz * uz;
-  const uv = ux * vx + uy * vy + uz * vz;
-  const vv = vx * vx + vy * vy + vz * vz;
-  const d3 = d1 - uu;
-  const d4 = d2 - uv;
-  const d5 = d1 - uv;
-  const d6 = d2 - vv;
-  let s = 0;
-  let t = 0;
-  const vc = d1 * d4 - d3 * d2;
-  const vb = d5 * d2 - d1 * d6;
-  const va = d3 * d6 - d5 * d4;
-  if (d3 >= 0 && d4 <= d3) s = 1;
-  else if (d6 >= 0 && d5 <= d6) t = 1;
-  else if (vc <= 0 && d1 >= 0 && d3 <= 0) s = d1 / (d1 - d3);
-  else if (vb <= 0 && d2 >= 0 && d6 <= 0) t = d2 / (d2 - d6);
-  else if (va <= 0 && d4 - d3 >= 0 && d5 - d6 >= 0) {
-    t = (d4 - d3) / (d4 - d3 + (d5 - d6));
-    s = 1 - t;
-  } else {
-    const sum = va + vb + vc;
-    s = vb / sum;
-    t = vc / sum;
-  }
-  const x = px - s * ux - t * vx;
-  const y = py - s * uy - t * vy;
-  const z = pz - s * uz - t * vz;
-  return x * x + y * y + z * z;
+  return toTriangle(
+    points[p],
+    points[p + 1],
+    points[p + 2],
+    vertices[a],
+    vertices[a + 1],
+    vertices[a + 2],
+    vertices[b],
+    vertices[b + 1],
+    vertices[b + 2],
+    vertices[c],
+    vertices[c + 1],
+    vertices[c + 2],
+  );
 }

@@ -1,7 +1,7 @@
+import { squaredDistance } from "../point-triangle.js";
 import type { SurfaceMesh } from "../surface-mesh.js";
 import type { Box } from "../vector.js";
 import { allPoints, type Lattice, latticeAbout } from "./bit-lattice.js";
-import { squaredDistance } from "./point-triangle.js";
 
 /** Triangles longer than so many steps are halved, so that the box of a slanting one holds few points that are far from it. */
 const LONGEST = 24;

@@ -1,7 +1,7 @@
+import { squaredDistance } from "../point-triangle.js";
 import type { SurfaceMesh } from "../surface-mesh.js";
 import { LEAF, type TriangleTree, triangleTree } from "../triangle-tree.js";
 import type { Vector3 } from "../vector.js";
-import { squaredDistance } from "./point-triangle.js";
 
 /** A box of the tree counts as one dipole from so many of its radii away. */
 const FAR = 2;
