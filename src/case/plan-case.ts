@@ -1,5 +1,5 @@
 import { airProperties } from "../flow/air.js";
-import { inletTurbulence } from "../flow/inlet.js";
+import { inletTurbulence, type TwoEquationModel } from "../flow/inlet.js";
 import { onsetFlow } from "../flow/onset.js";
 import type { Vector3 } from "../geometry/vector.js";
 import type { Condition, Study } from "../study/study.js";
@@ -54,7 +54,7 @@ export function planCase(given: {
       ),
       kinematicViscosity: planned(kinematicViscosity, "m2/s", `Sutherland's law at ${air}, over density`, "ISO 2533"),
     },
-    flow: flowOf(frame, condition, kinematicViscosity, overall),
+    flow: flowOf(study.solver.turbulence, frame, condition, kinematicViscosity, overall),
     reference: {
       area: frame.area,
       length: frame.length,
@@ -104,7 +104,7 @@ export function planCase(given: {
       turbulenceRelaxation: planned(
         Number(Math.min(0.7, study.solver.relaxation - 0.1).toPrecision(6)),
         "",
-        "of k and omega: less than that of the velocity",
+        `of k and ${study.solver.turbulence === "k-omega-SST" ? "omega" : "epsilon"}: less than that of the velocity`,
         source.solver,
       ),
     },
@@ -121,6 +121,7 @@ function extentsOf({ bounds: { min, max } }: StudyFrame): { length: number } {
 }
 
 function flowOf(
+  model: TwoEquationModel,
   { grid: { domain } }: StudyFrame,
   condition: Condition,
   kinematicViscosity: number,
@@ -128,7 +129,8 @@ function flowOf(
 ): CasePlan["flow"] {
   const { speed, yaw, name } = condition;
   const { velocity, road } = onsetFlow(condition);
-  const inlet = inletTurbulence({ speed, kinematicViscosity, distance: domain.distances.ahead });
+  const inlet = inletTurbulence({ speed, kinematicViscosity, distance: domain.distances.ahead, model });
+  const viscosities = `eddy viscosity ${inlet.viscosityRatio.toPrecision(3)} times that of the air at the inlet; ${inlet.atNose!.viscosityRatio.toPrecision(3)} times is left at the nose`;
   return {
     speed: planned(speed, "m/s", `condition ${name}`, source.study),
     velocity: planned(
@@ -155,19 +157,22 @@ function flowOf(
       `on the overall length of the baseline, ${overall.toFixed(3)} m`,
       source.definition,
     ),
+    turbulence: planned(model, "", "two equations, with wall functions", source.study),
     k: planned(
       inlet.k,
       "m2/s2",
       `turbulence intensity ${Number((100 * inlet.intensity).toPrecision(6))} % at the inlet`,
       source.solver,
     ),
-    omega: planned(
-      inlet.omega,
-      "1/s",
-      `eddy viscosity ${inlet.viscosityRatio.toPrecision(3)} times that of the air at the inlet; ${inlet.atNose!.viscosityRatio.toPrecision(3)} times is left at the nose`,
-      source.solver,
+    ...(model === "k-omega-SST"
+      ? { omega: planned(inlet.omega, "1/s", viscosities, source.solver) }
+      : { epsilon: planned(inlet.epsilon, "m2/s3", viscosities, source.solver) }),
+    nut: planned(
+      inlet.nut,
+      "m2/s",
+      model === "k-omega-SST" ? "k over omega" : "0.09 times the square of k over epsilon",
+      source.definition,
     ),
-    nut: planned(inlet.nut, "m2/s", "k over omega", source.definition),
   };
 }
 

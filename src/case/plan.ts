@@ -1,3 +1,4 @@
+import type { TwoEquationModel } from "../flow/inlet.js";
 import type { Orientation } from "../geometry/survey.js";
 import type { Box, Vector3 } from "../geometry/vector.js";
 import type { Condition } from "../study/study.js";
@@ -62,8 +63,11 @@ export interface CasePlan {
     /** m/s: of the road relative to the vehicle, rearward, where it moves */
     road: Planned<number>;
     reynolds: Planned<number>;
+    turbulence: Planned<TwoEquationModel>;
     k: Planned<number>;
-    omega: Planned<number>;
+    /** of the two the one that the turbulence model has */
+    omega?: Planned<number>;
+    epsilon?: Planned<number>;
     nut: Planned<number>;
   };
   reference: {
@@ -114,7 +118,7 @@ export interface CasePlan {
     /** in first order, before all others, where the flow starts from uniform */
     firstOrder: Planned<number>;
     writeEvery: Planned<number>;
-    /** share of the change that is taken: of the velocity, and of k and omega */
+    /** share of the change that is taken: of the velocity, and of k and omega or epsilon */
     relaxation: Planned<number>;
     turbulenceRelaxation: Planned<number>;
   };

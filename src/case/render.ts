@@ -75,9 +75,9 @@ const firstOrder = (plan: CasePlan): CaseFile[] =>
 
 function rendered(plan: CasePlan, kind: CaseKind): CaseFile[] {
   const it = caseView(plan, kind);
-  return caseTemplates().templates.map(({ path, render }) => ({
-    path,
-    content: render({ it, header }),
-    executable: path === "Allrun" || path === "Allclean",
-  }));
+  return caseTemplates().templates.flatMap(({ path, render }) => {
+    const content = render({ it, header });
+    // A template that says nothing is of another set-up: the case has no such file.
+    return content.trim() === "" ? [] : [{ path, content, executable: path === "Allrun" || path === "Allclean" }];
+  });
 }

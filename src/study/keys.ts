@@ -288,10 +288,10 @@ const entries: (Omit<StudyKey, "expects" | "example" | "unit"> & Partial<Pick<St
   {
     key: "solver.turbulence",
     title: "Turbulence",
-    description: "Turbulence model.",
+    description:
+      "Turbulence model, with wall functions: k-omega SST, or the realizable k-epsilon model, a second opinion that sees separation later.",
     default: "k-omega-SST",
-    choices: ["k-omega-SST"],
-    single: true,
+    choices: ["k-omega-SST", "realizable-k-epsilon"],
   },
   {
     key: "solver.mode",

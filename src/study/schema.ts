@@ -65,7 +65,7 @@ export const studySchema = z
       .meta(about("mesh")),
     solver: z
       .strictObject({
-        turbulence: only("solver.turbulence", "k-omega-SST"),
+        turbulence: choice("solver.turbulence", ["k-omega-SST", "realizable-k-epsilon"]),
         mode: only("solver.mode", "steady"),
         start: choice("solver.start", ["ladder", "cold"]),
         relaxation: quantity("solver.relaxation"),

@@ -1,3 +1,4 @@
+import type { TwoEquationModel } from "../flow/inlet.js";
 import type { LengthUnit, SignedAxis } from "../geometry/survey.js";
 
 /** A study file, validated, every quantity in SI, every path absolute. What the file leaves out has its default here. */
@@ -29,7 +30,7 @@ export interface Study {
   parts: PartRule[];
   /** shift: of the grid along the vehicle, as a share of a background cell */
   mesh: { cells: number; half: "auto" | boolean; yPlus: number; layers: number; shift: number };
-  solver: { turbulence: "k-omega-SST"; mode: "steady"; start: "ladder" | "cold"; relaxation: number; mostIterations: number };
+  solver: { turbulence: TwoEquationModel; mode: "steady"; start: "ladder" | "cold"; relaxation: number; mostIterations: number };
   /** Half-widths wanted, as coefficients; confidence 0..1 */
   stop: { drag: number; lift: number; confidence: number };
 }

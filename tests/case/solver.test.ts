@@ -99,6 +99,31 @@ describe("a prepared case in the real solver", () => {
     expect((await readdir(path)).filter((each) => /^(log|postP|[1-9])/.test(each))).toEqual([]);
   }, 60_000);
 
+  test("the realizable k-epsilon model: its dictionaries are read, it starts on its own, and y+ is that of wall functions", async (context) => {
+    if (solver === null) return context.skip("OpenFOAM is not installed");
+    const study = await cartStudy({
+      variants: { plain: cartParts },
+      keys: {
+        mesh: "{ cells: 6 thousand, y-plus: 300, layers: 2 }",
+        solver: "{ turbulence: realizable-k-epsilon, most-iterations: 40 }",
+      },
+    });
+    const [{ path }] = (await prepareStudy(study)) as [Awaited<ReturnType<typeof prepareStudy>>[number]];
+    const run = { cwd: path, env: { ...solver.env, PWD: path, PATH: `${solver.path}:/usr/bin:/bin` }, extendEnv: false };
+    expect((await readdir(join(path, "0"))).sort()).toEqual(["U", "epsilon", "k", "nut", "p"]);
+    for (const file of ["0/epsilon", "system/fvSchemes", "system/fvSolution", "constant/turbulenceProperties"])
+      await execa(join(solver.path, "foamDictionary"), ["-keywords", file], run);
+    await execa("/bin/sh", ["./Allrun"], run);
+    const name = "postProcessing/coefficients/20/coefficient.dat";
+    const { columns } = readTable(await readFile(join(path, name)), name);
+    const drag = columns.find((each) => each.name === "Cd")!.values;
+    expect(columns[0]!.values.at(-1)).toBe(40);
+    expect(drag.at(-1)).toBeGreaterThan(0.1);
+    expect(drag.at(-1)).toBeLessThan(2);
+    expect(await readFile(join(path, "log.simpleFoam"), "utf8")).toContain("realizableKE");
+    expect(buildLedger(await readCaseRecord(path)).closing.ok).toBe(true);
+  }, 60_000);
+
   test("at yaw: air in by the front and one side, out by the others; wind axes agree with the forces; both signs mirror each other", async (context) => {
     if (solver === null) return context.skip("OpenFOAM is not installed");
     const study = await cartStudy({

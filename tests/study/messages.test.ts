@@ -87,7 +87,7 @@ describe("messages about keys, word for word", () => {
       remedy: "Write mode: steady, or remove the key.",
     });
     expect(await problem(`${least}solver: { turbulence: k-epsilon }\n`)).toMatchObject({
-      message: `Key 'solver.turbulence' is "k-epsilon", which this version does not compute; the only value possible is k-omega-SST.`,
+      message: `Key 'solver.turbulence' is "k-epsilon"; expected k-omega-SST or realizable-k-epsilon.`,
     });
     expect(await problem(`${least}mesh: { levels: 3 }\n`)).toMatchObject({
       message: "Key 'mesh.levels' is 3, which this version does not compute; the only value possible is 1.",
