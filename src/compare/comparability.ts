@@ -26,8 +26,8 @@ const shared: { what: string; why: string; of(card: RunCard): unknown }[] = [
   { what: "the templates", why: "numerics or models may differ", of: (card) => card.hashes.templates },
 ];
 
-/** Numbers of a plan that make the mesh and the air, and do not follow from the shape of the variant. */
-const settings = /^(?:air\.|mesh\.(?!predicted)|parts\..*\.(?:level|omega)$)/;
+/** Numbers of a plan that make mesh, air and the way to the result, and do not follow from the shape of the variant. */
+const settings = /^(?:air\.|mesh\.(?!predicted)|parts\..*\.(?:level|omega)$|flow\.turbulence$|iterations\..*elaxation$)/;
 /** Differences below these are of rounding: a share, and a size for values that are zero. */
 const sameShare = 1e-9;
 const sameSize = 1e-12;
@@ -70,7 +70,7 @@ function cardFindings(a: RunCard, b: RunCard): Finding[] {
     const before = settings.test(row.key) ? old.get(row.key) : undefined;
     return before === undefined || alike(before.value, row.value) ? [] : [`${row.key} (${shown(before)} and ${shown(row)})`];
   });
-  if (settled.length > 0) findings.push(notShared(`A and B do not share ${settled.join(", ")}: mesh or air differ.`));
+  if (settled.length > 0) findings.push(notShared(`A and B do not share ${settled.join(", ")}: mesh, air or numerics differ.`));
   return findings;
 }
 

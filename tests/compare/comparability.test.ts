@@ -62,14 +62,27 @@ describe("whether two cases can be compared", () => {
     expect(comparability(of(runCard({ plan: plan(3, 4, 0.01, 1) })), other({ plan: plan(3, 4, 0.02, 2) })).comparable).toBe(true);
     const { findings } = comparability(of(runCard({ plan: plan(3, 4, 0.01, 1) })), other({ plan: plan(0, 5, 0.01, 1) }));
     expect(findings.map(({ message }) => message)).toEqual([
-      "A and B do not share mesh.layers (3 and 0), parts.hood.level (4 and 5): mesh or air differ.",
+      "A and B do not share mesh.layers (3 and 0), parts.hood.level (4 and 5): mesh, air or numerics differ.",
     ]);
     const warmer = plan(3, 4, 0.01, 1).map((each) => (each.key.startsWith("air") ? row(each.key, 1.55e-5, each.unit) : each));
     expect(comparability(of(runCard({ plan: plan(3, 4, 0.01, 1) })), other({ plan: warmer })).findings[0].message).toBe(
-      "A and B do not share air.kinematicViscosity (0.0000146 m2/s and 0.0000155 m2/s): mesh or air differ.",
+      "A and B do not share air.kinematicViscosity (0.0000146 m2/s and 0.0000155 m2/s): mesh, air or numerics differ.",
     );
     // A part of one variant only has no counterpart.
     expect(comparability(of(runCard({ plan: [] })), other({ plan: plan(3, 4, 0.01, 1) })).comparable).toBe(true);
+    const modelled = (turbulence: string, relaxation: number) => ({
+      plan: [
+        row("flow.turbulence", turbulence, ""),
+        row("iterations.relaxation", relaxation, ""),
+        row("flow.k", 1 / relaxation, ""),
+      ],
+    });
+    expect(comparability(of(runCard(modelled("k-omega-SST", 0.9))), other(modelled("k-omega-SST", 0.9))).comparable).toBe(true);
+    expect(
+      comparability(of(runCard(modelled("k-omega-SST", 0.9))), other(modelled("realizable-k-epsilon", 0.7))).findings[0].message,
+    ).toBe(
+      "A and B do not share flow.turbulence (k-omega-SST and realizable-k-epsilon), iterations.relaxation (0.9 and 0.7): mesh, air or numerics differ.",
+    );
   });
 
   test.each<[Partial<Reference>, string, string]>([
